@@ -1,0 +1,2 @@
+//! Exact computation in a differential field over the rationals.
+pub mod budget;
