@@ -1,1 +1,3 @@
 //! Scaffold.
+pub mod algebra;
+pub mod render;

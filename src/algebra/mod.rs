@@ -1,2 +1,3 @@
 //! Exact computation in a differential field over the rationals.
 pub mod budget;
+pub mod formula;

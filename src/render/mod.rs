@@ -1,0 +1,1 @@
+//! From one neutral document tree to the forms of output.
