@@ -1,3 +1,4 @@
 //! Scaffold.
 pub mod algebra;
+pub mod language;
 pub mod render;
