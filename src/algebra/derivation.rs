@@ -1,0 +1,167 @@
+//! Differentiation: a derivation of the field, given by its values on the variables and Leibniz' rule.
+
+use std::rc::Rc;
+
+use num_bigint::BigInt;
+
+use super::budget;
+use super::field::Field;
+use super::generator::{Base, Element, Kind, Role, Special};
+use super::monomial::{Monomial, Var};
+use super::number::Rational;
+use super::polynomial::Poly;
+
+impl Field {
+    /// ∂e/∂x for a symbol x. Linear in the size of e times the number of its variables that depend on x.
+    pub fn derivative(&self, e: &Element, x: Var) -> Element {
+        self.derive(e, x, &|field, var| field.variable_derivative(var, x))
+    }
+
+    /// x ∂e/∂x for a symbol x.
+    pub fn log_derivative(&self, e: &Element, x: Var) -> Element {
+        let x_itself = self.current(&Poly::var(x));
+        self.derive(e, x, &|field, var| {
+            let plain = field.variable_derivative(var, x);
+            if plain.is_zero() { plain } else { Rc::new(field.current(&(&*plain * &x_itself))) }
+        })
+    }
+
+    fn derive(&self, e: &Element, x: Var, on_variable: &dyn Fn(&Field, Var) -> Rc<Element>) -> Element {
+        let e = self.current(e);
+        let moving: Vec<(Var, Rc<Element>)> = e
+            .vars()
+            .into_iter()
+            .filter(|v| self.depends(*v, x))
+            .map(|v| (v, on_variable(self, v)))
+            .filter(|(_, d)| !d.is_zero())
+            .collect();
+        if moving.is_empty() {
+            return Poly::zero();
+        }
+        let mut parts = Vec::new();
+        for (monomial, coefficient) in e.terms() {
+            for (var, exponent) in monomial.iter() {
+                if let Ok(found) = moving.binary_search_by(|(v, _)| v.cmp(&var)) {
+                    let factor = &coefficient * Rational::from_integer(exponent.into());
+                    let rest = monomial.mul(&Monomial::power(var, -1));
+                    parts.push(moving[found].1.mul_term(&factor, &rest));
+                    budget::spend(moving[found].1.len() as u64);
+                }
+            }
+        }
+        self.current(&Poly::sum(parts))
+    }
+
+    fn variable_derivative(&self, var: Var, x: Var) -> Rc<Element> {
+        let known = self.tables.borrow().derivatives.get(&(var, x)).cloned();
+        if let Some(known) = known {
+            return known;
+        }
+        let value = Rc::new(self.current(&self.derive_variable(var, x)));
+        self.tables.borrow_mut().derivatives.insert((var, x), value.clone());
+        value
+    }
+
+    fn derive_variable(&self, var: Var, x: Var) -> Element {
+        if var == x {
+            return Poly::one();
+        }
+        match &*self.kind(var) {
+            Kind::Symbol(_) => Poly::zero(),
+            Kind::Ln(Base::Number(_)) => Poly::zero(),
+            Kind::Ln(Base::Var(base)) => {
+                let inner = self.variable_derivative(*base, x);
+                let inverse = self.current(&Poly::term(&Rational::from_integer(1.into()), Monomial::power(*base, -1)));
+                self.product(&inner, &inverse)
+            }
+            Kind::Ln(Base::Sum(value)) => {
+                let inner = self.derivative(value, x);
+                let inverse = self.inverse(&self.base_of(var)).unwrap_or_else(|_| Poly::zero());
+                self.product(&inner, &inverse)
+            }
+            Kind::Exp(argument) => self.product(&self.derivative(argument, x), &Poly::var(var)),
+            Kind::Sum { value, root } => {
+                let inner = self.derivative(value, x);
+                let share = Rational::new(BigInt::from(1), BigInt::from(*root));
+                self.product(&inner, &Poly::term(&share, Monomial::power(var, 1 - *root as i32)))
+            }
+            Kind::Special(function, argument) => {
+                let inner = self.derivative(argument, x);
+                self.product(&inner, &self.special_derivative(*function, argument, var))
+            }
+        }
+    }
+
+    /// Whether a variable depends on the symbol x.
+    pub(super) fn depends(&self, var: Var, x: Var) -> bool {
+        var == x || self.support(var).binary_search(&x).is_ok()
+    }
+
+    /// All variables that a variable is built from, itself included, sorted.
+    pub(super) fn support(&self, var: Var) -> Rc<Vec<Var>> {
+        let known = self.tables.borrow().support.get(&var).cloned();
+        if let Some(known) = known {
+            return known;
+        }
+        let mut all = vec![var];
+        let mut add = |e: &Element| {
+            for v in e.vars() {
+                all.extend(self.support(v).iter().copied());
+            }
+        };
+        match &*self.kind(var) {
+            Kind::Symbol(_) | Kind::Ln(Base::Number(_)) => {}
+            Kind::Ln(Base::Var(base)) => add(&Poly::var(*base)),
+            Kind::Ln(Base::Sum(e)) | Kind::Exp(e) | Kind::Special(_, e) => add(e),
+            Kind::Sum { value, .. } => add(value),
+        }
+        all.sort_unstable();
+        all.dedup();
+        let all = Rc::new(all);
+        self.tables.borrow_mut().support.insert(var, all.clone());
+        all
+    }
+
+    /// Whether e is built from x (it may still be constant in x after cancellation).
+    pub fn depends_on(&self, e: &Element, x: Var) -> bool {
+        self.current(e).vars().into_iter().any(|v| self.depends(v, x))
+    }
+
+    /// Whether e is built from none of the symbols.
+    pub fn is_constant_in(&self, e: &Element, symbols: &[Var]) -> bool {
+        symbols.iter().all(|x| !self.depends_on(e, *x))
+    }
+
+    /// The declared symbols that e is built from, in the order of their declaration.
+    pub fn symbols_of(&self, e: &Element) -> Vec<Var> {
+        let mut all: Vec<Var> = self.current(e).vars().iter().flat_map(|v| self.support(*v).to_vec()).collect();
+        all.retain(|v| matches!(*self.kind(*v), Kind::Symbol(role) if role != Role::Pi));
+        all.sort_unstable();
+        all.dedup();
+        all
+    }
+
+    fn special_derivative(&self, function: Special, argument: &Element, var: Var) -> Element {
+        let square = |sign: i64| -> Element {
+            let exponent = self.reduce(&self.product(argument, argument)).scale(&Rational::from_integer(sign.into()));
+            self.exp(&exponent).unwrap_or_else(|_| Poly::zero())
+        };
+        let two_over_root_pi = || {
+            let root = self.sqrt(&self.pi()).unwrap_or_else(|_| Poly::one());
+            self.quotient(&Poly::int(2), &root).unwrap_or_else(|_| Poly::zero())
+        };
+        match function {
+            Special::Ei => {
+                let over = self.inverse(argument).unwrap_or_else(|_| Poly::zero());
+                self.product(&self.exp(argument).unwrap_or_else(|_| Poly::zero()), &over)
+            }
+            Special::Erf => self.product(&two_over_root_pi(), &square(-1)),
+            Special::Erfi => self.product(&two_over_root_pi(), &square(1)),
+            Special::LambertW => {
+                let w = Poly::var(var);
+                let below = self.product(argument, &self.named(&(&Poly::one() + &w), None));
+                self.quotient(&w, &below).unwrap_or_else(|_| Poly::zero())
+            }
+        }
+    }
+}

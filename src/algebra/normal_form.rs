@@ -1,0 +1,251 @@
+//! The normal form: named sums put back, denominators kept as powers of named sums, and the zero test.
+
+use num_traits::One;
+
+use super::budget;
+use super::field::Field;
+use super::generator::{Element, Kind};
+use super::monomial::{Monomial, Var};
+use super::number::Rational;
+use super::polynomial::Poly;
+
+/// A reduced fraction: an expanded numerator over powers of named sums. A sum with a root N counts in powers of its
+/// value: (R, k) stands for 1/value(R)ᵏ. Monomial denominators stay in the numerator as negative exponents.
+pub type Fraction = (Poly, Vec<(Var, u32)>);
+
+/// A small prime field in which non-zero elements are recognised quickly.
+const PRIME: u64 = (1 << 61) - 1;
+
+impl Field {
+    /// All named sums with a positive power put back, highest first; exponents of roots below N. Negative powers stay.
+    pub fn expand(&self, e: &Element) -> Element {
+        let mut e = self.current(e);
+        while let Some((var, value, root)) = self.highest_sum(&e) {
+            e = put_back(&e, var, &value, root as i32);
+        }
+        e
+    }
+
+    /// The named sum of highest level that occurs to its N-th or a higher power.
+    fn highest_sum(&self, e: &Element) -> Option<(Var, Element, u32)> {
+        let mut best: Option<(u32, Var)> = None;
+        for var in e.vars() {
+            if let Kind::Sum { root, .. } = &*self.kind(var)
+                && e.degree(var) >= *root as i32
+                && best.is_none_or(|b| b < (self.level(var), var))
+            {
+                best = Some((self.level(var), var));
+            }
+        }
+        let (_, var) = best?;
+        match &*self.kind(var) {
+            Kind::Sum { value, root } => Some((var, self.current(value), *root)),
+            _ => None,
+        }
+    }
+
+    /// How deep sums are nested in a variable.
+    fn level(&self, var: Var) -> u32 {
+        let known = self.tables.borrow().levels.get(&var).copied();
+        if let Some(known) = known {
+            return known;
+        }
+        let kind = self.kind(var);
+        let level = match &*kind {
+            Kind::Sum { value, .. } => {
+                1 + self.current(value).vars().into_iter().map(|v| self.level(v)).max().unwrap_or(0)
+            }
+            _ => 0,
+        };
+        self.tables.borrow_mut().levels.insert(var, level);
+        level
+    }
+
+    /// The element as a reduced fraction. Cost: expansion, and one trial division for each power of a denominator.
+    pub fn fraction(&self, e: &Element) -> Fraction {
+        let mut numerator = self.expand(e);
+        let mut denominator: Vec<(Var, u32)> = Vec::new();
+        while let Some((var, root, power)) = self.lowest_sum(&numerator) {
+            // k = -root·j + r with 0 ≤ r < root
+            let cleared = Monomial::power(var, (root * power) as i32);
+            numerator = self.expand(&numerator.mul_term(&Rational::one(), &cleared));
+            match denominator.iter_mut().find(|(v, _)| *v == var) {
+                Some((_, k)) => *k += power,
+                None => denominator.push((var, power)),
+            }
+        }
+        self.cancel(&mut numerator, &mut denominator);
+        denominator.sort_unstable();
+        (numerator, denominator)
+    }
+
+    /// A sum with a negative power, its root, and the power of its value that clears it; highest level first.
+    fn lowest_sum(&self, e: &Element) -> Option<(Var, u32, u32)> {
+        let mut best: Option<(u32, Var, u32, u32)> = None;
+        for var in e.vars() {
+            let low = e.low_degree(var);
+            if let Kind::Sum { root, .. } = &*self.kind(var)
+                && low < 0
+            {
+                let power = low.unsigned_abs().div_ceil(*root);
+                let level = self.level(var);
+                if best.is_none_or(|b| (b.0, b.1) < (level, var)) {
+                    best = Some((level, var, *root, power));
+                }
+            }
+        }
+        best.map(|(_, var, root, power)| (var, root, power))
+    }
+
+    fn cancel(&self, numerator: &mut Poly, denominator: &mut Vec<(Var, u32)>) {
+        if numerator.is_zero() {
+            denominator.clear();
+            return;
+        }
+        for (var, power) in denominator.iter_mut() {
+            let Kind::Sum { value, .. } = &*self.kind(*var) else { continue };
+            let value = self.expand(value);
+            if value.len() < 2 {
+                continue;
+            }
+            while *power > 0 {
+                let Some(quotient) = numerator.div_exact(&value) else { break };
+                *numerator = quotient;
+                *power -= 1;
+            }
+        }
+        denominator.retain(|(_, power)| *power > 0);
+    }
+
+    /// The canonical element: numerators expanded, common factors with the denominators cancelled.
+    pub fn reduce(&self, e: &Element) -> Element {
+        let e = self.current(e);
+        if !self.has_sums(&e) {
+            return e;
+        }
+        let (numerator, denominator) = self.fraction(&e);
+        self.recombine(&numerator, &denominator)
+    }
+
+    /// numerator / Π sumᵏ as an element.
+    pub fn recombine(&self, numerator: &Poly, denominator: &[(Var, u32)]) -> Element {
+        let below = denominator.iter().map(|(var, k)| {
+            let root = match &*self.kind(*var) {
+                Kind::Sum { root, .. } => *root,
+                _ => 1,
+            };
+            (*var, -((root * k) as i32))
+        });
+        numerator.mul_term(&Rational::one(), &Monomial::from_pairs(below))
+    }
+
+    pub(super) fn has_sums(&self, e: &Element) -> bool {
+        e.vars().into_iter().any(|v| matches!(*self.kind(v), Kind::Sum { .. }))
+    }
+
+    /// Whether the normal form of e is zero. `true` is a proof that e vanishes identically on the domain; `false` says
+    /// that the normal form is not zero, which is a refutation only together with a point where e is not zero.
+    pub fn is_zero(&self, e: &Element) -> bool {
+        let e = self.current(e);
+        if e.is_zero() || !self.has_sums(&e) {
+            return e.is_zero();
+        }
+        if self.is_visibly_nonzero(&e) {
+            return false;
+        }
+        self.vanishes(e)
+    }
+
+    /// Clears denominators and puts sums back one at a time, small ones first, looking at every stage whether nothing
+    /// is left.
+    fn vanishes(&self, mut e: Element) -> bool {
+        loop {
+            budget::spend(e.len() as u64);
+            if e.is_zero() {
+                return true;
+            }
+            if let Some((var, root, power)) = self.lowest_sum(&e) {
+                e = e.mul_term(&Rational::one(), &Monomial::power(var, (root * power) as i32));
+                continue;
+            }
+            let Some((var, value, root)) = self.smallest_sum(&e) else { return false };
+            e = put_back(&e, var, &value, root as i32);
+        }
+    }
+
+    fn smallest_sum(&self, e: &Element) -> Option<(Var, Element, u32)> {
+        let mut best: Option<(usize, Var, Element, u32)> = None;
+        for var in e.vars() {
+            if let Kind::Sum { value, root } = &*self.kind(var)
+                && e.degree(var) >= *root as i32
+            {
+                let value = self.current(value);
+                if best.as_ref().is_none_or(|b| value.len() < b.0) {
+                    best = Some((value.len(), var, value, *root));
+                }
+            }
+        }
+        best.map(|(_, var, value, root)| (var, value, root))
+    }
+
+    /// Whether the element is non-zero at a fixed point of a prime field, its free variables chosen at will: then it is
+    /// not the zero of the field. Inconclusive (`false`) where a root would have to be taken.
+    fn is_visibly_nonzero(&self, e: &Element) -> bool {
+        let mut values = rustc_hash::FxHashMap::default();
+        self.residue(e, &mut values).is_some_and(|r| r != 0)
+    }
+
+    fn residue(&self, e: &Element, values: &mut rustc_hash::FxHashMap<Var, Option<u64>>) -> Option<u64> {
+        for var in e.vars() {
+            if values.contains_key(&var) {
+                continue;
+            }
+            let value = match &*self.kind(var) {
+                Kind::Sum { value, root: 1 } => {
+                    let value = self.current(value);
+                    self.residue(&value, values)
+                }
+                Kind::Sum { .. } => None,
+                _ => Some(scatter(var)),
+            };
+            values.insert(var, value);
+        }
+        let mut missing = false;
+        let result = e.eval_mod(PRIME, &mut |var| {
+            values.get(&var).copied().flatten().unwrap_or_else(|| {
+                missing = true;
+                1
+            })
+        });
+        if missing { None } else { result }
+    }
+}
+
+/// Puts value back for Rᴺ in every non-negative power of R.
+fn put_back(e: &Element, var: Var, value: &Element, root: i32) -> Element {
+    let mut powers: Vec<Poly> = vec![Poly::one()];
+    let mut parts = Vec::new();
+    for (exponent, coefficient) in e.coefficients(var) {
+        if exponent < root {
+            let rest = Monomial::power(var, exponent);
+            parts.push(coefficient.mul_term(&Rational::one(), &rest));
+            continue;
+        }
+        let (whole, rest) = ((exponent / root) as usize, exponent % root);
+        while powers.len() <= whole {
+            let next = &powers[powers.len() - 1] * value;
+            powers.push(next);
+        }
+        let product = &coefficient * &powers[whole];
+        parts.push(product.mul_term(&Rational::one(), &Monomial::power(var, rest)));
+    }
+    Poly::sum(parts)
+}
+
+/// A fixed, well-spread residue for each variable.
+fn scatter(var: Var) -> u64 {
+    let mut x = (var.index() as u64 + 1).wrapping_mul(0x9E37_79B9_7F4A_7C15);
+    x ^= x >> 31;
+    x = x.wrapping_mul(0xBF58_476D_1CE4_E5B9);
+    (x ^ (x >> 29)) % (PRIME - 2) + 1
+}

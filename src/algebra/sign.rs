@@ -1,0 +1,315 @@
+//! Signs of elements from what is known of the domain.
+//!
+//! Every answer other than `Unknown` is a consequence of the facts: of factors with known signs, of terms with one
+//! sign, or of an identity f = Σ λₖ μₖ gₖ + (terms of one sign) with λₖ > 0 rational, μₖ positive monomials and gₖ facts.
+
+use std::rc::Rc;
+
+use num_traits::Signed;
+
+use super::budget;
+use super::factor::factor;
+use super::field::{Fact, Field, Relation};
+use super::generator::{Base, Element, Kind, Special};
+use super::monomial::{Monomial, Var};
+use super::number::Rational;
+use super::polynomial::Poly;
+
+/// What is known of the sign of an element on the whole domain.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum Sign {
+    /// Identically zero.
+    Zero,
+    /// Positive everywhere.
+    Positive,
+    /// Negative everywhere.
+    Negative,
+    /// Nowhere negative.
+    NonNegative,
+    /// Nowhere positive.
+    NonPositive,
+    /// Nowhere zero.
+    NonZero,
+    /// Nothing is known.
+    Unknown,
+}
+
+impl Sign {
+    /// The sign of −e.
+    pub fn negated(self) -> Sign {
+        match self {
+            Sign::Positive => Sign::Negative,
+            Sign::Negative => Sign::Positive,
+            Sign::NonNegative => Sign::NonPositive,
+            Sign::NonPositive => Sign::NonNegative,
+            other => other,
+        }
+    }
+
+    /// The sign of a product.
+    pub fn times(self, other: Sign) -> Sign {
+        use Sign::*;
+        match (self, other) {
+            (Zero, _) | (_, Zero) => Zero,
+            (Positive, s) | (s, Positive) => s,
+            (Negative, s) | (s, Negative) => s.negated(),
+            (NonZero, NonZero) => NonZero,
+            (NonNegative, NonNegative) | (NonPositive, NonPositive) => NonNegative,
+            (NonNegative, NonPositive) | (NonPositive, NonNegative) => NonPositive,
+            _ => Unknown,
+        }
+    }
+
+    /// The sign of eᵏ.
+    pub fn to_power(self, k: i32) -> Sign {
+        if k % 2 != 0 {
+            return self;
+        }
+        match self {
+            Sign::Positive | Sign::Negative | Sign::NonZero => Sign::Positive,
+            Sign::Zero => Sign::Zero,
+            _ => Sign::NonNegative,
+        }
+    }
+
+    /// The sign of a sum.
+    pub fn plus(self, other: Sign) -> Sign {
+        use Sign::*;
+        match (self, other) {
+            (Zero, s) | (s, Zero) => s,
+            (Positive, Positive | NonNegative) | (NonNegative, Positive) => Positive,
+            (NonNegative, NonNegative) => NonNegative,
+            (Negative, Negative | NonPositive) | (NonPositive, Negative) => Negative,
+            (NonPositive, NonPositive) => NonPositive,
+            _ => Unknown,
+        }
+    }
+
+    /// Whether zero is excluded.
+    pub fn excludes_zero(self) -> bool {
+        matches!(self, Sign::Positive | Sign::Negative | Sign::NonZero)
+    }
+
+    /// Whether no negative value is possible.
+    pub fn is_nonnegative(self) -> bool {
+        matches!(self, Sign::Zero | Sign::Positive | Sign::NonNegative)
+    }
+
+    fn of(q: &Rational) -> Sign {
+        match q.numer().sign() {
+            num_bigint::Sign::Plus => Sign::Positive,
+            num_bigint::Sign::Minus => Sign::Negative,
+            num_bigint::Sign::NoSign => Sign::Zero,
+        }
+    }
+}
+
+/// How many identities are tried for one sign.
+const MOST_TRIALS: u32 = 150;
+/// How many facts one identity may use.
+const MOST_FACTS: u32 = 5;
+
+impl Field {
+    /// Adds a fact about the domain. A product whose other factors have known signs becomes a fact about one factor.
+    pub fn assume(&self, e: &Element, relation: Relation) {
+        let (element, relation) = self.essential(e, relation);
+        let mut tables = self.tables.borrow_mut();
+        tables.signs.clear();
+        let fact = Fact { element, relation };
+        if !tables.facts.iter().any(|f| f.element == fact.element && f.relation == fact.relation) {
+            tables.facts.push(Rc::new(fact));
+        }
+    }
+
+    /// The facts that are known, in the order in which they were given.
+    pub fn facts(&self) -> Vec<Rc<Fact>> {
+        self.tables.borrow().facts.clone()
+    }
+
+    fn essential(&self, e: &Element, relation: Relation) -> (Element, Relation) {
+        let (content, pieces) = self.pieces(e);
+        let mut rest = Poly::constant(&Rational::from_integer(content.signum().to_integer()));
+        for (base, exponent) in pieces {
+            if relation == Relation::NonZero {
+                rest = &rest * &self.expand(&base);
+                continue;
+            }
+            match self.sign(&base).to_power(exponent) {
+                Sign::Positive => {}
+                Sign::Negative => rest = rest.neg(),
+                _ if exponent % 2 == 0 && relation == Relation::NonNegative => {}
+                _ => rest = &rest * &self.expand(&base),
+            }
+        }
+        (rest, relation)
+    }
+
+    /// The sign of e on the whole domain, as far as the facts give it.
+    pub fn sign(&self, e: &Element) -> Sign {
+        let e = self.current(e);
+        if let Some((coefficient, monomial)) = e.as_monomial() {
+            return Sign::of(&coefficient).times(self.monomial_sign(monomial));
+        }
+        if e.is_zero() {
+            return Sign::Zero;
+        }
+        let visible = self.terms_sign(&e);
+        if visible != Sign::Unknown {
+            return visible;
+        }
+        if !self.has_sums(&e) {
+            return self.polynomial_sign(&e);
+        }
+        let (numerator, denominator) = self.fraction(&e);
+        let below = denominator.iter().fold(Sign::Positive, |s, (v, k)| s.times(self.variable_sign(*v).to_power(*k as i32)));
+        self.polynomial_sign(&numerator).times(below)
+    }
+
+    fn monomial_sign(&self, monomial: &Monomial) -> Sign {
+        monomial.iter().fold(Sign::Positive, |s, (var, k)| s.times(self.variable_sign(var).to_power(k)))
+    }
+
+    fn terms_sign(&self, e: &Element) -> Sign {
+        let mut total = Sign::Zero;
+        for (monomial, coefficient) in e.raw_terms() {
+            let own = if coefficient.is_negative() { Sign::Negative } else { Sign::Positive };
+            total = total.plus(own.times(self.monomial_sign(monomial)));
+            if total == Sign::Unknown {
+                return total;
+            }
+        }
+        total
+    }
+
+    /// The sign of a variable.
+    pub fn variable_sign(&self, var: Var) -> Sign {
+        let known = self.tables.borrow().signs.get(&var).copied();
+        if let Some(known) = known {
+            return known;
+        }
+        // while it is being found, nothing is known of it
+        self.tables.borrow_mut().signs.insert(var, Sign::Unknown);
+        let sign = self.find_variable_sign(var);
+        if sign == Sign::Unknown {
+            self.tables.borrow_mut().signs.remove(&var);
+        }
+        self.tables.borrow_mut().signs.insert(var, sign);
+        sign
+    }
+
+    fn find_variable_sign(&self, var: Var) -> Sign {
+        match &*self.kind(var) {
+            Kind::Symbol(role) if role.is_positive() => Sign::Positive,
+            Kind::Exp(_) => Sign::Positive,
+            Kind::Sum { root, .. } if *root > 1 => Sign::Positive,
+            Kind::Sum { value, .. } => self.sign(&self.expand(value)),
+            Kind::Ln(Base::Number(_)) => Sign::Positive,
+            Kind::Special(Special::Erf | Special::Erfi | Special::LambertW, argument) => self.sign(argument),
+            Kind::Ln(_) => {
+                let excess = &self.expand(&self.base_of(var)) - &Poly::one();
+                let stated = self.from_facts(&Poly::var(var));
+                if stated != Sign::Unknown { stated } else { self.from_facts(&excess) }
+            }
+            _ => self.from_facts(&Poly::var(var)),
+        }
+    }
+
+    fn polynomial_sign(&self, f: &Poly) -> Sign {
+        if f.is_zero() {
+            return Sign::Zero;
+        }
+        let visible = self.terms_sign(f);
+        if visible != Sign::Unknown {
+            return visible;
+        }
+        let split = f.primitive();
+        let outside = Sign::of(&split.content).times(self.monomial_sign(&split.monomial));
+        let stated = self.from_facts(&split.part);
+        if stated != Sign::Unknown {
+            return outside.times(stated);
+        }
+        let factored = factor(&split.part);
+        if factored.factors.len() < 2 && factored.factors.iter().all(|(_, k)| *k == 1) {
+            return Sign::Unknown;
+        }
+        factored.factors.iter().fold(outside.times(Sign::of(&factored.content)), |s, (part, k)| {
+            let own = match self.terms_sign(part) {
+                Sign::Unknown => self.from_facts(part),
+                known => known,
+            };
+            s.times(own.to_power(*k as i32))
+        })
+    }
+
+    /// The sign of a polynomial as a combination of facts.
+    fn from_facts(&self, f: &Poly) -> Sign {
+        let facts: Vec<Rc<Fact>> = self.facts();
+        let facts: Vec<Fact> = facts
+            .iter()
+            .map(|fact| Fact { element: self.current(&fact.element), relation: fact.relation })
+            .collect();
+        let nonzero = facts.iter().any(|g| g.relation == Relation::NonZero && g.element.div_exact(f).is_some());
+        for (candidate, strict, weak) in
+            [(f.clone(), Sign::Positive, Sign::NonNegative), (f.neg(), Sign::Negative, Sign::NonPositive)]
+        {
+            let mut trials = MOST_TRIALS;
+            match self.combination(&candidate, &facts, MOST_FACTS, false, &mut trials) {
+                Sign::Positive => return strict,
+                Sign::NonNegative => return if nonzero { strict } else { weak },
+                _ => {}
+            }
+        }
+        if nonzero { Sign::NonZero } else { Sign::Unknown }
+    }
+
+    /// Tries to write f as positive multiples of facts plus terms of one sign, cancelling the first doubtful term.
+    fn combination(&self, f: &Poly, facts: &[Fact], deep: u32, strict: bool, trials: &mut u32) -> Sign {
+        if f.is_zero() {
+            return if strict { Sign::Positive } else { Sign::NonNegative };
+        }
+        let mut total = if strict { Sign::Positive } else { Sign::NonNegative };
+        let mut doubtful = None;
+        for (monomial, coefficient) in f.raw_terms() {
+            let own = if coefficient.is_negative() { Sign::Negative } else { Sign::Positive };
+            let own = own.times(self.monomial_sign(monomial));
+            if own.is_nonnegative() {
+                total = total.plus(own);
+            } else {
+                doubtful.get_or_insert_with(|| monomial.clone());
+            }
+        }
+        let Some(monomial) = doubtful else { return total };
+        if deep == 0 {
+            return Sign::Unknown;
+        }
+        for fact in facts.iter().filter(|g| g.relation != Relation::NonZero) {
+            for step in self.steps(f, &monomial, &fact.element) {
+                if *trials == 0 {
+                    return Sign::Unknown;
+                }
+                *trials -= 1;
+                budget::spend(1 + f.len() as u64);
+                let strict = strict || fact.relation == Relation::Positive;
+                let found = self.combination(&(f - &step), facts, deep - 1, strict, trials);
+                if found != Sign::Unknown {
+                    return found;
+                }
+            }
+        }
+        Sign::Unknown
+    }
+
+    /// The positive multiples λ μ g of a fact g that cancel the given term of f.
+    fn steps(&self, f: &Poly, monomial: &Monomial, g: &Poly) -> Vec<Poly> {
+        let Some(target) = f.terms().find(|(m, _)| *m == monomial).map(|(_, c)| c) else { return Vec::new() };
+        let mut steps = Vec::new();
+        for (own, coefficient) in g.terms() {
+            let scale = &target / &coefficient;
+            let shift = monomial.div(own);
+            if scale.is_positive() && self.monomial_sign(&shift) == Sign::Positive {
+                steps.push(g.mul_term(&scale, &shift));
+            }
+        }
+        steps
+    }
+}
