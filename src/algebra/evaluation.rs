@@ -67,6 +67,61 @@ impl Field {
         Ok(value)
     }
 
+    /// An element of another field, built anew in this one; `symbol` says what a declared name of the other field is
+    /// here. Fails with the first name that is not known.
+    pub fn import(&self, other: &Field, e: &Element, symbol: &dyn Fn(&str) -> Option<Element>) -> Built {
+        self.import_element(other, &other.current(e), symbol, &mut FxHashMap::default())
+    }
+
+    fn import_element(
+        &self,
+        other: &Field,
+        e: &Element,
+        symbol: &dyn Fn(&str) -> Option<Element>,
+        known: &mut FxHashMap<Var, Element>,
+    ) -> Built {
+        let mut parts = Vec::with_capacity(e.len());
+        for (monomial, coefficient) in e.terms() {
+            let mut product = Poly::constant(&coefficient);
+            for (var, exponent) in monomial.iter() {
+                let value = match known.get(&var) {
+                    Some(value) => self.current(value),
+                    None => self.import_variable(other, var, symbol, known)?,
+                };
+                known.insert(var, value.clone());
+                product = self.product(&product, &self.integer_power(&value, &exponent.into())?);
+            }
+            parts.push(product);
+        }
+        let parts = parts.iter().map(|p| self.current(p)).collect();
+        Ok(Poly::sum(parts))
+    }
+
+    fn import_variable(
+        &self,
+        other: &Field,
+        var: Var,
+        symbol: &dyn Fn(&str) -> Option<Element>,
+        known: &mut FxHashMap<Var, Element>,
+    ) -> Built {
+        match &*other.kind(var) {
+            Kind::Symbol(Role::Pi) => Ok(self.pi()),
+            Kind::Symbol(_) => other.name(var).and_then(|name| symbol(&name)).ok_or(Blocked::UnknownSymbol),
+            Kind::Ln(Base::Number(n)) => self.ln(&Poly::constant(&Rational::from_integer(n.clone()))),
+            Kind::Ln(Base::Var(base)) => self.ln(&self.import_element(other, &Poly::var(*base), symbol, known)?),
+            Kind::Ln(Base::Sum(value)) => self.ln(&self.import_element(other, value, symbol, known)?),
+            Kind::Exp(argument) => self.exp(&self.import_element(other, argument, symbol, known)?),
+            Kind::Sum { value, root } => {
+                let value = self.import_element(other, value, symbol, known)?;
+                let part = Poly::constant(&Rational::new(1.into(), (*root).into()));
+                if *root == 1 { Ok(value) } else { self.power(&value, &part) }
+            }
+            Kind::Special(function, argument) => {
+                self.special(*function, &self.import_element(other, argument, symbol, known)?)
+            }
+        }
+    }
+
     /// A special function of an element. Values that are elementary are given as such.
     pub fn special(&self, function: Special, argument: &Element) -> Built {
         let argument = self.reduce(argument);
@@ -88,7 +143,8 @@ impl Field {
         self.tables.borrow_mut().specials.insert((function, argument.clone()), var);
         if function == Special::LambertW {
             // e^W = f/W, so that W and its exponential are not taken for independent
-            let value = argument.mul_term(&Rational::from_integer(1.into()), &super::monomial::Monomial::power(var, -1));
+            let value =
+                argument.mul_term(&Rational::from_integer(1.into()), &super::monomial::Monomial::power(var, -1));
             let value = self.named_term(&value);
             self.remember(super::field::Group::Other, super::field::Exponential { argument: Poly::var(var), value });
         }
@@ -106,7 +162,13 @@ impl Field {
         self.enclose_element(&self.current(e), at, bits, &mut known)
     }
 
-    fn enclose_element(&self, e: &Element, at: &Point, bits: u32, known: &mut FxHashMap<Var, Interval>) -> Option<Interval> {
+    fn enclose_element(
+        &self,
+        e: &Element,
+        at: &Point,
+        bits: u32,
+        known: &mut FxHashMap<Var, Interval>,
+    ) -> Option<Interval> {
         let mut total = Interval::from_rational(&Rational::from_integer(0.into()), bits);
         for (monomial, coefficient) in e.terms() {
             let mut product = Interval::from_rational(&coefficient, bits);
@@ -119,7 +181,13 @@ impl Field {
         Some(total)
     }
 
-    fn enclose_variable(&self, var: Var, at: &Point, bits: u32, known: &mut FxHashMap<Var, Interval>) -> Option<Interval> {
+    fn enclose_variable(
+        &self,
+        var: Var,
+        at: &Point,
+        bits: u32,
+        known: &mut FxHashMap<Var, Interval>,
+    ) -> Option<Interval> {
         if let Some(value) = known.get(&var) {
             return Some(value.clone());
         }

@@ -139,7 +139,8 @@ impl Field {
         let mut product = Poly::one();
         for (r, entry) in coefficients.iter().zip(self.basis(group)) {
             // after refining, the entry is the denominator-th root of what it was
-            let k = r.numer().to_i32().filter(|k| i64::from(k.abs()) <= MOST_EXPONENT).ok_or(Blocked::ExponentTooLarge)?;
+            let k =
+                r.numer().to_i32().filter(|k| i64::from(k.abs()) <= MOST_EXPONENT).ok_or(Blocked::ExponentTooLarge)?;
             let (c, m) = entry.value.as_monomial().ok_or(Blocked::ExponentTooLarge)?;
             product = product.mul_term(&num_traits::Pow::pow(c, k), &m.pow(k));
         }

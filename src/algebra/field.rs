@@ -13,8 +13,8 @@ use rustc_hash::FxHashMap;
 use super::budget;
 use super::generator::{Base, Blocked, Built, Element, Kind, Role, Special};
 use super::monomial::Var;
-use super::polynomial::Poly;
 use super::number::Rational;
+use super::polynomial::Poly;
 use super::sign::Sign;
 
 /// A relation that a domain fact states about an element and zero.

@@ -96,6 +96,8 @@ pub enum Blocked {
     NotPositive(Element),
     /// The function is not defined, or not supported, for this argument.
     OutsideDomain(Special, Element),
+    /// A name of another field has no meaning here.
+    UnknownSymbol,
     /// An exponent is larger than the algebra allows.
     ExponentTooLarge,
 }

@@ -1,6 +1,24 @@
 //! Exact computation in a differential field over the rationals.
+//!
+//! Read upwards: numbers, monomials, polynomials, factors and intervals; then the field, whose elements are Laurent
+//! polynomials in symbols and generators, with logarithms, exponentials, derivatives, the zero test, signs and values.
+
 pub mod budget;
+pub mod derivation;
+pub mod evaluation;
+pub mod exponential;
+pub mod factor;
+pub mod field;
 pub mod formula;
+pub mod generator;
+pub mod interval;
+pub mod logarithm;
 pub mod monomial;
+pub mod normal_form;
 pub mod number;
 pub mod polynomial;
+pub mod radical;
+pub mod readable;
+pub mod relation;
+pub mod retirement;
+pub mod sign;

@@ -161,7 +161,8 @@ impl Field {
             return self.polynomial_sign(&e);
         }
         let (numerator, denominator) = self.fraction(&e);
-        let below = denominator.iter().fold(Sign::Positive, |s, (v, k)| s.times(self.variable_sign(*v).to_power(*k as i32)));
+        let below =
+            denominator.iter().fold(Sign::Positive, |s, (v, k)| s.times(self.variable_sign(*v).to_power(*k as i32)));
         self.polynomial_sign(&numerator).times(below)
     }
 
@@ -244,10 +245,8 @@ impl Field {
     /// The sign of a polynomial as a combination of facts.
     fn from_facts(&self, f: &Poly) -> Sign {
         let facts: Vec<Rc<Fact>> = self.facts();
-        let facts: Vec<Fact> = facts
-            .iter()
-            .map(|fact| Fact { element: self.current(&fact.element), relation: fact.relation })
-            .collect();
+        let facts: Vec<Fact> =
+            facts.iter().map(|fact| Fact { element: self.current(&fact.element), relation: fact.relation }).collect();
         let nonzero = facts.iter().any(|g| g.relation == Relation::NonZero && g.element.div_exact(f).is_some());
         for (candidate, strict, weak) in
             [(f.clone(), Sign::Positive, Sign::NonNegative), (f.neg(), Sign::Negative, Sign::NonPositive)]

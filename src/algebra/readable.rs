@@ -1,0 +1,269 @@
+//! From an element to a formula as an author would write it.
+
+use num_traits::{One, Signed};
+
+use super::field::Field;
+use super::formula::{Formula, Function, Symbol};
+use super::generator::{Base, Element, Kind, Special};
+use super::monomial::{Monomial, Var};
+use super::number::Rational;
+use super::polynomial::Poly;
+
+impl Field {
+    /// The element as a formula: the author's abbreviations where they still stand, common factors in front, powers of
+    /// one base together, terms in the order of declaration.
+    pub fn formula(&self, e: &Element) -> Formula {
+        let e = self.current(e);
+        if e.len() < 2 {
+            return self.terms_formula(&e);
+        }
+        let split = self.common_factor(&e);
+        let outside = Poly::term(&split.0, split.1);
+        let inside = self.sum_formula(&split.2);
+        if outside.is_one() {
+            return inside;
+        }
+        let (above, below) = self.single_term(&outside);
+        Formula::quotient(Formula::product(vec![above, inside]), below)
+    }
+
+    /// The element with sums put back, brought to one reduced fraction, and written with factored numerator.
+    pub fn reduced_formula(&self, e: &Element) -> Formula {
+        let (numerator, denominator) = self.fraction(e);
+        let factored = super::factor::factor(&numerator);
+        let below = self.recombine(&Poly::one(), &denominator);
+        let outside = Poly::term(&factored.content, factored.monomial.clone());
+        let mut above = Vec::new();
+        let mut sign = Rational::one();
+        for (part, exponent) in &factored.factors {
+            let minus = part.raw_terms().iter().filter(|(_, c)| c.is_negative()).count();
+            let flip = 2 * minus > part.len()
+                || 2 * minus == part.len() && part.raw_terms().last().is_some_and(|(_, c)| c.is_negative());
+            let shown = if flip { part.neg() } else { part.clone() };
+            if flip && exponent % 2 == 1 {
+                sign = -sign;
+            }
+            above.push(Formula::power(self.sum_formula(&shown), Formula::integer(i64::from(*exponent))));
+        }
+        let outer = (&outside * &below).scale(&sign);
+        let (top, bottom) = self.single_term(&outer);
+        above.insert(0, top);
+        Formula::quotient(Formula::product(above), bottom)
+    }
+
+    /// Content, common monomial and what is left; a negative content only where every term is negative.
+    fn common_factor(&self, e: &Element) -> (Rational, Monomial, Poly) {
+        let split = e.primitive();
+        let all_minus = e.raw_terms().iter().all(|(_, c)| c.is_negative());
+        let flip = split.content.is_negative() != all_minus;
+        let (content, part) = if flip { (-split.content, split.part.neg()) } else { (split.content, split.part) };
+        // a bare coefficient is not worth a bracket
+        if split.monomial.is_one()
+            && (content.is_integer() || content.numer().abs().is_one())
+            && !all_minus
+            && content.denom().is_one()
+        {
+            return (Rational::one(), split.monomial, part.scale(&content));
+        }
+        (content, split.monomial, part)
+    }
+
+    fn terms_formula(&self, e: &Element) -> Formula {
+        match e.as_monomial() {
+            Some(_) => {
+                let (above, below) = self.single_term(e);
+                Formula::quotient(above, below)
+            }
+            None if e.is_zero() => Formula::integer(0),
+            None => self.sum_formula(e),
+        }
+    }
+
+    pub(super) fn sum_formula(&self, e: &Poly) -> Formula {
+        if e.len() < 2 {
+            return self.terms_formula(e);
+        }
+        let mut terms: Vec<(Monomial, Rational)> = e.terms().map(|(m, c)| (m.clone(), c)).collect();
+        terms.sort_by_cached_key(|(m, _)| self.reading_order(m));
+        Formula::sum(terms.into_iter().map(|(m, c)| self.terms_formula(&Poly::term(&c, m))).collect())
+    }
+
+    /// Parameters alone first, then by how many prices and functions a term holds, then by declaration.
+    fn reading_order(&self, m: &Monomial) -> (i64, Vec<(bool, usize, i32)>) {
+        let moving = m.iter().filter(|(v, _)| !self.is_parameter(*v)).map(|(_, k)| i64::from(k.abs())).sum();
+        let vars = m.iter().map(|(v, k)| (!self.is_parameter(v), v.index(), -k)).collect();
+        (moving, vars)
+    }
+
+    fn is_parameter(&self, var: Var) -> bool {
+        matches!(self.role(var), Some(super::generator::Role::Parameter | super::generator::Role::Unknown))
+    }
+
+    /// Numerator and denominator of a single term.
+    fn single_term(&self, e: &Element) -> (Formula, Formula) {
+        let Some((coefficient, monomial)) = e.as_monomial() else { return (self.sum_formula(e), Formula::integer(1)) };
+        let mut above = vec![Formula::number(Rational::from_integer(coefficient.numer().clone()))];
+        let mut below = vec![Formula::number(Rational::from_integer(coefficient.denom().clone()))];
+        let (powers, exponentials) = self.gather(monomial);
+        for (base, exponent) in powers {
+            let whole = exponent.as_constant().filter(|q| q.is_negative());
+            match whole {
+                Some(_) => below.push(self.power_formula(base, &exponent.neg())),
+                None => above.push(self.power_formula(base, &exponent)),
+            }
+        }
+        if !exponentials.is_zero() {
+            above.push(Formula::call(Function::Exp, self.formula(&exponentials)));
+        }
+        (Formula::product(above), Formula::product(below))
+    }
+
+    /// The powers of a monomial, one a base, and the argument of the exponential that is left.
+    fn gather(&self, monomial: &Monomial) -> (Vec<(Formula, Element)>, Element) {
+        let mut powers: Vec<(PowerBase, Element)> = Vec::new();
+        let mut rest = Vec::new();
+        for (var, k) in monomial.iter() {
+            let times = Rational::from_integer(k.into());
+            let (base, exponent) = match &*self.kind(var) {
+                Kind::Exp(argument) => match self.single_log(argument) {
+                    Some((log, exponent)) => (PowerBase::Log(log), exponent),
+                    None => {
+                        rest.push(argument.scale(&times));
+                        continue;
+                    }
+                },
+                Kind::Sum { root, .. } if *root > 1 => {
+                    (PowerBase::Root(var), Poly::constant(&Rational::new(1.into(), (*root).into())))
+                }
+                _ => (self.power_base(var), Poly::one()),
+            };
+            let exponent = exponent.scale(&times);
+            match powers.iter_mut().find(|(b, _)| *b == base) {
+                Some((_, total)) => *total = &*total + &exponent,
+                None => powers.push((base, exponent)),
+            }
+        }
+        let ordered = self.in_reading_order(powers);
+        (ordered, Poly::sum(rest))
+    }
+
+    fn in_reading_order(&self, powers: Vec<(PowerBase, Element)>) -> Vec<(Formula, Element)> {
+        let mut keyed: Vec<(u8, usize, Formula, Element)> = powers
+            .into_iter()
+            .map(|(base, exponent)| {
+                let (class, index, formula) = self.base_formula(&base);
+                (class, index, formula, exponent)
+            })
+            .collect();
+        keyed.sort_by_key(|(class, index, _, _)| (*class, *index));
+        keyed.into_iter().map(|(_, _, formula, exponent)| (formula, exponent)).collect()
+    }
+
+    /// exp(e·ln b) with a single logarithm: the logarithm and e.
+    fn single_log(&self, argument: &Element) -> Option<(Var, Element)> {
+        let argument = self.current(argument);
+        let mut found = None;
+        for var in argument.vars() {
+            if matches!(*self.kind(var), Kind::Ln(_)) {
+                if found.is_some() || argument.degree(var) != 1 || argument.low_degree(var) != 1 {
+                    return None;
+                }
+                found = Some(var);
+            }
+        }
+        let log = found?;
+        argument.coefficients(log).into_iter().next().map(|(_, exponent)| (log, exponent))
+    }
+
+    fn power_base(&self, var: Var) -> PowerBase {
+        let by_log = self.tables.borrow().logs.get(&Base::Var(var)).copied();
+        let by_value = match &*self.kind(var) {
+            Kind::Sum { value, root: 1 } => self.tables.borrow().logs.get(&Base::Sum(value.clone())).copied(),
+            _ => None,
+        };
+        by_log.or(by_value).map_or(PowerBase::Var(var), PowerBase::Log)
+    }
+
+    /// Parameters come before prices, prices before functions of them.
+    fn base_formula(&self, base: &PowerBase) -> (u8, usize, Formula) {
+        match base {
+            PowerBase::Var(var) => (self.class(*var), var.index(), self.variable_formula(*var)),
+            PowerBase::Root(var) => match &*self.kind(*var) {
+                Kind::Sum { value, .. } => (3, var.index(), self.formula(value)),
+                _ => (3, var.index(), self.variable_formula(*var)),
+            },
+            PowerBase::Log(log) => match &*self.kind(*log) {
+                Kind::Ln(Base::Var(var)) => (self.class(*var), var.index(), self.variable_formula(*var)),
+                Kind::Ln(Base::Number(n)) => (0, log.index(), Formula::number(Rational::from_integer(n.clone()))),
+                Kind::Ln(Base::Sum(value)) => (3, log.index(), self.value_formula(value)),
+                _ => (3, log.index(), self.variable_formula(*log)),
+            },
+        }
+    }
+
+    fn class(&self, var: Var) -> u8 {
+        match self.role(var) {
+            Some(super::generator::Role::Parameter | super::generator::Role::Unknown | super::generator::Role::Pi) => 1,
+            Some(_) => 2,
+            None => 3,
+        }
+    }
+
+    /// The value of a named sum: by the author's name for it, if there is one.
+    fn value_formula(&self, value: &Element) -> Formula {
+        let named = self.tables.borrow().sums.get(value).cloned();
+        let name = named.and_then(|n| n.as_var()).and_then(|v| self.name(v));
+        name.map_or_else(|| self.formula(value), Formula::symbol)
+    }
+
+    fn power_formula(&self, base: Formula, exponent: &Element) -> Formula {
+        if exponent.as_constant() == Some(Rational::new(1.into(), 2.into())) {
+            return Formula::call(Function::Sqrt, base);
+        }
+        Formula::power(base, self.formula(exponent))
+    }
+
+    /// A single variable as a formula.
+    pub fn variable_formula(&self, var: Var) -> Formula {
+        if let Some(name) = self.name(var) {
+            return Formula::Symbol(Symbol { plain: name, latex: None });
+        }
+        match &*self.kind(var) {
+            Kind::Symbol(_) => Formula::symbol("?"),
+            Kind::Ln(Base::Var(base)) => Formula::call(Function::Ln, self.variable_formula(*base)),
+            Kind::Ln(Base::Number(n)) => {
+                Formula::call(Function::Ln, Formula::number(Rational::from_integer(n.clone())))
+            }
+            Kind::Ln(Base::Sum(value)) => Formula::call(Function::Ln, self.value_formula(value)),
+            Kind::Exp(argument) => match self.single_log(argument) {
+                Some((log, exponent)) => {
+                    let (_, _, base) = self.base_formula(&PowerBase::Log(log));
+                    self.power_formula(base, &exponent)
+                }
+                None => Formula::call(Function::Exp, self.formula(argument)),
+            },
+            Kind::Sum { value, root: 1 } => self.formula(value),
+            Kind::Sum { value, root } => {
+                let part = Poly::constant(&Rational::new(1.into(), (*root).into()));
+                self.power_formula(self.formula(value), &part)
+            }
+            Kind::Special(function, argument) => {
+                let function = match function {
+                    Special::Ei => Function::Ei,
+                    Special::Erf => Function::Erf,
+                    Special::Erfi => Function::Erfi,
+                    Special::LambertW => Function::LambertW,
+                };
+                Formula::call(function, self.formula(argument))
+            }
+        }
+    }
+}
+
+/// What a power in a monomial is a power of.
+#[derive(Clone, Copy, PartialEq, Eq)]
+enum PowerBase {
+    Var(Var),
+    Root(Var),
+    Log(Var),
+}
