@@ -1,0 +1,136 @@
+//! What the author said, checked for sense: goods, prices, income, parameters, assumptions and equations, as elements
+//! of one field in which the assumptions are known.
+
+pub mod points;
+pub mod system;
+
+use std::rc::Rc;
+
+use crate::algebra::evaluation::Point;
+use crate::algebra::field::Field;
+use crate::algebra::generator::Element;
+use crate::algebra::monomial::Var;
+use crate::language::{self, Diagnostic, Source};
+
+pub use points::PointSearch;
+pub use system::{Assumption, Claim, Coverage, Demand, DomainCondition, Form, Good, Parameter, Value};
+
+/// A model file with its meaning.
+pub struct Model {
+    /// The title, for reports.
+    pub title: Option<String>,
+    /// The field that all elements of the model belong to; assumptions and domain are facts in it.
+    pub field: Field,
+    /// The goods, in declared order.
+    pub goods: Vec<Good>,
+    /// The named sets of goods, as positions in `goods`.
+    pub groups: Vec<(String, Vec<usize>)>,
+    /// The prices, one for each good; empty in a file of lemmas without prices.
+    pub prices: Vec<Var>,
+    /// Total outlay; absent only in a file of lemmas.
+    pub income: Option<Var>,
+    /// The names of the quantities, one slot for each good.
+    pub quantities: Vec<Option<Var>>,
+    /// The symbol for the utility level in recovered functions.
+    pub utility: Var,
+    /// Its name.
+    pub utility_name: String,
+    /// The parameters, families member by member, in declared order.
+    pub parameters: Vec<Parameter>,
+    /// The assumptions, in the order of the file.
+    pub assumptions: Vec<Assumption>,
+    /// The author's abbreviations, in the order of the file.
+    pub abbreviations: Vec<(String, Element)>,
+    /// Which goods of the budget the system covers.
+    pub coverage: Coverage,
+    /// The demands, one for each good; empty in a file of lemmas.
+    pub demands: Vec<Demand>,
+    /// The good that takes what is left of income.
+    pub rest: Option<usize>,
+    /// The claims, in the order of the file.
+    pub claims: Vec<Claim>,
+    /// What the formulas of the file need in order to be defined.
+    pub domain: Vec<DomainCondition>,
+    /// What is read, but perhaps not as its author meant it.
+    pub warnings: Vec<Diagnostic>,
+    text: Rc<Text>,
+}
+
+/// The file that a model was made from, kept so that it can be made anew with other values.
+struct Text {
+    source: Source,
+    tree: language::Model,
+}
+
+/// Gives a syntax tree its meaning.
+///
+/// # Errors
+/// Every mistake of the file, each with its place and, where there is one, a remedy.
+pub fn elaborate(source: &Source, tree: &language::Model, values: &[Value<'_>]) -> Result<Model, Vec<Diagnostic>> {
+    build(Rc::new(Text { source: source.clone(), tree: tree.clone() }), values)
+}
+
+fn build(text: Rc<Text>, _values: &[Value<'_>]) -> Result<Model, Vec<Diagnostic>> {
+    let field = Field::new();
+    let utility = field.symbol("u", crate::algebra::generator::Role::Utility);
+    Ok(Model {
+        title: None,
+        field,
+        goods: Vec::new(),
+        groups: Vec::new(),
+        prices: Vec::new(),
+        income: None,
+        quantities: Vec::new(),
+        utility,
+        utility_name: "u".to_string(),
+        parameters: Vec::new(),
+        assumptions: Vec::new(),
+        abbreviations: Vec::new(),
+        coverage: Coverage::Complete,
+        demands: Vec::new(),
+        rest: None,
+        claims: Vec::new(),
+        domain: Vec::new(),
+        warnings: Vec::new(),
+        text,
+    })
+}
+
+impl Model {
+    /// The model of the same text with elements of this model's field put in for parameters, built anew in a fresh
+    /// field.
+    ///
+    /// # Errors
+    /// What is wrong with the file under these values: a divisor that becomes zero, an assumption that fails.
+    pub fn respecialised(&self, equations: &[(Var, Element)]) -> Result<Model, Vec<Diagnostic>> {
+        let names: Vec<String> = equations.iter().map(|(v, _)| self.field.name(*v).unwrap_or_default()).collect();
+        let values: Vec<Value<'_>> = names
+            .iter()
+            .zip(equations)
+            .map(|(parameter, (_, element))| Value { parameter, element, field: &self.field })
+            .collect();
+        build(self.text.clone(), &values)
+    }
+
+    /// The file that the model was made from.
+    pub fn source(&self) -> &Source {
+        &self.text.source
+    }
+
+    /// A deterministic stream of admissible points with exact rational coordinates: small numbers first, then random
+    /// ones, then extreme ones. Every declared name has a value, eliminated parameters included.
+    pub fn points(&self) -> PointSearch<'_> {
+        PointSearch::new(self)
+    }
+
+    /// Whether the point satisfies every assumption and every domain condition, and gives positive values to prices,
+    /// income and quantities. `false` also where the precision spent does not show it.
+    pub fn is_admissible(&self, point: &Point) -> bool {
+        points::is_admissible(self, point)
+    }
+
+    /// The syntax tree that the model was made from.
+    pub fn tree(&self) -> &language::Model {
+        &self.text.tree
+    }
+}

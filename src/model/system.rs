@@ -1,0 +1,139 @@
+//! What a model consists of: the types that the floors above read.
+
+use crate::algebra::field::Field;
+use crate::algebra::generator::Element;
+use crate::algebra::monomial::Var;
+use crate::language::{Comparison, Span};
+
+use crate::language::Form as WrittenForm;
+
+/// A good.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Good {
+    /// Its name; the number of a numbered good.
+    pub name: String,
+}
+
+/// A parameter, or one member of a family of parameters.
+#[derive(Clone, Debug)]
+pub struct Parameter {
+    /// The name as the author writes it: `s`, `g[1,2]`, `a[bread]`.
+    pub name: String,
+    /// Its symbol in the field.
+    pub var: Var,
+    /// The LaTeX form that the author asked for (of the family, without indices).
+    pub latex: Option<String>,
+    /// What the assumed equations make of it, where they eliminate it: an element free of eliminated parameters.
+    pub eliminated: Option<Element>,
+}
+
+/// One assumed relation; each link of a chain and each value of free indices is one of its own.
+#[derive(Clone, Debug)]
+pub struct Assumption {
+    /// The relation as it was written, chain and free indices included.
+    pub text: String,
+    /// The left side, eliminated parameters replaced.
+    pub left: Element,
+    /// The sign between the sides.
+    pub relation: Comparison,
+    /// The right side, eliminated parameters replaced.
+    pub right: Element,
+    /// Where it is written.
+    pub span: Span,
+}
+
+/// Which goods of the consumer's budget the system covers.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum Coverage {
+    /// All goods: outlays add up to income.
+    Complete,
+    /// Some goods; these symbols are the prices (or price indices) of the others.
+    Others(Vec<Var>),
+    /// Some goods; prices and income are already divided by the price index of the others.
+    Deflated,
+}
+
+/// In which form the demand for a good is given.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum Form {
+    /// The quantity x.
+    Demand,
+    /// The budget share p x / m.
+    Share,
+    /// The spending p x.
+    Outlay,
+    /// ln x.
+    LogDemand,
+    /// What is left of income.
+    Rest,
+}
+
+impl From<WrittenForm> for Form {
+    fn from(form: WrittenForm) -> Form {
+        match form {
+            WrittenForm::Demand => Form::Demand,
+            WrittenForm::Share => Form::Share,
+            WrittenForm::Outlay => Form::Outlay,
+            WrittenForm::LogDemand => Form::LogDemand,
+        }
+    }
+}
+
+/// The demand for one good, in all the forms that are in use.
+#[derive(Clone, Debug)]
+pub struct Demand {
+    /// The form in which it is written.
+    pub form: Form,
+    /// The right-hand side as written, in the written form (for the rest good, the outlay that is left).
+    pub formula: Element,
+    /// x.
+    pub quantity: Element,
+    /// p x.
+    pub outlay: Element,
+    /// p x / m.
+    pub share: Element,
+}
+
+/// A stated identity or inequality; each link of a chain and each value of free indices is one of its own.
+#[derive(Clone, Debug)]
+pub struct Claim {
+    /// The relation as it was written (one link of a chain); values of free indices are added behind it.
+    pub text: String,
+    /// The left side.
+    pub left: Element,
+    /// The sign between the sides.
+    pub relation: Comparison,
+    /// The right side.
+    pub right: Element,
+    /// Where it is written.
+    pub span: Span,
+}
+
+/// What the author's own formulas need in order to be defined.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum DomainCondition {
+    /// The argument of a logarithm, the base of a fractional or symbolic power.
+    Positive(Element),
+    /// A divisor.
+    NonZero(Element),
+}
+
+impl DomainCondition {
+    /// The element that the condition is about.
+    pub fn element(&self) -> &Element {
+        match self {
+            DomainCondition::Positive(e) | DomainCondition::NonZero(e) => e,
+        }
+    }
+}
+
+/// A value put in for a parameter: an element of the field of another model (or of a field of its own).
+#[derive(Clone, Copy)]
+pub struct Value<'a> {
+    /// The parameter as it is written: `s`, `g[1,2]`.
+    pub parameter: &'a str,
+    /// Its value.
+    pub element: &'a Element,
+    /// The field that the value belongs to; its symbols are found again by name.
+    pub field: &'a Field,
+}
