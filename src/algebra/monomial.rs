@@ -1,4 +1,4 @@
-//! Sparse Laurent monomials in up to 2^18 variables, with exponents from −8192 to 8191.
+//! Sparse Laurent monomials in up to 2^18 variables, with exponents from −8191 to 8191.
 
 use std::cmp::Ordering;
 use std::fmt;
@@ -7,10 +7,12 @@ use smallvec::SmallVec;
 
 use crate::algebra::budget::{self, Stopped};
 
-const EXPONENT_BITS: u32 = 14;
-const BIAS: i32 = 1 << (EXPONENT_BITS - 1);
-const EXPONENT_MASK: u32 = (1 << EXPONENT_BITS) - 1;
-const MAX_VAR: u32 = (1 << (32 - EXPONENT_BITS)) - 1;
+const EXPONENT_BITS: u32 = 13;
+const MAX_EXPONENT: i32 = (1 << EXPONENT_BITS) - 1;
+const MAX_VAR: u32 = (1 << (31 - EXPONENT_BITS)) - 1;
+
+/// Where an absent factor stands in the order of the packed factors.
+const ABSENT: u32 = 1 << 31;
 
 /// A variable of the polynomial ring.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -31,23 +33,31 @@ impl Var {
     }
 }
 
-/// One packed factor v^e: the variable in the high 18 bits, the biased exponent in the low 14.
+/// One packed factor v^e: the sign of e, 18 bits for v, 13 bits for |e|; for e < 0 the negative of the word for v^−e.
+/// Words compare like the factors they stand for: the order of monomials is the plain order of their words.
 #[inline]
 fn pack(v: Var, e: i32) -> u32 {
-    if !(-BIAS..BIAS).contains(&e) {
+    if e.unsigned_abs() > MAX_EXPONENT as u32 {
         budget::stop(Stopped::Size);
     }
-    (v.0 << EXPONENT_BITS) | (e + BIAS) as u32
+    let positive = ABSENT | ((MAX_VAR - v.0) << EXPONENT_BITS) | e.unsigned_abs();
+    if e < 0 { positive.wrapping_neg() } else { positive }
+}
+
+/// All ones for a positive exponent, else 0.
+#[inline]
+fn sign_mask(packed: u32) -> u32 {
+    ((packed as i32) >> 31) as u32
 }
 
 #[inline]
 fn var_bits(packed: u32) -> u32 {
-    packed >> EXPONENT_BITS
+    ((packed ^ sign_mask(packed)) >> EXPONENT_BITS) & MAX_VAR
 }
 
 #[inline]
 fn exponent_of(packed: u32) -> i32 {
-    (packed & EXPONENT_MASK) as i32 - BIAS
+    (packed & MAX_EXPONENT as u32) as i32 - (!sign_mask(packed) & (1 << EXPONENT_BITS)) as i32
 }
 
 #[inline]
@@ -135,7 +145,7 @@ impl Monomial {
 
     /// self / other.
     pub fn div(&self, other: &Monomial) -> Monomial {
-        self.merge(other, flip)
+        self.merge(other, u32::wrapping_neg)
     }
 
     /// self · (the factors of other passed through `map`, which keeps variables).
@@ -240,12 +250,6 @@ impl Monomial {
     }
 }
 
-/// The inverse of one packed factor.
-fn flip(f: u32) -> u32 {
-    let (v, e) = unpack(f);
-    pack(v, -e)
-}
-
 /// Writes the product of two factor lists to `out` and returns its length.
 #[inline]
 fn merge_into(a: &[u32], b: &[u32], map: impl Fn(u32) -> u32, out: &mut [u32]) -> usize {
@@ -296,20 +300,13 @@ impl Ord for Monomial {
     fn cmp(&self, other: &Monomial) -> Ordering {
         let (a, b) = (&self.0[..], &other.0[..]);
         let common = a.len().min(b.len());
-        for (&f, &g) in a[..common].iter().zip(&b[..common]) {
+        for (f, g) in a[..common].iter().zip(&b[..common]) {
             if f != g {
-                return match var_bits(f).cmp(&var_bits(g)) {
-                    Ordering::Equal => f.cmp(&g),
-                    Ordering::Less => exponent_of(f).cmp(&0),
-                    Ordering::Greater => 0.cmp(&exponent_of(g)),
-                };
+                return f.cmp(g);
             }
         }
-        match (a.get(common), b.get(common)) {
-            (Some(&f), _) => exponent_of(f).cmp(&0),
-            (_, Some(&g)) => 0.cmp(&exponent_of(g)),
-            _ => Ordering::Equal,
-        }
+        let next = |words: &[u32]| words.get(common).copied().unwrap_or(ABSENT);
+        next(a).cmp(&next(b))
     }
 }
 

@@ -14,9 +14,22 @@ const CHUNK: usize = 1 << 20;
 
 /// Sorts terms descending, adds equal monomials and drops zeros.
 pub(super) fn combine(mut terms: Vec<Term>) -> Vec<Term> {
-    // The terms arrive as a few descending runs; the merging sort takes advantage of that.
+    // The terms of a sum arrive as a few descending runs; the merging sort takes advantage of that.
     terms.sort_by(|a, b| b.0.cmp(&a.0));
     merge_equal(terms)
+}
+
+/// All products of two term lists, combined; the order is a group order, so a single term needs no sorting.
+fn multiply(a: &[Term], b: &[Term]) -> Vec<Term> {
+    let mut products = Vec::with_capacity(a.len() * b.len());
+    for (m, c) in a {
+        products.extend(b.iter().map(|(n, d)| (m.mul(n), c.mul(d))));
+    }
+    if a.len() == 1 || b.len() == 1 {
+        return products;
+    }
+    products.sort_unstable_by(|a, b| b.0.cmp(&a.0));
+    merge_equal(products)
 }
 
 fn merge_equal(mut terms: Vec<Term>) -> Vec<Term> {
@@ -63,15 +76,6 @@ fn merge(a: &[Term], ka: &Int, b: &[Term], kb: &Int) -> Vec<Term> {
 #[inline]
 fn scaled(c: &Int, k: &Int) -> Int {
     if k.is_one() { c.clone() } else { c.mul(k) }
-}
-
-/// All products of two term lists, combined; the order is a group order, so a single term needs no sorting.
-fn multiply(a: &[Term], b: &[Term]) -> Vec<Term> {
-    let mut products = Vec::with_capacity(a.len() * b.len());
-    for (m, c) in a {
-        products.extend(b.iter().map(|(n, d)| (m.mul(n), c.mul(d))));
-    }
-    if a.len() == 1 || b.len() == 1 { products } else { combine(products) }
 }
 
 impl Poly {
