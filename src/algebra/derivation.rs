@@ -8,7 +8,7 @@ use super::budget;
 use super::field::Field;
 use super::generator::{Base, Element, Kind, Role, Special};
 use super::monomial::{Monomial, Var};
-use super::number::Rational;
+use super::number::{Int, Rational};
 use super::polynomial::Poly;
 
 impl Field {
@@ -38,17 +38,9 @@ impl Field {
         if moving.is_empty() {
             return Poly::zero();
         }
-        let mut parts = Vec::new();
-        for (monomial, coefficient) in e.terms() {
-            for (var, exponent) in monomial.iter() {
-                if let Ok(found) = moving.binary_search_by(|(v, _)| v.cmp(&var)) {
-                    let factor = &coefficient * Rational::from_integer(exponent.into());
-                    let rest = monomial.mul(&Monomial::power(var, -1));
-                    parts.push(moving[found].1.mul_term(&factor, &rest));
-                    budget::spend(moving[found].1.len() as u64);
-                }
-            }
-        }
+        let (whole, fractional): (Vec<_>, Vec<_>) = moving.iter().partition(|(_, d)| d.denominator().is_one());
+        let mut parts = vec![leibniz(&e, &whole)];
+        parts.extend(fractional.into_iter().map(|one| leibniz(&e, &[one])));
         self.current(&Poly::sum(parts))
     }
 
@@ -164,4 +156,23 @@ impl Field {
             }
         }
     }
+}
+
+/// Σ over the terms c·μ of e and the given variables v of c·k·(μ/v)·∂v, k the exponent of v in μ; the derivatives have
+/// one denominator.
+fn leibniz(e: &Element, moving: &[&(Var, Rc<Element>)]) -> Element {
+    let Some((_, first)) = moving.first() else { return Poly::zero() };
+    let mut terms = Vec::new();
+    for (monomial, coefficient) in e.raw_terms() {
+        for (var, exponent) in monomial.iter() {
+            let Ok(found) = moving.binary_search_by(|(v, _)| v.cmp(&var)) else { continue };
+            let scale = coefficient.mul(&Int::from(i64::from(exponent)));
+            let rest = monomial.mul(&Monomial::power(var, -1));
+            terms.extend(moving[found].1.raw_terms().iter().map(|(m, c)| (rest.mul(m), scale.mul(c))));
+        }
+    }
+    budget::spend(terms.len() as u64);
+    let denominator = e.denominator().mul(first.denominator());
+    let sum = Poly::from_int_terms(terms);
+    if denominator.is_one() { sum } else { sum.scale(&denominator.to_rational().recip()) }
 }

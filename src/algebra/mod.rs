@@ -9,6 +9,7 @@ pub mod evaluation;
 pub mod exponential;
 pub mod factor;
 pub mod field;
+pub mod folding;
 pub mod formula;
 pub mod gcd;
 pub mod generator;

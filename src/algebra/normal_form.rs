@@ -129,13 +129,7 @@ impl Field {
 
     /// numerator / Π sumᵏ as an element.
     pub fn recombine(&self, numerator: &Poly, denominator: &[(Var, u32)]) -> Element {
-        let below = denominator.iter().map(|(var, k)| {
-            let root = match &*self.kind(*var) {
-                Kind::Sum { root, .. } => *root,
-                _ => 1,
-            };
-            (*var, -((root * k) as i32))
-        });
+        let below = denominator.iter().map(|(var, k)| (*var, -((self.root_index(*var) * k) as i32)));
         numerator.mul_term(&Rational::one(), &Monomial::from_pairs(below))
     }
 

@@ -13,7 +13,7 @@ impl Field {
     /// The element as a formula: the author's abbreviations where they still stand, common factors in front, powers of
     /// one base together, terms in the order of declaration.
     pub fn formula(&self, e: &Element) -> Formula {
-        let e = self.current(e);
+        let e = self.folded(&self.current(e));
         if e.len() < 2 {
             return self.terms_formula(&e);
         }
@@ -39,7 +39,7 @@ impl Field {
             let minus = part.raw_terms().iter().filter(|(_, c)| c.is_negative()).count();
             let flip = 2 * minus > part.len()
                 || 2 * minus == part.len() && part.raw_terms().last().is_some_and(|(_, c)| c.is_negative());
-            let shown = if flip { part.neg() } else { part.clone() };
+            let shown = self.folded(&if flip { part.neg() } else { part.clone() });
             if flip && exponent % 2 == 1 {
                 sign = -sign;
             }
@@ -226,7 +226,7 @@ impl Field {
     /// A single variable as a formula.
     pub fn variable_formula(&self, var: Var) -> Formula {
         if let Some(name) = self.name(var) {
-            return Formula::Symbol(Symbol { plain: name, latex: None });
+            return Formula::Symbol(Symbol { plain: name, latex: self.latex(var) });
         }
         match &*self.kind(var) {
             Kind::Symbol(_) => Formula::symbol("?"),
