@@ -14,7 +14,7 @@ use super::generator::{Base, Blocked, Built, Element, Kind, Role, Special};
 use super::monomial::Var;
 use super::number::Rational;
 use super::polynomial::Poly;
-use super::sign::Sign;
+use super::sign_rules::Sign;
 
 /// A relation that a domain fact states about an element and zero.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]

@@ -25,3 +25,4 @@ pub mod readable;
 pub mod relation;
 pub mod retirement;
 pub mod sign;
+pub mod sign_rules;
