@@ -1,0 +1,284 @@
+//! Statements: from the pairs of the grammar to the syntax tree.
+
+use pest::Parser;
+use pest::iterators::Pair;
+
+use super::brackets;
+use super::diagnostic::Diagnostic;
+use super::expression::Builder;
+use super::grammar::{ModelParser, Rule};
+use super::keywords::{self, KEYWORDS, Keyword};
+use super::latex_form::latex_form;
+use super::letters::leading_word;
+use super::nearest::nearest;
+use super::place::Place;
+use super::slips;
+use super::syntax::*;
+use super::unsupported;
+
+/// What came of one statement.
+#[derive(Debug, Default)]
+pub struct Outcome {
+    /// The statement, where it has no mistakes.
+    pub statement: Option<Located>,
+    /// Its mistakes.
+    pub mistakes: Vec<Diagnostic>,
+    /// What may not be meant.
+    pub warnings: Vec<Diagnostic>,
+    /// Where a bare `e` is raised to a power.
+    pub exponentials: Vec<Span>,
+    /// Whether names that it may have declared are lost.
+    pub declarations_lost: bool,
+}
+
+impl Outcome {
+    fn refused(mistake: Diagnostic, declarations_lost: bool) -> Outcome {
+        Outcome { mistakes: vec![mistake], declarations_lost, ..Outcome::default() }
+    }
+}
+
+/// Reads the statement that starts at `offset` of its file.
+pub fn read(text: &str, offset: usize) -> Outcome {
+    let word = leading_word(text);
+    let span = Span::new(offset, offset + word.len());
+    let Some(keyword) = keywords::find(word) else {
+        return Outcome::refused(unknown_keyword(word, text, span), true);
+    };
+    if let Err(mistake) = brackets::check(text, offset) {
+        return Outcome::refused(mistake, keyword.declares);
+    }
+    if let Some(mistake) = unsupported::refusal(text, offset) {
+        return Outcome::refused(mistake, keyword.declares);
+    }
+    let Some(rule) = keyword.rule else {
+        return Outcome::refused(malformed(keyword, span), keyword.declares);
+    };
+    match ModelParser::parse(rule, text) {
+        Ok(mut pairs) => match pairs.next() {
+            Some(pair) => build(pair, text, offset, keyword),
+            None => Outcome::refused(malformed(keyword, span), keyword.declares),
+        },
+        Err(error) => Outcome::refused(slips::explain(&Place::of(&error, text, offset), keyword), keyword.declares),
+    }
+}
+
+fn malformed(keyword: &Keyword, span: Span) -> Diagnostic {
+    let message = format!("`{}` begins no statement in this form", keyword.word);
+    Diagnostic::error(span, message).remedy(format!("write {}", keyword.usage))
+}
+
+fn unknown_keyword(word: &str, text: &str, span: Span) -> Diagnostic {
+    let known = KEYWORDS.iter().filter(|keyword| keyword.rule.is_some()).map(|keyword| keyword.word);
+    if let Some(meant) = nearest(word, known.clone()) {
+        let usage = keywords::find(meant).map_or(meant, |keyword| keyword.usage);
+        let message = format!("no statement begins with `{word}`; the nearest that does is `{meant}`");
+        return Diagnostic::error(span, message).remedy(format!("write {usage}"));
+    }
+    let diagnostic = Diagnostic::error(span, format!("no statement begins with `{word}`"));
+    let left = text.split('=').next().map(str::trim).filter(|left| left.len() < text.len() && left.len() <= MAX_SHOWN);
+    if let Some(left) = left {
+        let remedy =
+            format!("write `let {left} = …` for an abbreviation, `demand {left} = …` for the demand of a good");
+        return diagnostic.remedy(remedy);
+    }
+    diagnostic.remedy(format!("a statement begins with one of {}", known.collect::<Vec<_>>().join(", ")))
+}
+
+/// The most bytes of a left-hand side that are quoted in a remedy.
+const MAX_SHOWN: usize = 24;
+
+fn build(pair: Pair<Rule>, text: &str, offset: usize, keyword: &Keyword) -> Outcome {
+    let mut reader = Reader { builder: Builder::new(offset) };
+    let statement = reader.statement(pair);
+    let Builder { mistakes, warnings, exponentials, .. } = reader.builder;
+    let span = Span::new(offset, offset + text.len());
+    let keyword_span = Span::new(offset, offset + keyword.word.len());
+    let statement = statement.filter(|_| mistakes.is_empty());
+    let declarations_lost = keyword.declares && statement.is_none();
+    Outcome {
+        statement: statement.map(|statement| Located { statement, span, keyword: keyword_span }),
+        mistakes,
+        warnings,
+        exponentials,
+        declarations_lost,
+    }
+}
+
+struct Reader {
+    builder: Builder,
+}
+
+impl Reader {
+    fn statement(&mut self, pair: Pair<Rule>) -> Option<Statement> {
+        let rule = pair.as_rule();
+        let whole = self.builder.span(&pair);
+        let mut parts =
+            pair.into_inner().filter(|part| !matches!(part.as_rule(), Rule::EOI | Rule::comma | Rule::equals));
+        Some(match rule {
+            Rule::title => Statement::Title(parts.next()?.as_str().trim_matches('"').trim().to_string()),
+            Rule::goods => Statement::Goods(self.goods(parts.collect())?),
+            Rule::group => {
+                let name = self.builder.name(&parts.next()?);
+                Statement::Group { name, members: parts.flat_map(|part| self.members(part)).collect() }
+            }
+            Rule::prices => Statement::Prices(self.declarations(parts)),
+            Rule::quantities => Statement::Quantities(self.declarations(parts)),
+            Rule::parameters => Statement::Parameters(self.declarations(parts)),
+            Rule::income => Statement::Income(self.declared(parts.next()?)?),
+            Rule::utility => Statement::Utility(self.declared(parts.next()?)?),
+            Rule::others => Statement::Others(self.others(parts)),
+            Rule::assume => Statement::Assume(parts.filter_map(|part| self.relation(part)).collect()),
+            Rule::claim => Statement::Claim(Claim::Relation(self.relation(parts.next()?)?)),
+            Rule::abbreviation => {
+                let name = self.declared(parts.next()?)?;
+                Statement::Let { name, value: self.builder.expression(parts.next()?, 0) }
+            }
+            Rule::demand => {
+                let form = form(parts.next()?.as_str());
+                let target = self.target(parts.next()?)?;
+                Statement::Demand(Equation { form, target, value: self.builder.expression(parts.next()?, 0) })
+            }
+            Rule::rest => Statement::Rest(self.target(parts.next()?)?),
+            _ => {
+                self.builder.mistakes.push(Diagnostic::error(whole, "this is not a statement"));
+                return None;
+            }
+        })
+    }
+
+    fn goods(&mut self, parts: Vec<Pair<Rule>>) -> Option<Goods> {
+        let Some(range) = parts.first().filter(|part| part.as_rule() == Rule::range) else {
+            return Some(Goods::Named(parts.iter().map(|part| self.builder.name(part)).collect()));
+        };
+        let span = self.builder.span(range);
+        let numbers: Vec<u32> = self.range_ends(range.clone())?;
+        match numbers[..] {
+            [1, last] if last >= 1 => Some(Goods::Numbered { last, span }),
+            [1, _] => self.refuse(span, "this range is empty", "write goods 1..4 for four goods"),
+            _ => self.refuse(span, "numbered goods begin with 1", "write goods 1..4 for four goods"),
+        }
+    }
+
+    /// The numbers of a range, within the bound.
+    fn range_ends(&mut self, range: Pair<Rule>) -> Option<Vec<u32>> {
+        let ends: Vec<_> = range.into_inner().filter(|part| part.as_rule() == Rule::good_number).collect();
+        let numbers: Vec<u32> = ends.iter().filter_map(|part| part.as_str().parse().ok()).collect();
+        if numbers.len() == ends.len() && numbers.iter().all(|number| *number <= MAX_GOODS) {
+            return Some(numbers);
+        }
+        let span = ends.last().map(|part| self.builder.span(part)).unwrap_or_default();
+        self.refuse(span, &format!("a model may have at most {MAX_GOODS} goods"), "take a smaller number")
+    }
+
+    /// A good of a group, or the goods of a range.
+    fn members(&mut self, member: Pair<Rule>) -> Vec<(Index, Span)> {
+        let span = self.builder.span(&member);
+        let named = member.clone().into_inner().find(|part| part.as_rule() == Rule::good);
+        if let Some(good) = named {
+            return vec![(Index::Name(self.builder.name(&good).text), span)];
+        }
+        match self.range_ends(member).as_deref() {
+            Some([one]) => vec![(Index::Number(*one), span)],
+            Some([first, last]) if first <= last => (*first..=*last).map(|good| (Index::Number(good), span)).collect(),
+            Some(_) => self.refuse(span, "this range is empty", "write the smaller number first").unwrap_or_default(),
+            None => Vec::new(),
+        }
+    }
+
+    fn others<'a>(&mut self, parts: impl Iterator<Item = Pair<'a, Rule>>) -> Others {
+        let prices = self.declarations(parts);
+        match &prices[..] {
+            [one] if one.name.text == "deflated" && one.indices.is_empty() && one.latex.is_none() => Others::Deflated,
+            _ => Others::Prices(prices),
+        }
+    }
+
+    fn declarations<'a>(&mut self, parts: impl Iterator<Item = Pair<'a, Rule>>) -> Vec<Declared> {
+        parts.filter_map(|part| self.declared(part)).collect()
+    }
+
+    fn declared(&mut self, pair: Pair<Rule>) -> Option<Declared> {
+        let span = self.builder.span(&pair);
+        let mut parts = pair.into_inner();
+        let name = self.builder.name(&parts.next()?);
+        let (mut indices, mut latex) = (Vec::new(), None);
+        for part in parts {
+            if part.as_rule() == Rule::declared_indices {
+                let names = part.into_inner().filter(|part| part.as_rule() == Rule::index_name);
+                indices.extend(names.map(|part| self.builder.name(&part)));
+            } else {
+                let form = part.into_inner().find(|part| part.as_rule() == Rule::latex);
+                latex = form.and_then(|form| self.latex(&form));
+            }
+        }
+        if Function::from_word(&name.text).is_some() || name.text == "pi" {
+            let what = if name.text == "pi" { "the number π" } else { "a function of the language" };
+            let message = format!("`{}` is {what}, and cannot be declared", name.text);
+            return self.refuse(name.span, &message, "choose another name");
+        }
+        Some(Declared { name, indices, latex, span })
+    }
+
+    fn latex(&mut self, form: &Pair<Rule>) -> Option<String> {
+        match latex_form(form.as_str()) {
+            Ok(latex) => Some(latex),
+            Err(message) => {
+                let start = self.builder.span(form).start;
+                let span = Span::new(start, start + form.as_str().trim_end().len());
+                self.refuse(
+                    span,
+                    &message,
+                    "write letters, Greek letters, accents, sub- and superscripts, as in `s as \\sigma`",
+                )
+            }
+        }
+    }
+
+    fn relation(&mut self, pair: Pair<Rule>) -> Option<Relation> {
+        let span = self.builder.span(&pair);
+        let mut parts = pair.into_inner();
+        let first = self.builder.expression(parts.next()?, 0);
+        let mut rest = Vec::new();
+        while let (Some(sign), Some(side)) = (parts.next(), parts.next()) {
+            rest.push((comparison(sign.as_str()), self.builder.expression(side, 0)));
+        }
+        Some(Relation { first, rest, span })
+    }
+
+    fn target(&mut self, pair: Pair<Rule>) -> Option<Target> {
+        let part = pair.into_inner().next()?;
+        if part.as_rule() == Rule::good {
+            return Some(Target::Good(self.builder.name(&part)));
+        }
+        let (index, span) = self.builder.indices(part).into_iter().next()?;
+        Some(Target::Indexed(index, span))
+    }
+
+    fn refuse<T>(&mut self, span: Span, message: &str, remedy: &str) -> Option<T> {
+        self.builder.mistakes.push(Diagnostic::error(span, message).remedy(remedy));
+        None
+    }
+}
+
+/// The most goods that a model may have.
+const MAX_GOODS: u32 = 1000;
+
+fn form(words: &str) -> Form {
+    match leading_word(words) {
+        "share" => Form::Share,
+        "outlay" => Form::Outlay,
+        "log" => Form::LogDemand,
+        _ => Form::Demand,
+    }
+}
+
+fn comparison(sign: &str) -> Comparison {
+    match sign {
+        "!=" => Comparison::NotEqual,
+        "<" => Comparison::Less,
+        "<=" => Comparison::LessEqual,
+        ">" => Comparison::Greater,
+        ">=" => Comparison::GreaterEqual,
+        _ => Comparison::Equal,
+    }
+}

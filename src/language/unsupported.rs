@@ -1,0 +1,105 @@
+//! Forms of the language that this version does not read: each is recognised, and refused by name.
+
+use super::diagnostic::Diagnostic;
+use super::letters::leading_word;
+use super::place::{leading_number, leading_token};
+use super::syntax::Span;
+
+/// The refusal of a statement, where its form is one that this version does not read.
+pub fn refusal(text: &str, offset: usize) -> Option<Diagnostic> {
+    let keyword = leading_word(text);
+    let rest = text[keyword.len()..].trim_start();
+    let (subject, remedy) = match keyword {
+        "given" => (format!("stating preferences (`{}`) is", given(rest)), DEMANDS_ONLY),
+        "inverse" => ("inverse demand (`inverse GOOD = …`) is".to_string(), DEMANDS_ONLY),
+        "scenario" => ("a price change to be measured (`scenario \"…\": …`) is".to_string(), TAKE_OUT),
+        "goods" => {
+            let range = symbolic_range(rest)?;
+            (format!("a number of goods that is left open (`{range}`) is"), "write a number, as in goods 1..4")
+        }
+        "claim" => (format!("claims of the form `{}` are", claim(rest)?), PLAIN_CLAIMS),
+        _ => return None,
+    };
+    let message = format!("{subject} not supported yet by this version");
+    Some(Diagnostic::error(form_span(text, offset), message).remedy(remedy))
+}
+
+/// The refusal of a formula between `$` signs.
+pub fn latex_formula(span: Span) -> Diagnostic {
+    let message = "formulas in LaTeX, between `$` signs, are not supported yet by this version";
+    Diagnostic::error(span, message).remedy("write the formula in the model file's own signs: a_b * m / p_b")
+}
+
+const DEMANDS_ONLY: &str = "write the system with `demand`, `share`, `outlay` or `log demand`";
+const TAKE_OUT: &str = "take the statement out, or put `#` before its lines";
+const PLAIN_CLAIMS: &str = "claims may be identities and inequalities between the model's names: claim a + b = 1";
+
+/// What comes before `=` or `:`, at most the first line.
+fn form_span(text: &str, offset: usize) -> Span {
+    let line = text.find('\n').unwrap_or(text.len());
+    let end = text[..line].find(['=', ':']).unwrap_or(line);
+    Span::new(offset, offset + text[..end].trim_end().len())
+}
+
+/// The words at the beginning of a text, up to the first sign.
+fn words(text: &str) -> Vec<&str> {
+    let mut words = Vec::new();
+    let mut rest = text.trim_start();
+    loop {
+        let word = leading_word(rest);
+        if word.is_empty() || words.len() == 4 {
+            return words;
+        }
+        words.push(word);
+        rest = rest[word.len()..].trim_start();
+    }
+}
+
+fn given(rest: &str) -> &'static str {
+    match words(rest)[..] {
+        ["utility", ..] => "given utility = …",
+        ["indirect", "utility", ..] => "given indirect utility = …",
+        ["expenditure", ..] => "given expenditure = …",
+        _ => "given …",
+    }
+}
+
+fn symbolic_range(rest: &str) -> Option<String> {
+    let first = leading_number(rest);
+    let last = leading_word(rest[first.len()..].trim_start().strip_prefix("..")?.trim_start());
+    if first.is_empty() || last.is_empty() { None } else { Some(format!("goods {first}..{last}")) }
+}
+
+/// The form of a claim that is neither an identity nor an inequality.
+fn claim(rest: &str) -> Option<String> {
+    let words = words(rest);
+    let after = |count: usize| {
+        let mut tail = rest;
+        for word in words.iter().take(count) {
+            tail = tail.trim_start().get(word.len()..).unwrap_or("");
+        }
+        leading_token(tail.trim_start())
+    };
+    Some(match words[..] {
+        ["demand" | "hicksian" | "share" | "outlay" | "inverse", _] if after(2) == "=" => {
+            format!("claim {} GOOD = …", words[0])
+        }
+        ["demand" | "hicksian" | "share" | "outlay" | "inverse"] if after(1) == "[" => {
+            format!("claim {}[…] = …", words[0])
+        }
+        ["expenditure" | "utility"] if after(1) == "=" => format!("claim {} = …", words[0]),
+        ["indirect", "utility", ..] => "claim indirect utility = …".to_string(),
+        ["slutsky" | "elasticity"] if after(1) == "[" => format!("claim {}[…] = …", words[0]),
+        ["compensated", "elasticity", ..] => "claim compensated elasticity[…] = …".to_string(),
+        ["separable", _] => "claim separable GROUP".to_string(),
+        _ => {
+            let condition = rest.split_whitespace().next()?;
+            let tail = rest.get(condition.len()..)?.trim_start();
+            match self::words(tail)[..] {
+                [link @ ("iff" | "if"), ..] => format!("claim {condition} {link} …"),
+                ["only", "if", ..] => format!("claim {condition} only if …"),
+                _ => return None,
+            }
+        }
+    })
+}
