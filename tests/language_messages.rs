@@ -82,7 +82,7 @@ fn slips_in_formulas() {
         "sum over j of a[j] * b[j]",
         "sum over of (a[j])",
         "sum over j, k != i of (a[j,k])",
-        "sum over j in in of (a[j])",
+        "sum over j in food in drink of (a[j])",
         "sum over j != of (a[j])",
         "pi[1] + pi(2)",
         "a < b",

@@ -308,7 +308,7 @@ impl Builder {
                 Rule::aggregate_kind => product = part.as_str() == "product",
                 Rule::binder => binders.push(self.name(&part)),
                 Rule::except => excepts.extend(self.indices(part)),
-                Rule::within => groups.extend(part.into_inner().map(|name| self.name(&name))),
+                Rule::within => groups.extend(part.into_inner().next_back().map(|name| self.name(&name))),
                 Rule::body => body = self.inside(part, depth),
                 _ => {}
             }
