@@ -129,6 +129,30 @@ proptest! {
         }
     }
 
+    /// At a dyadic point the value at a coarse precision encloses the one at a fine precision: no rounding or remainder
+    /// goes uncounted.
+    #[test]
+    fn coarse_values_enclose_fine_ones(n in 1i64..1_000_000, bits in 8u32..100) {
+        for (name, f, low, high) in FUNCTIONS {
+            // eight bits fit every precision
+            let point = Interval::point(enclosed(&within(low, high, &rational(n, 1 << 20)), 8).lo(), 8);
+            if point.lo().is_zero() {
+                continue;
+            }
+            let [coarse, fine] = [bits, bits + 150].map(|bits| f(&point.with_bits(bits)).unwrap());
+            prop_assert!(coarse.encloses(&fine), "{} at {:?} with {} bits", name, point.lo(), bits);
+        }
+    }
+
+    /// Terms of very different sizes: the smaller one still decides the direction of rounding.
+    #[test]
+    fn sums_of_far_apart_terms(x in fraction(), y in fraction(), far in -300i64..300, bits in precision()) {
+        let (a, b) = (enclosed(&x, bits), enclosed(&y, bits).scaled(far));
+        let exact = &x + &y * rational(2, 1).pow(i32::try_from(far).unwrap());
+        prop_assert!(a.add(&b).contains(&exact));
+        prop_assert!(a.sub(&a.add(&b)).contains(&(&x - &exact)));
+    }
+
     /// At a dyadic point the value is as narrow as the precision allows, up to a few units in the last place. (Ei has a
     /// zero at 0.3725, near which the precision is absolute.)
     #[test]

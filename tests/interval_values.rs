@@ -1,6 +1,7 @@
 //! Known values to many digits. A quoted decimal is within one unit of its last place; an enclosure must meet that
 //! span and, at 192 bits, be no wider than 10^-45 relative to the value.
 
+use mainspring::algebra::budget::{self, Stopped};
 use mainspring::algebra::interval::{Interval, Toward};
 use mainspring::algebra::number::{Rational, rational};
 use num_bigint::BigInt;
@@ -186,4 +187,15 @@ fn even_powers_are_tight_and_exact_results_stay_points() {
     assert_eq!(ends(at("8").root(3)), two);
     assert_eq!(ends(at("0.25").pow(&at("-1")).unwrap().sqrt()), two);
     assert_eq!(ends(at("16").pow_int(-1).map(|x| x.scaled(5))), two);
+}
+
+/// Exponents may be far apart without filling memory; beyond all bounds the computation ends as one too large.
+#[test]
+fn enormous_exponents_are_cheap_or_refused() {
+    let huge = at("3").pow_int(1 << 30).unwrap();
+    let sum = huge.add(&huge.recip().unwrap());
+    assert!(sum.encloses(&huge) && sum.width().top() - sum.lo().top() < -150);
+    assert!(huge.ln().unwrap().intersection(&at("3").ln().unwrap().scaled(30)).is_some());
+    assert_eq!(budget::attempt(10_000, || at("3").pow_int(i64::MAX)), Err(Stopped::Size));
+    assert_eq!(budget::attempt(10_000, || huge.to_decimal_bounds(5)), Err(Stopped::Size));
 }

@@ -28,6 +28,8 @@ thread_local! {
 /// An integer `v` with `v ≤ c·2^places ≤ v + 2`. A kept value at more places is cut: if `w ≤ c·2^(places+s) ≤ w + 2`
 /// and `v = ⌊w/2^s⌋` with `s ≥ 1`, then `c·2^places < v + 1 + 2/2^s ≤ v + 2`.
 pub(super) fn fixed(constant: Constant, places: u32) -> BigInt {
+    // The same charge whether or not the value is kept, so that the work does not depend on what ran before.
+    budget::spend(u64::from(places / 8));
     let slot = constant as usize;
     let cut = |kept: &Kept| (kept.places >= places).then(|| &kept.value >> (kept.places - places));
     if let Some(value) = KEPT.with_borrow(|all| all[slot].as_ref().and_then(cut)) {
@@ -92,7 +94,6 @@ fn inverse_series(q: u32, places: u32, alternating: bool) -> (BigInt, u64) {
         power /= square;
         n += 1;
     }
-    budget::spend(n);
     (sum, 3 * n + 3)
 }
 
@@ -160,7 +161,6 @@ fn brent_mcmillan_sums(n: u64, places: u32) -> [(BigInt, BigInt); 2] {
         s.0 += (&term.0 * &harmonic) >> places;
         s.1 += ((&term.1 * (&harmonic + k)) >> places) + 1;
     }
-    budget::spend(k);
     let left_out = ((&term.1 * (harmonic + k)) >> (places - 1)) + 2;
     i.1 += &left_out;
     s.1 += left_out;
