@@ -104,6 +104,12 @@ pub(super) fn exp_at(x: &Dyadic, bits: u32) -> Option<Interval> {
     if x.is_zero() {
         return Some(Interval::one(bits));
     }
+    let [lo, hi] = exp_bounds(x, bits);
+    Some(Interval::between(lo, hi, bits))
+}
+
+/// Bounds on `e^x` for `|x| < 2^20`, a few bits closer than `bits`.
+fn exp_bounds(x: &Dyadic, bits: u32) -> [Dyadic; 2] {
     let halvings = 3 + bits.isqrt() / 2;
     let places = bits + halvings + 8 + (u32::BITS - bits.leading_zeros());
     let (k, r) = reduce_by_ln2(x, places);
@@ -118,7 +124,7 @@ pub(super) fn exp_at(x: &Dyadic, bits: u32) -> Option<Interval> {
     let error = BigInt::from(3 * terms + 8 + u64::from(halvings)) << (halvings + 2);
     let exponent = k - i64::from(places);
     let high = Dyadic::new(&value + error, exponent);
-    Some(Interval::between(Dyadic::new(value, exponent), high, bits))
+    [Dyadic::new(value, exponent), high]
 }
 
 /// `k` and an integer `r ≥ 0` with `x = k·ln 2 + ρ`, `r ≤ ρ·2^places ≤ r + 4`, and ρ exceeding ln 2 by 2^−16 at most.
@@ -172,16 +178,23 @@ pub(super) fn ln_at(x: &Dyadic, bits: u32) -> Option<Interval> {
 }
 
 /// Encloses `2·artanh(n/d)` for `|n/d| < 0.18`, `d > 0`.
-///
-/// With `z` in units, cut by less than 1, and `z²` cut by less than 2, each power `z^(2j+1)` is low by less than 2 units
-/// and each term by less than 3. The power that is cut to zero is below 2 units, and so is the remainder.
 fn twice_artanh(n: &BigInt, d: &BigInt, bits: u32) -> Interval {
     if n.is_zero() {
         return Interval::zero(bits);
     }
+    let [lo, hi] = artanh_bounds(&n.abs(), d, bits).map(|bound| bound.scaled(1));
+    let positive = Interval::between(lo, hi, bits);
+    if n.is_negative() { positive.neg() } else { positive }
+}
+
+/// Bounds on `artanh(n/d)` for `0 < n/d < 0.18`, a few bits closer than `bits`.
+///
+/// With `z` in units, cut by less than 1, and `z²` cut by less than 2, each power `z^(2j+1)` is low by less than 2 units
+/// and each term by less than 3. The power that is cut to zero is below 2 units, and so is the remainder.
+fn artanh_bounds(n: &BigInt, d: &BigInt, bits: u32) -> [Dyadic; 2] {
     let small = d.bits().saturating_sub(n.bits());
     let places = u64::from(bits) + small + 6 + u64::from(u32::BITS - bits.leading_zeros());
-    let z = (n.abs() << places) / d;
+    let z = (n << places) / d;
     let square = (&z * &z) >> places;
     let mut power = z;
     let mut sum = power.clone();
@@ -192,9 +205,28 @@ fn twice_artanh(n: &BigInt, d: &BigInt, bits: u32) -> Interval {
         sum += &power / (2 * j + 1);
     }
     budget::spend(j);
-    let exponent = 1 - i64::try_from(places).unwrap_or(i64::MAX);
-    let lo = Dyadic::new(sum.clone(), exponent);
-    let hi = Dyadic::new(sum + (3 * j + 5), exponent);
-    let positive = Interval::between(lo, hi, bits);
-    if n.is_negative() { positive.neg() } else { positive }
+    let exponent = -i64::try_from(places).unwrap_or(i64::MAX);
+    [Dyadic::new(sum.clone(), exponent), Dyadic::new(sum + (3 * j + 5), exponent)]
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// The bounds before their last rounding, which would hide a missing unit of error.
+    fn assert_nested(coarse: &[Dyadic; 2], fine: &[Dyadic; 2], what: &str) {
+        assert!(coarse[0] <= fine[0] && fine[1] <= coarse[1], "{what}: {coarse:?} misses {fine:?}");
+    }
+
+    #[test]
+    fn counted_errors_cover_the_true_value() {
+        for i in 1i64..400 {
+            for bits in [8, 9, 13, 30, 64] {
+                let x = Dyadic::new((i * 7919 - 1_600_000).into(), -14 - i % 9);
+                assert_nested(&exp_bounds(&x, bits), &exp_bounds(&x, bits + 100), "exp");
+                let (n, d) = (BigInt::from(i), BigInt::from(i * 6 + i % 37));
+                assert_nested(&artanh_bounds(&n, &d, bits), &artanh_bounds(&n, &d, bits + 100), "artanh");
+            }
+        }
+    }
 }

@@ -92,3 +92,19 @@ fn tail_bounds(y: &Dyadic, depth: u64, places: u32) -> Interval {
     budget::spend(depth);
     Interval::between(Dyadic::new(lo, -unit), Dyadic::new(hi, -unit), places)
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn the_tails_of_the_fraction_are_nested() {
+        for i in 1i64..200 {
+            let y = Dyadic::new((i * 7919).into(), -9 - i % 4);
+            let [coarse, deep] = [(5, 10), (200, 120)].map(|(depth, places)| tail_bounds(&y, depth, places));
+            assert!(coarse.encloses(&deep), "{coarse:?} misses {deep:?}");
+            let rough = tail_bounds(&y, 200, 10);
+            assert!(rough.encloses(&deep), "{rough:?} misses {deep:?}");
+        }
+    }
+}
