@@ -1,0 +1,178 @@
+//! Documents as LaTeX: a fragment to be read with `\input`, or a whole document that compiles by itself.
+//!
+//! Only amsmath is asked for; everything is ASCII; no environment holds a blank line.
+
+use crate::render::document::{Block, Document, Equation, Inline, Table, VerdictLine};
+use crate::render::formula_latex::typeset;
+use crate::render::latex_display::{COLUMN, display, matrix, relation_latex};
+use crate::render::latex_escape::escape;
+use crate::render::latex_pieces::Style;
+use crate::render::latex_where::Namer;
+
+/// Formulas in running text that are wider than this, in hundredths of an em, are displayed.
+const WIDEST_INLINE: u32 = 2000;
+
+/// The document as a fragment, with `header` as comment lines at the top. It needs amsmath.
+pub fn fragment(document: &Document, header: &[String]) -> String {
+    let mut out = comments(header);
+    if let Some(title) = &document.title {
+        out.push_str(&comments(std::slice::from_ref(title)));
+    }
+    out.push_str("\\begingroup\\emergencystretch=3em\\relax\n");
+    out.push_str(&body(document, ["subsection*", "subsubsection*", "paragraph"]));
+    out.push_str("\\par\\endgroup\n");
+    out
+}
+
+/// The document as a LaTeX document, with `header` as comment lines at the top.
+pub fn whole(document: &Document, header: &[String]) -> String {
+    let mut out = comments(header);
+    out.push_str("\\documentclass{article}\n\\usepackage{amsmath}\n\\usepackage{amssymb}\n");
+    out.push_str("\\allowdisplaybreaks\n\\setlength{\\emergencystretch}{3em}\n");
+    if let Some(title) = &document.title {
+        out.push_str(&format!("\\title{{{}}}\n\\author{{}}\n\\date{{}}\n", escape(title)));
+    }
+    out.push_str("\\begin{document}\n");
+    if document.title.is_some() {
+        out.push_str("\\maketitle\n");
+    }
+    out.push_str(&body(document, ["section*", "subsection*", "paragraph"]));
+    out.push_str("\\end{document}\n");
+    out
+}
+
+fn comments(lines: &[String]) -> String {
+    let clean = |line: &String| {
+        let ascii = line.chars().map(|each| if each.is_ascii() && !each.is_control() { each } else { ' ' });
+        format!("% {}\n", ascii.collect::<String>().trim())
+    };
+    lines.iter().map(clean).collect()
+}
+
+fn body(document: &Document, headings: [&str; 3]) -> String {
+    let mut namer = Namer::new(document);
+    let blocks: Vec<String> = document.blocks.iter().map(|each| block(each, headings, &mut namer)).collect();
+    let mut out = String::new();
+    for (position, tex) in blocks.iter().enumerate() {
+        if position > 0 && begins_paragraph(&document.blocks[position]) {
+            out.push('\n');
+        }
+        out.push_str(tex);
+    }
+    out
+}
+
+/// A display belongs to the paragraph in front of it; everything else begins a paragraph.
+fn begins_paragraph(block: &Block) -> bool {
+    !matches!(block, Block::Display(_) | Block::Matrix(_))
+}
+
+fn block(block: &Block, headings: [&str; 3], namer: &mut Namer) -> String {
+    match block {
+        Block::Heading { level, text } => {
+            let command = headings[usize::from(*level).clamp(1, 3) - 1];
+            format!("\\{command}{{{}}}\n", running(text, false, namer))
+        }
+        Block::Paragraph(text) => format!("{}\n", running(text, true, namer)),
+        Block::Display(equations) => display(equations, namer),
+        Block::Verdicts(lines) => verdicts(lines, namer),
+        Block::Table(each) => table(each, namer),
+        Block::Matrix(each) => matrix(each, namer),
+        Block::List { ordered, items } => {
+            let items: Vec<String> = items.iter().map(|item| running(item, true, namer)).collect();
+            list(if *ordered { "enumerate" } else { "itemize" }, &items)
+        }
+        Block::Note(text) => format!("\\emph{{Note.}} {}\n", running(text, true, namer)),
+    }
+}
+
+/// Running text; a wide formula becomes a display where that `may_display`.
+fn running(inlines: &[Inline], may_display: bool, namer: &mut Namer) -> String {
+    let mut out = String::new();
+    for inline in inlines {
+        match inline {
+            Inline::Text(words) => out.push_str(&escape(words)),
+            Inline::Emphasis(words) => out.push_str(&format!("\\emph{{{}}}", escape(words))),
+            Inline::Code(words) => out.push_str(&format!("\\texttt{{{}}}", escape(words))),
+            Inline::Math(equation) => {
+                let (tex, width) = inline_math(equation);
+                match may_display && width > WIDEST_INLINE {
+                    true => {
+                        let end = if out.is_empty() || out.ends_with('\n') { "" } else { "\n" };
+                        out.push_str(&format!("{end}{}", display(std::slice::from_ref(&**equation), namer)));
+                    }
+                    false => out.push_str(&format!("${tex}$")),
+                }
+            }
+        }
+    }
+    out.trim_end().to_string()
+}
+
+fn inline_math(equation: &Equation) -> (String, u32) {
+    let right = typeset(&equation.right, Style::Text);
+    let left = equation.left.as_ref().map(|left| typeset(left, Style::Text));
+    let mut parts = Vec::new();
+    parts.extend(left.as_ref().map(|left| left.tex.as_str()));
+    parts.extend(equation.relation.map(relation_latex));
+    parts.push(&right.tex);
+    (parts.join(" "), right.width + left.as_ref().map_or(0, |left| left.width) + 160)
+}
+
+fn list(environment: &str, items: &[String]) -> String {
+    let lines: Vec<String> = items.iter().map(|item| format!("  \\item {item}\n")).collect();
+    match items.is_empty() {
+        true => String::new(),
+        false => format!("\\begin{{{environment}}}\n{}\\end{{{environment}}}\n", lines.concat()),
+    }
+}
+
+fn verdicts(lines: &[VerdictLine], namer: &mut Namer) -> String {
+    let mut items = Vec::new();
+    for line in lines {
+        let note = running(&line.note, true, namer);
+        let joint = if note.is_empty() { "." } else { "; " };
+        items.push(format!("{}: \\emph{{{}}}{joint}{note}", escape(&line.name), escape(&line.verdict)));
+    }
+    list("itemize", &items)
+}
+
+fn table(table: &Table, namer: &mut Namer) -> String {
+    let columns = table.columns.len();
+    let rows = || std::iter::once(&table.columns).chain(&table.rows);
+    let widest = |column: usize| rows().filter_map(|row| row.get(column)).map(|cell| cell_width(cell)).max();
+    let width: u32 = (0..columns).map(|column| widest(column).unwrap_or(0) + 120).sum();
+    if width > COLUMN {
+        return table_as_list(table, namer);
+    }
+    let mut line = |row: &Vec<Vec<Inline>>| {
+        let cells: Vec<String> = row.iter().map(|cell| running(cell, false, namer)).collect();
+        format!("  {} \\\\\n", cells.join(" & "))
+    };
+    let head = line(&table.columns);
+    let body: String = table.rows.iter().map(line).collect();
+    let shape = "l".repeat(columns);
+    format!(
+        "\\begin{{center}}\n\\begin{{tabular}}{{{shape}}}\n  \\hline\n{head}  \\hline\n{body}  \\hline\n\\end{{tabular}}\n\\end{{center}}\n"
+    )
+}
+
+/// A table that is too wide, as one item a row.
+fn table_as_list(table: &Table, namer: &mut Namer) -> String {
+    let heads: Vec<String> = table.columns.iter().map(|head| running(head, false, namer)).collect();
+    let mut items = Vec::new();
+    for row in &table.rows {
+        let cells: Vec<String> = row.iter().map(|cell| running(cell, true, namer)).collect();
+        let named: Vec<String> = heads.iter().zip(&cells).map(|(head, cell)| format!("{head}: {cell}")).collect();
+        items.push(named.join("; "));
+    }
+    list("itemize", &items)
+}
+
+fn cell_width(cell: &[Inline]) -> u32 {
+    let width = |inline: &Inline| match inline {
+        Inline::Text(words) | Inline::Emphasis(words) | Inline::Code(words) => 48 * words.chars().count() as u32,
+        Inline::Math(equation) => inline_math(equation).1,
+    };
+    cell.iter().map(width).sum()
+}

@@ -1,0 +1,291 @@
+//! Long formulas in LaTeX: where they may be broken, and the best way to do it.
+//!
+//! A formula that is wider than its room is opened at its outermost sums, and only where a term is too wide by itself
+//! inside that term's brackets. Brackets that are opened are `\bigl( \bigr)`, since `\left( \right)` cannot cross lines.
+
+use crate::algebra::formula::Function;
+use crate::render::expression::Expression;
+use crate::render::formula_latex::{factor_piece, raise, signed, typeset};
+use crate::render::latex_pieces::{Level, MINUS_WIDTH, Piece, SIGN_WIDTH, Style};
+use num_traits::One;
+
+/// How a chunk hangs together with the one before it.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Join {
+    /// It begins the formula.
+    Start,
+    /// A term of a sum; a line may begin here.
+    Plus,
+    /// A term of a sum with a minus; a line may begin here.
+    Minus,
+    /// A factor of a product; a line may begin here, if it must.
+    Times(&'static str),
+}
+
+/// A part of a formula that stays on one line.
+#[derive(Clone, Debug)]
+struct Chunk {
+    tex: String,
+    width: u32,
+    height: u8,
+    join: Join,
+    depth: u32,
+}
+
+/// A line of a display after the first, or the first.
+pub struct Line {
+    /// The LaTeX, with the sign that a continued line begins with.
+    pub tex: String,
+    /// How many brackets are open where the line begins.
+    pub depth: u32,
+}
+
+/// Sets an expression on as many lines as it needs: the first has `first` hundredths of an em of room, the others
+/// `rest`, less one em for each open bracket.
+pub fn lines(expression: &Expression, first: u32, rest: u32) -> Vec<Line> {
+    let whole = typeset(expression, Style::Display);
+    if whole.width <= first {
+        return vec![Line { tex: whole.tex, depth: 0 }];
+    }
+    let mut chunks = Vec::new();
+    flow(expression, rest, 0, &mut chunks);
+    fill(&chunks, first, rest)
+}
+
+/// Takes an expression apart into chunks no wider than `room`, as far as it can be opened.
+fn flow(expression: &Expression, room: u32, depth: u32, out: &mut Vec<Chunk>) {
+    let piece = typeset(expression, Style::Display);
+    if let Expression::Sum(terms) = expression {
+        return flow_sum(terms, room, depth, out);
+    }
+    if piece.width <= room {
+        return out.push(chunk(piece, depth));
+    }
+    match expression {
+        Expression::Negative(inner) => {
+            let start = out.len();
+            flow_factor(inner, None, room, depth, out);
+            put_before(&mut out[start..], "-", MINUS_WIDTH);
+        }
+        Expression::Product(factors) => flow_product(factors, room, depth, out),
+        Expression::Quotient(above, below) => flow_quotient(above, below, room, depth, out),
+        _ => flow_factor(expression, None, room, depth, out),
+    }
+}
+
+fn chunk(piece: Piece, depth: u32) -> Chunk {
+    Chunk { tex: piece.tex, width: piece.width, height: piece.height, join: Join::Start, depth }
+}
+
+fn flow_sum(terms: &[Expression], room: u32, depth: u32, out: &mut Vec<Chunk>) {
+    for (position, term) in terms.iter().enumerate() {
+        let (minus, positive) = signed(term);
+        let start = out.len();
+        let piece = typeset(&positive, Style::Display).at_least(Level::Ratio);
+        match piece.width + SIGN_WIDTH <= room {
+            true => out.push(chunk(piece, depth)),
+            false => flow(&positive, room.saturating_sub(SIGN_WIDTH), depth, out),
+        }
+        match (position, minus) {
+            (0, true) => put_before(&mut out[start..], "-", MINUS_WIDTH),
+            (0, false) => {}
+            (_, true) => join_at(out, start, Join::Minus),
+            (_, false) => join_at(out, start, Join::Plus),
+        }
+    }
+}
+
+fn join_at(chunks: &mut [Chunk], position: usize, join: Join) {
+    if let Some(chunk) = chunks.get_mut(position) {
+        chunk.join = join;
+    }
+}
+
+fn put_before(chunks: &mut [Chunk], tex: &str, width: u32) {
+    if let Some(first) = chunks.first_mut() {
+        first.tex.insert_str(0, tex);
+        first.width += width;
+    }
+}
+
+fn put_behind(chunks: &mut [Chunk], tex: &str, width: u32) {
+    if let Some(last) = chunks.last_mut() {
+        last.tex.push_str(tex);
+        last.width += width;
+    }
+}
+
+/// Factors that are wide and can be opened are; the others stand side by side.
+fn flow_product(factors: &[Expression], room: u32, depth: u32, out: &mut Vec<Chunk>) {
+    let mut before: Option<Piece> = None;
+    for (position, factor) in factors.iter().enumerate() {
+        let next = factors.get(position + 1);
+        let piece = factor_piece(factor, next, Style::Display);
+        let joint = before.as_ref().map(|before| before.joint(&piece));
+        let start = out.len();
+        match piece.width > room / 2 && can_open(factor) {
+            true => flow_factor(factor, next, room, depth, out),
+            false => out.push(chunk(piece.clone(), depth)),
+        }
+        if let Some((between, _)) = joint {
+            join_at(out, start, Join::Times(between));
+        }
+        before = Some(piece);
+    }
+}
+
+/// A fraction that is too wide loses the wide factors of its numerator to a bracket behind it.
+fn flow_quotient(above: &Expression, below: &Expression, room: u32, depth: u32, out: &mut Vec<Chunk>) {
+    let factors = match above {
+        Expression::Product(factors) => factors.clone(),
+        other => vec![other.clone()],
+    };
+    let is_wide = |factor: &Expression| can_open(factor) && typeset(factor, Style::Text).width > room / 3;
+    let (wide, narrow): (Vec<Expression>, Vec<Expression>) = factors.into_iter().partition(is_wide);
+    if wide.is_empty() {
+        let whole = Expression::Quotient(Box::new(above.clone()), Box::new(below.clone()));
+        return out.push(chunk(typeset(&whole, Style::Display), depth));
+    }
+    let numerator = match narrow.len() {
+        0 => Expression::Number(One::one()),
+        1 => narrow.into_iter().next().unwrap_or(Expression::Number(One::one())),
+        _ => Expression::Product(narrow),
+    };
+    let fraction = Expression::Quotient(Box::new(numerator), Box::new(below.clone()));
+    let product: Vec<Expression> = std::iter::once(fraction).chain(wide).collect();
+    flow_product(&product, room, depth, out);
+}
+
+/// Whether an expression can go over several lines when it stands as a factor.
+fn can_open(expression: &Expression) -> bool {
+    match expression {
+        Expression::Sum(_) => true,
+        Expression::Power(base, _) => can_open(base),
+        Expression::Call(Function::Sqrt, _) => false,
+        Expression::Call(_, inner) | Expression::Negative(inner) => can_open(inner),
+        Expression::Product(factors) => factors.iter().any(can_open),
+        Expression::Quotient(above, _) => can_open(above),
+        _ => false,
+    }
+}
+
+/// A factor that is opened: its brackets, what stands before and behind them, and what they enclose.
+fn flow_factor(factor: &Expression, next: Option<&Expression>, room: u32, depth: u32, out: &mut Vec<Chunk>) {
+    let start = out.len();
+    match factor {
+        Expression::Sum(terms) => {
+            flow_sum(terms, room.saturating_sub(100), depth + 1, out);
+            enclose(&mut out[start..]);
+        }
+        Expression::Power(base, exponent) if can_open(base) => {
+            flow(base, room.saturating_sub(200), depth + 1, out);
+            enclose(&mut out[start..]);
+            let script = raise(Piece::new("", 0, Level::Atom), exponent);
+            put_behind(&mut out[start..], &script.tex, script.width);
+        }
+        Expression::Call(function, argument) if *function != Function::Sqrt && can_open(argument) => {
+            flow(argument, room.saturating_sub(300), depth + 1, out);
+            enclose(&mut out[start..]);
+            put_before(&mut out[start..], operator(*function), 120);
+        }
+        Expression::Negative(_) | Expression::Quotient(_, _) | Expression::Product(_) if can_open(factor) => {
+            flow(factor, room.saturating_sub(100), depth + 1, out);
+            enclose(&mut out[start..]);
+        }
+        _ => out.push(chunk(factor_piece(factor, next, Style::Display), depth)),
+    }
+}
+
+fn operator(function: Function) -> &'static str {
+    match function {
+        Function::Ln => "\\ln",
+        Function::Exp => "\\exp",
+        Function::Sqrt => "\\sqrt",
+        Function::Ei => "\\operatorname{Ei}",
+        Function::Erf => "\\operatorname{erf}",
+        Function::Erfi => "\\operatorname{erfi}",
+        Function::LambertW => "\\operatorname{W}",
+    }
+}
+
+/// Puts brackets of a size that fits around chunks.
+fn enclose(chunks: &mut [Chunk]) {
+    let (open, close, width) = match chunks.iter().map(|chunk| chunk.height).max() {
+        Some(0) | None => ("\\bigl(", "\\bigr)", 46),
+        Some(_) => ("\\biggl(", "\\biggr)", 74),
+    };
+    put_before(chunks, open, width);
+    put_behind(chunks, close, width);
+}
+
+impl Chunk {
+    /// What the chunk costs as the beginning of a line: outer places are better than inner ones, sums than products.
+    fn cost_of_break(&self) -> u64 {
+        let kind = if matches!(self.join, Join::Times(_)) { 60 } else { 20 };
+        kind + 25 * u64::from(self.depth)
+    }
+
+    fn inside_line(&self) -> (&'static str, u32) {
+        match self.join {
+            Join::Start => ("", 0),
+            Join::Plus => (" + ", SIGN_WIDTH),
+            Join::Minus => (" - ", SIGN_WIDTH),
+            Join::Times(between) => (between, 17),
+        }
+    }
+
+    fn at_line_start(&self) -> (&'static str, u32) {
+        match self.join {
+            Join::Start => ("", 0),
+            Join::Plus => ("{}+ ", SIGN_WIDTH),
+            Join::Minus => ("{}- ", SIGN_WIDTH),
+            Join::Times(_) => ("{}\\times ", SIGN_WIDTH),
+        }
+    }
+}
+
+/// A line never holds more chunks than this.
+const LONGEST_LINE: usize = 200;
+
+/// The cheapest way to fill lines; of equally cheap ones, that with the fuller first lines.
+fn fill(chunks: &[Chunk], first: u32, rest: u32) -> Vec<Line> {
+    let count = chunks.len();
+    let mut cost = vec![u64::MAX; count + 1];
+    let mut next = vec![count; count + 1];
+    cost[count] = 0;
+    for start in (0..count).rev() {
+        let chunk = &chunks[start];
+        let room = if start == 0 { first } else { rest.saturating_sub(100 * chunk.depth) };
+        let own = if start == 0 { 0 } else { chunk.cost_of_break() };
+        let mut width = chunk.at_line_start().1 + chunk.width;
+        for end in start + 1..=count.min(start + LONGEST_LINE) {
+            let excess = u64::from(width.saturating_sub(room));
+            let total = cost[end].saturating_add(own + 1000 * u64::from(excess > 0) + 10 * excess);
+            if total <= cost[start] {
+                cost[start] = total;
+                next[start] = end;
+            }
+            if excess > 0 || end == count {
+                break;
+            }
+            width += chunks[end].inside_line().1 + chunks[end].width;
+        }
+    }
+    let mut lines = Vec::new();
+    let mut start = 0;
+    while start < count {
+        lines.push(compose(&chunks[start..next[start]]));
+        start = next[start];
+    }
+    lines
+}
+
+fn compose(chunks: &[Chunk]) -> Line {
+    let mut tex = String::new();
+    for (position, chunk) in chunks.iter().enumerate() {
+        let (joint, _) = if position == 0 { chunk.at_line_start() } else { chunk.inside_line() };
+        tex.push_str(joint);
+        tex.push_str(&chunk.tex);
+    }
+    Line { tex, depth: chunks.first().map_or(0, |chunk| chunk.depth) }
+}
