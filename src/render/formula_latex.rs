@@ -53,7 +53,7 @@ fn number(value: &Rational, style: Style) -> Piece {
         true => format!("\\tfrac{above}{below}"),
         false => format!("\\tfrac{{{above}}}{{{below}}}"),
     };
-    Piece::new(tex, width, Level::Product).edged(Edge::Digit, Edge::Digit)
+    Piece { brackets: 1, ..Piece::new(tex, width, Level::Product).edged(Edge::Digit, Edge::Digit) }
 }
 
 fn name(set: &SetName) -> Piece {
@@ -116,7 +116,11 @@ pub fn factor_piece(factor: &Expression, next: Option<&Expression>, style: Style
     if let (Expression::Call(Function::Ln, argument), Some(next)) = (factor, next)
         && !matches!(next, Expression::Call(function, _) if *function != Function::Sqrt)
     {
-        return applied("\\ln", 83, typeset(argument, style).bracketed());
+        let whole = call(Function::Ln, argument, style);
+        return match matches!(**argument, Expression::Symbol(_) | Expression::Object(_)) {
+            true => applied("\\ln", 83, typeset(argument, style).bracketed()),
+            false => whole,
+        };
     }
     let piece = typeset(factor, style);
     let reaches_on = piece.level == Level::Ratio || matches!(factor, Expression::Total { .. });
@@ -165,19 +169,17 @@ pub fn raise(base: Piece, exponent: &Expression) -> Piece {
     let exponent = typeset(exponent, Style::Script);
     let width = base.width - base.overhang + base.overhang.max(exponent.script_width());
     let tex = format!("{}^{{{}}}", base.tex, exponent.tex);
-    Piece::new(tex, width, Level::Scripted).tall(base.height).edged(base.starts, Edge::Plain)
+    Piece::new(tex, width, Level::Scripted).around(&base).edged(base.starts, Edge::Plain)
 }
 
 /// Exponentials of arguments up to this width (as a script) are written as powers of e.
 const SHORT_EXPONENT: u32 = 400;
 
 fn call(function: Function, argument: &Expression, style: Style) -> Piece {
-    let set = typeset(argument, style);
+    let simple_ratio = matches!(argument, Expression::Quotient(above, below) if is_simple(above) && is_simple(below));
+    let set = typeset(argument, if simple_ratio && style == Style::Display { Style::Text } else { style });
     match function {
-        Function::Sqrt => {
-            let (width, height) = (set.width + 90, set.height);
-            Piece::new(format!("\\sqrt{{{}}}", set.tex), width, Level::Atom).tall(height)
-        }
+        Function::Sqrt => Piece::new(format!("\\sqrt{{{}}}", set.tex), set.width + 90, Level::Atom).around(&set),
         Function::Exp => {
             let short = typeset(argument, Style::Script);
             match style != Style::Script && short.script_width() <= SHORT_EXPONENT {
@@ -185,7 +187,7 @@ fn call(function: Function, argument: &Expression, style: Style) -> Piece {
                 false => applied("\\exp", 150, set.bracketed()),
             }
         }
-        Function::Ln if matches!(argument, Expression::Symbol(_)) => {
+        Function::Ln if matches!(argument, Expression::Symbol(_) | Expression::Object(_)) => {
             let set = Piece { tex: apart(&set.tex), width: set.width + THIN, ..set };
             Piece { level: Level::Product, ..applied("\\ln", 83, set) }
         }
@@ -200,7 +202,7 @@ fn call(function: Function, argument: &Expression, style: Style) -> Piece {
 /// A function's name with its argument; the whole needs brackets before a script is put on it.
 pub fn applied(function: &str, width: u32, argument: Piece) -> Piece {
     let tex = format!("{function}{}", argument.tex);
-    let piece = Piece::new(tex, width + argument.width, Level::Scripted).tall(argument.height);
+    let piece = Piece::new(tex, width + argument.width, Level::Scripted).around(&argument);
     piece.edged(Edge::Function, Edge::Function)
 }
 

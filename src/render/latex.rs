@@ -43,7 +43,7 @@ pub fn whole(document: &Document, header: &[String]) -> String {
 
 fn comments(lines: &[String]) -> String {
     let clean = |line: &String| {
-        let ascii = line.chars().map(|each| if each.is_ascii() && !each.is_control() { each } else { ' ' });
+        let ascii = line.chars().map(|each| if each.is_ascii() && !each.is_control() { each } else { '?' });
         format!("% {}\n", ascii.collect::<String>().trim())
     };
     lines.iter().map(clean).collect()
@@ -74,7 +74,7 @@ fn block(block: &Block, headings: [&str; 3], namer: &mut Namer) -> String {
             format!("\\{command}{{{}}}\n", running(text, false, namer))
         }
         Block::Paragraph(text) => format!("{}\n", running(text, true, namer)),
-        Block::Display(equations) => display(equations, namer),
+        Block::Display(equations) => display(equations, "", namer),
         Block::Verdicts(lines) => verdicts(lines, namer),
         Block::Table(each) => table(each, namer),
         Block::Matrix(each) => matrix(each, namer),
@@ -86,27 +86,46 @@ fn block(block: &Block, headings: [&str; 3], namer: &mut Namer) -> String {
     }
 }
 
-/// Running text; a wide formula becomes a display where that `may_display`.
+/// Running text; a wide formula becomes a display where that `may_display`, and takes the punctuation behind it along.
 fn running(inlines: &[Inline], may_display: bool, namer: &mut Namer) -> String {
     let mut out = String::new();
-    for inline in inlines {
+    let mut skip = 0;
+    for (position, inline) in inlines.iter().enumerate() {
         match inline {
-            Inline::Text(words) => out.push_str(&escape(words)),
+            Inline::Text(words) => {
+                let rest = escape(&words[skip..]);
+                out.push_str(if out.ends_with('\n') { rest.trim_start() } else { &rest });
+            }
             Inline::Emphasis(words) => out.push_str(&format!("\\emph{{{}}}", escape(words))),
             Inline::Code(words) => out.push_str(&format!("\\texttt{{{}}}", escape(words))),
             Inline::Math(equation) => {
                 let (tex, width) = inline_math(equation);
-                match may_display && width > WIDEST_INLINE {
-                    true => {
-                        let end = if out.is_empty() || out.ends_with('\n') { "" } else { "\n" };
-                        out.push_str(&format!("{end}{}", display(std::slice::from_ref(&**equation), namer)));
-                    }
-                    false => out.push_str(&format!("${tex}$")),
+                if !may_display || width <= WIDEST_INLINE {
+                    out.push_str(&format!("${tex}$"));
+                    skip = 0;
+                    continue;
                 }
+                let mark = punctuation(inlines.get(position + 1));
+                out.truncate(out.trim_end().len());
+                if !out.is_empty() {
+                    out.push('\n');
+                }
+                out.push_str(&display(std::slice::from_ref(&**equation), mark, namer));
+                skip = mark.len();
+                continue;
             }
         }
+        skip = 0;
     }
     out.trim_end().to_string()
+}
+
+/// The comma or full stop that the text goes on with.
+fn punctuation(next: Option<&Inline>) -> &str {
+    match next {
+        Some(Inline::Text(words)) if words.starts_with([',', '.', ';']) => &words[..1],
+        _ => "",
+    }
 }
 
 fn inline_math(equation: &Equation) -> (String, u32) {

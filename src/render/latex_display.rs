@@ -29,20 +29,24 @@ pub fn relation_latex(relation: Relation) -> &'static str {
     }
 }
 
-/// Equations as an `align*`, followed by the definitions of what had to be named.
-pub fn display(equations: &[Equation], namer: &mut Namer) -> String {
-    let known = namer.count();
-    let mut out = align(equations, namer);
-    let mut defined = known;
+/// Equations as an `align*`, followed by the definitions of what had to be named; `mark` is the punctuation at the end.
+pub fn display(equations: &[Equation], mark: &str, namer: &mut Namer) -> String {
+    let mut parts = Vec::new();
+    let mut defined = namer.count();
+    parts.push(align(equations, namer));
     while namer.count() > defined {
         let definitions = namer.definitions_since(defined);
         defined = namer.count();
-        out.push_str("where\n");
-        out.push_str(&align(&definitions, namer));
+        parts.push(align(&definitions, namer));
     }
-    out
+    let environment = |body: String| format!("\\begin{{align*}}\n  {body}\n\\end{{align*}}\n");
+    if let Some(last) = parts.last_mut() {
+        last.push_str(mark);
+    }
+    parts.into_iter().map(environment).collect::<Vec<_>>().join("where\n")
 }
 
+/// The rows of equations that are aligned at their relations.
 fn align(equations: &[Equation], namer: &mut Namer) -> String {
     let lefts: Vec<Option<Piece>> =
         equations.iter().map(|each| each.left.as_ref().map(|left| typeset(left, Style::Display))).collect();
@@ -55,7 +59,7 @@ fn align(equations: &[Equation], namer: &mut Namer) -> String {
             _ => rows.extend(aligned_rows(equation, left.as_ref(), if stacked { 0 } else { margin }, namer)),
         }
     }
-    format!("\\begin{{align*}}\n  {}\n\\end{{align*}}\n", rows.join(" \\\\\n  "))
+    rows.join(" \\\\\n  ")
 }
 
 fn whole_width(equation: &Equation, margin: u32) -> u32 {
@@ -113,7 +117,7 @@ pub fn matrix(matrix: &Matrix, namer: &mut Namer) -> String {
     let name = typeset(&matrix.name.clone().into(), Style::Display);
     let width: u32 = widths.map(|width| width.unwrap_or(0) + 100).sum::<u32>() + name.width + RELATION_WIDTH + 100;
     if columns > MATRIX_COLUMNS || width > COLUMN {
-        return display(&matrix.listed(), namer);
+        return display(&matrix.listed(), "", namer);
     }
     let tall = cells.iter().flatten().any(|cell| cell.height > 0);
     let end = if tall { " \\\\[1ex]\n    " } else { " \\\\\n    " };

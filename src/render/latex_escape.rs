@@ -11,12 +11,18 @@ pub fn escape(words: &str) -> String {
     let characters: Vec<char> = words.nfc().collect();
     for &character in &characters {
         match character {
+            '"' => out.push_str(if opens_quotation(&out) { "``" } else { "''" }),
             ' '..='~' => escape_ascii(character, &mut out),
             _ if character.is_control() => out.push(' '),
             _ => escape_letter(character, &mut out),
         }
     }
     out
+}
+
+/// Whether a quotation mark behind `text` opens a quotation.
+fn opens_quotation(text: &str) -> bool {
+    text.chars().next_back().is_none_or(|last| " ([`-".contains(last))
 }
 
 fn escape_ascii(character: char, out: &mut String) {
@@ -31,7 +37,6 @@ fn escape_ascii(character: char, out: &mut String) {
         '<' => out.push_str("\\textless{}"),
         '>' => out.push_str("\\textgreater{}"),
         '|' => out.push_str("\\textbar{}"),
-        '"' => out.push_str("\'\'"),
         _ => out.push(character),
     }
 }

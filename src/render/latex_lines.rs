@@ -28,6 +28,7 @@ struct Chunk {
     tex: String,
     width: u32,
     height: u8,
+    brackets: u8,
     join: Join,
     depth: u32,
 }
@@ -74,7 +75,8 @@ fn flow(expression: &Expression, room: u32, depth: u32, out: &mut Vec<Chunk>) {
 }
 
 fn chunk(piece: Piece, depth: u32) -> Chunk {
-    Chunk { tex: piece.tex, width: piece.width, height: piece.height, join: Join::Start, depth }
+    let Piece { tex, width, height, brackets, .. } = piece;
+    Chunk { tex, width, height, brackets, join: Join::Start, depth }
 }
 
 fn flow_sum(terms: &[Expression], room: u32, depth: u32, out: &mut Vec<Chunk>) {
@@ -210,12 +212,16 @@ fn operator(function: Function) -> &'static str {
 
 /// Puts brackets of a size that fits around chunks.
 fn enclose(chunks: &mut [Chunk]) {
-    let (open, close, width) = match chunks.iter().map(|chunk| chunk.height).max() {
-        Some(0) | None => ("\\bigl(", "\\bigr)", 46),
-        Some(_) => ("\\biggl(", "\\biggr)", 74),
+    let height = chunks.iter().map(|chunk| chunk.height).max().unwrap_or(0);
+    let brackets = chunks.iter().map(|chunk| chunk.brackets).max().unwrap_or(0);
+    let (open, close, width) = match (height, brackets) {
+        (0, 0 | 1) => ("\\bigl(", "\\bigr)", 46),
+        (0, 2) => ("\\Bigl(", "\\Bigr)", 60),
+        _ => ("\\biggl(", "\\biggr)", 74),
     };
     put_before(chunks, open, width);
     put_behind(chunks, close, width);
+    chunks.iter_mut().for_each(|chunk| chunk.brackets = brackets + 1);
 }
 
 impl Chunk {

@@ -107,6 +107,9 @@ fn set_printed(printed: &PrintedName) -> SetName {
     SetName { base, base_width, below, below_width, has_superscript: false }
 }
 
+/// What TeX puts behind every script.
+const SCRIPT_SPACE: u32 = 5;
+
 /// Subscripts in a row.
 pub fn set_parts(parts: &[Part], commas: bool) -> (String, u32) {
     let mut out = String::new();
@@ -122,7 +125,7 @@ pub fn set_parts(parts: &[Part], commas: bool) -> (String, u32) {
         out.push_str(&tex);
         width += part_width;
     }
-    (out, width * 7 / 10)
+    (out, if width == 0 { 0 } else { width * 7 / 10 + SCRIPT_SPACE })
 }
 
 fn set_part(part: &Part) -> (String, u32) {

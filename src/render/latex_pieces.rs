@@ -53,6 +53,8 @@ pub struct Piece {
     pub level: Level,
     /// 0 for what a bracket of normal size encloses, more for fractions.
     pub height: u8,
+    /// How many brackets of growing size it holds within each other.
+    pub brackets: u8,
     /// The width of a subscript at its end, over which a superscript may stand.
     pub overhang: u32,
     /// What it begins with.
@@ -71,7 +73,8 @@ pub const THIN: u32 = 17;
 impl Piece {
     /// A piece of normal height with nothing special at its ends.
     pub fn new(tex: impl Into<String>, width: u32, level: Level) -> Piece {
-        Piece { tex: tex.into(), width, level, height: 0, overhang: 0, starts: Edge::Plain, ends: Edge::Plain }
+        let (starts, ends) = (Edge::Plain, Edge::Plain);
+        Piece { tex: tex.into(), width, level, height: 0, brackets: 0, overhang: 0, starts, ends }
     }
 
     /// The same piece with these ends.
@@ -84,13 +87,21 @@ impl Piece {
         Piece { height, ..self }
     }
 
-    /// The piece in brackets that fit its height.
+    /// The same piece, as tall and as bracketed as what it holds.
+    pub fn around(self, inner: &Piece) -> Piece {
+        Piece { height: inner.height, brackets: inner.brackets, ..self }
+    }
+
+    /// The piece in brackets that fit its height; brackets around brackets are larger.
     pub fn bracketed(self) -> Piece {
-        let (tex, extra) = match self.height {
-            0 => (format!("({})", self.tex), 78),
-            _ => (format!("\\left({}\\right)", self.tex), 150),
+        let (open, close, extra) = match (self.height, self.brackets) {
+            (0, 0) => ("(", ")", 78),
+            (0, 1) => ("\\bigl(", "\\bigr)", 92),
+            (0, 2) => ("\\Bigl(", "\\Bigr)", 120),
+            _ => ("\\left(", "\\right)", 150),
         };
-        Piece::new(tex, self.width + extra, Level::Atom).tall(self.height)
+        let piece = Piece::new(format!("{open}{}{close}", self.tex), self.width + extra, Level::Atom);
+        Piece { height: self.height, brackets: self.brackets + 1, ..piece }
     }
 
     /// The piece, in brackets if it holds together less tightly than `least`.
@@ -110,7 +121,7 @@ impl Piece {
 
     /// The width of the piece once it is set as a script.
     pub fn script_width(&self) -> u32 {
-        self.width * 7 / 10
+        self.width * 7 / 10 + 5
     }
 
     /// Puts `next` behind this piece, with `between` (of the given width) in between.
@@ -126,6 +137,7 @@ impl Piece {
         }
         self.width += between.1 + next.width;
         self.height = self.height.max(next.height);
+        self.brackets = self.brackets.max(next.brackets);
         self.ends = next.ends;
     }
 
@@ -133,8 +145,8 @@ impl Piece {
     pub fn joint(&self, next: &Piece) -> (&'static str, u32) {
         match (self.ends, next.starts) {
             (_, Edge::Digit) => (" \\cdot ", 72),
-            (Edge::Function, _) | (Edge::Word, Edge::Word) => (" \\, ", THIN),
             (_, Edge::Function) => (" ", THIN),
+            (Edge::Function, _) | (Edge::Word, Edge::Word) => (" \\, ", THIN),
             _ => (" ", 0),
         }
     }

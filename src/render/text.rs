@@ -114,7 +114,7 @@ fn display_line(equation: &Equation, left: &str, aligned: usize, layout: Layout)
     let right = plain_expression(&equation.right);
     let mut out = " ".repeat(DISPLAY_INDENT);
     let Some(relation) = equation.relation else {
-        place(&mut out, &break_formula(&right, DISPLAY_INDENT, layout.width));
+        place(&mut out, &break_formula(&right, DISPLAY_INDENT, DISPLAY_INDENT, layout.width));
         return out;
     };
     let (sign, width) = (relation.plain(), left.chars().count());
@@ -124,7 +124,7 @@ fn display_line(equation: &Equation, left: &str, aligned: usize, layout: Layout)
         start = DISPLAY_INDENT + 4;
         out = format!("{}{left}\n{}{sign} ", " ".repeat(DISPLAY_INDENT), " ".repeat(start));
     }
-    place(&mut out, &break_formula(&right, start + sign.len() + 1, layout.width));
+    place(&mut out, &break_formula(&right, start + sign.len() + 1, 2 * DISPLAY_INDENT, layout.width));
     out
 }
 

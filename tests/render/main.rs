@@ -1,0 +1,8 @@
+//! What is printed: formulas in every form, and whole documents.
+
+mod brackets;
+mod compile;
+mod documents;
+mod formulas;
+mod reader;
+mod samples;
