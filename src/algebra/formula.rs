@@ -4,8 +4,8 @@
 //! output starts from the same arrangement: sums and products are flat, a minus stands in front of the term it belongs
 //! to, numbers are collected into one leading coefficient, and nothing is multiplied by 1 or raised to the power 1.
 
+use crate::algebra::number::Rational;
 use num_bigint::BigInt;
-use num_rational::BigRational as Rational;
 use num_traits::{One, Pow, Signed, ToPrimitive, Zero};
 
 /// A function of one argument that closed forms use.

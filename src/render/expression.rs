@@ -1,7 +1,7 @@
 //! What may stand in a formula of a document: formulas of the algebra, and the notation that talks about them.
 
 use crate::algebra::formula::{Formula, Function, Symbol};
-use num_rational::BigRational as Rational;
+use crate::algebra::number::Rational;
 
 /// A mathematical expression as it is to be read.
 #[derive(Clone, Debug, PartialEq, Eq, Hash)]

@@ -1,12 +1,12 @@
 //! Formulas in LaTeX (amsmath), set on one line.
 
 use crate::algebra::formula::{Formula, Function};
+use crate::algebra::number::Rational;
 use crate::render::expression::{Expression, Mark, Object};
 use crate::render::latex_escape::escape;
 use crate::render::latex_names::{SetName, set_name, set_parts};
 use crate::render::latex_pieces::{Edge, Level, MINUS_WIDTH, Piece, SIGN_WIDTH, Style, THIN, apart};
 use crate::render::names::{read_name, read_subscripts};
-use num_rational::BigRational as Rational;
 use num_traits::{One, Signed};
 
 /// The formula as it stands in a display, unbroken.

@@ -4,8 +4,8 @@
 //! where these rules need them, and around every exponent that is more than a name or a number.
 
 use crate::algebra::formula::{Formula, Function};
+use crate::algebra::number::Rational;
 use crate::render::expression::{Expression, Mark, Object};
-use num_rational::BigRational as Rational;
 use num_traits::{One, Signed};
 use std::fmt::Write;
 
