@@ -3,8 +3,11 @@
 use crate::algebra::modular::dense::{Dense, degree};
 use crate::algebra::modular::{Modulus, Stream};
 
-/// Products of the irreducible factors of equal degree: (degree, product), for a monic squarefree polynomial.
-pub(super) fn by_degree(m: &Modulus, f: &Dense) -> Vec<(usize, Dense)> {
+/// Products of the irreducible factors of equal degree, with that degree.
+pub(super) type Parts = Vec<(usize, Dense)>;
+
+/// The distinct-degree factorisation of a monic squarefree polynomial.
+pub(super) fn by_degree(m: &Modulus, f: &Dense) -> Parts {
     let variable = vec![0, m.one()];
     let mut rest = f.clone();
     let mut frobenius = m.remainder(&variable, f);

@@ -4,9 +4,9 @@ use num_bigint::BigInt;
 use num_traits::{One, Signed, Zero};
 
 use super::integral::{self, Integral};
-use super::splitting::{by_degree, split_equal_degree};
+use super::splitting::{Parts, by_degree, split_equal_degree};
 use crate::algebra::budget;
-use crate::algebra::modular::dense::{Dense, degree};
+use crate::algebra::modular::dense::degree;
 use crate::algebra::modular::{Modulus, Primes, Stream};
 use crate::algebra::monomial::{Monomial, Var};
 use crate::algebra::number::Int;
@@ -74,7 +74,7 @@ fn coefficient_bound(f: &Integral) -> BigInt {
 /// A prime, the factors of equal degree modulo it, and the degrees a rational factor may have.
 struct Choice {
     m: Modulus,
-    parts: Vec<(usize, Dense)>,
+    parts: Parts,
     possible: Vec<bool>,
 }
 
@@ -82,7 +82,7 @@ struct Choice {
 fn choose_prime(f: &Integral) -> Option<Choice> {
     let n = f.len() - 1;
     let mut possible = vec![true; n + 1];
-    let mut best: Option<(usize, Modulus, Vec<(usize, Dense)>)> = None;
+    let mut best: Option<(usize, Modulus, Parts)> = None;
     let mut tried = 0;
     for p in Primes::new() {
         let m = Modulus::new(p);

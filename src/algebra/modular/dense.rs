@@ -19,17 +19,6 @@ pub(crate) fn degree(a: &Dense) -> usize {
 }
 
 impl Modulus {
-    /// a + b.
-    pub(crate) fn sum(&self, a: &Dense, b: &Dense) -> Dense {
-        let (long, short) = if a.len() >= b.len() { (a, b) } else { (b, a) };
-        let mut out = long.clone();
-        for (x, y) in out.iter_mut().zip(short) {
-            *x = self.add(*x, *y);
-        }
-        trim(&mut out);
-        out
-    }
-
     /// a − b.
     pub(crate) fn difference(&self, a: &Dense, b: &Dense) -> Dense {
         let mut out = a.clone();
@@ -153,11 +142,6 @@ impl Modulus {
         }
         value
     }
-
-    /// The value at a point.
-    pub(crate) fn value(&self, a: &[u64], at: u64) -> u64 {
-        a.iter().rev().fold(0, |sum, &c| self.add(self.mul(sum, at), c))
-    }
 }
 
 /// Interpolation through fixed distinct abscissas (Newton's divided differences), used for many sets of values.
@@ -210,12 +194,12 @@ mod tests {
         let mut random = |n: usize| -> Dense { (0..n).map(|_| stream.residue(&m)).collect() };
         let (a, b, c) = (random(7), random(4), random(3));
         let (q, r) = m.div_rem(&a, &b);
-        assert_eq!(m.sum(&m.product(&q, &b), &r), a);
+        assert_eq!(m.difference(&a, &m.product(&q, &b)), r);
         assert_eq!(m.common(&m.product(&a, &c), &m.product(&b, &c)), m.monic(&c));
         let (s, t) = m.bezout(&a, &b).unwrap_or_default();
-        assert_eq!(m.sum(&m.product(&s, &a), &m.product(&t, &b)), vec![m.one()]);
+        assert_eq!(m.difference(&vec![m.one()], &m.product(&s, &a)), m.product(&t, &b));
         let at = random(7);
-        let values: Vec<u64> = at.iter().map(|&x| m.value(&a, x)).collect();
+        let values: Vec<u64> = at.iter().map(|&x| a.iter().rev().fold(0, |sum, &c| m.add(m.mul(sum, x), c))).collect();
         assert_eq!(Interpolation::new(&m, at).through(&m, values), a);
     }
 }
