@@ -2,4 +2,5 @@
 pub mod algebra;
 pub mod language;
 pub mod model;
+pub mod proof;
 pub mod render;

@@ -163,6 +163,11 @@ impl Field {
         self.len() == 0
     }
 
+    /// Whether any variable has given way to a finer one.
+    pub fn has_retired(&self) -> bool {
+        !self.tables.borrow().retired.is_empty()
+    }
+
     /// The element written in variables that are still in use. Linear in its size.
     pub fn current(&self, e: &Element) -> Element {
         if self.tables.borrow().retired.is_empty() {

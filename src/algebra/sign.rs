@@ -39,6 +39,15 @@ impl Field {
         self.tables.borrow().facts.clone()
     }
 
+    /// Runs `body` with further facts, which are forgotten afterwards, however `body` ends.
+    pub fn suppose<T>(&self, further: &[(Element, Relation)], body: impl FnOnce() -> T) -> T {
+        let _forget = Forget { field: self, keep: self.tables.borrow().facts.len() };
+        further.iter().for_each(|(e, relation)| self.assume(e, *relation));
+        body()
+    }
+
+    /// The relation without factors that do not matter for it. An even power of a factor of unknown sign says no more
+    /// than that the factor is not zero, and may be left out of a strict relation only.
     fn essential(&self, e: &Element, relation: Relation) -> (Element, Relation) {
         let (content, pieces) = self.pieces(e);
         let mut rest = Poly::constant(&Rational::from_integer(content.signum().to_integer()));
@@ -50,8 +59,9 @@ impl Field {
             match self.sign(&base).to_power(exponent) {
                 Sign::Positive => {}
                 Sign::Negative => rest = rest.neg(),
-                _ if exponent % 2 == 0 && relation == Relation::NonNegative => {}
-                _ => rest = &rest * &self.expand(&base),
+                _ if exponent % 2 != 0 => rest = &rest * &self.expand(&base),
+                _ if relation == Relation::Positive => {}
+                _ => rest = &rest * &self.expand(&base).pow(2),
             }
         }
         (rest, relation)
@@ -160,7 +170,7 @@ impl Field {
         let facts: Vec<Rc<Fact>> = self.facts();
         let facts: Vec<Fact> =
             facts.iter().map(|fact| Fact { element: self.current(&fact.element), relation: fact.relation }).collect();
-        let nonzero = facts.iter().any(|g| g.relation == Relation::NonZero && g.element.div_exact(f).is_some());
+        let nonzero = facts.iter().any(|g| g.relation == Relation::NonZero && self.divides(f, &g.element));
         for (candidate, strict, weak) in
             [(f.clone(), Sign::Positive, Sign::NonNegative), (f.neg(), Sign::Negative, Sign::NonPositive)]
         {
@@ -172,6 +182,13 @@ impl Field {
             }
         }
         if nonzero { Sign::NonZero } else { Sign::Unknown }
+    }
+
+    /// Whether g is a multiple of f by something that is defined everywhere, so that f vanishes nowhere where g does not.
+    fn divides(&self, f: &Poly, g: &Poly) -> bool {
+        let defined =
+            |v: Var| self.role(v).is_some_and(|role| role.is_positive()) || matches!(*self.kind(v), Kind::Exp(_));
+        g.div_exact(f).is_some_and(|q| q.vars().into_iter().all(|v| q.low_degree(v) >= 0 || defined(v)))
     }
 
     /// Tries to write f as positive multiples of facts plus terms of one sign, cancelling the first doubtful term.
@@ -223,5 +240,19 @@ impl Field {
             }
         }
         steps
+    }
+}
+
+/// Takes the facts beyond the first `keep` away again.
+struct Forget<'f> {
+    field: &'f Field,
+    keep: usize,
+}
+
+impl Drop for Forget<'_> {
+    fn drop(&mut self) {
+        let mut tables = self.field.tables.borrow_mut();
+        tables.facts.truncate(self.keep);
+        tables.signs.clear();
     }
 }
