@@ -1,7 +1,20 @@
 //! What the author said, checked for sense: goods, prices, income, parameters, assumptions and equations, as elements
 //! of one field in which the assumptions are known.
 
+mod build;
+mod declarations;
+mod equations;
+mod evaluate;
+mod feasibility;
+mod ground;
+mod messages;
+mod names;
+mod outline;
 pub mod points;
+mod requirements;
+mod resolve;
+mod script;
+mod symbols;
 pub mod system;
 
 use std::rc::Rc;
@@ -67,33 +80,7 @@ struct Text {
 /// # Errors
 /// Every mistake of the file, each with its place and, where there is one, a remedy.
 pub fn elaborate(source: &Source, tree: &language::Model, values: &[Value<'_>]) -> Result<Model, Vec<Diagnostic>> {
-    build(Rc::new(Text { source: source.clone(), tree: tree.clone() }), values)
-}
-
-fn build(text: Rc<Text>, _values: &[Value<'_>]) -> Result<Model, Vec<Diagnostic>> {
-    let field = Field::new();
-    let utility = field.symbol("u", crate::algebra::generator::Role::Utility);
-    Ok(Model {
-        title: None,
-        field,
-        goods: Vec::new(),
-        groups: Vec::new(),
-        prices: Vec::new(),
-        income: None,
-        quantities: Vec::new(),
-        utility,
-        utility_name: "u".to_string(),
-        parameters: Vec::new(),
-        assumptions: Vec::new(),
-        abbreviations: Vec::new(),
-        coverage: Coverage::Complete,
-        demands: Vec::new(),
-        rest: None,
-        claims: Vec::new(),
-        domain: Vec::new(),
-        warnings: Vec::new(),
-        text,
-    })
+    build::build(Rc::new(Text { source: source.clone(), tree: tree.clone() }), values)
 }
 
 impl Model {
@@ -109,7 +96,7 @@ impl Model {
             .zip(equations)
             .map(|(parameter, (_, element))| Value { parameter, element, field: &self.field })
             .collect();
-        build(self.text.clone(), &values)
+        build::build(self.text.clone(), &values)
     }
 
     /// The file that the model was made from.

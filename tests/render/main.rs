@@ -6,4 +6,3 @@ mod documents;
 mod formulas;
 mod reader;
 mod samples;
-mod shared;

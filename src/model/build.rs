@@ -1,0 +1,247 @@
+//! From a syntax tree to a model: names, ground, demands, claims, in this order.
+
+use std::rc::Rc;
+
+use rustc_hash::FxHashMap;
+
+use crate::algebra::field::Field;
+use crate::algebra::generator::{Element, Role};
+use crate::algebra::monomial::Var;
+use crate::language::{Diagnostic, Span};
+
+use super::evaluate::{Evaluator, Failed};
+use super::ground::{Conflict, Ground, establish};
+use super::names::{AbbreviationId, FamilyId, Names};
+use super::resolve::tuples;
+use super::script::{Covered, Defined, Script, Stated, plain_text, script};
+use super::symbols::Symbols;
+use super::system::{Claim, Coverage, Demand, Good, Parameter, Value};
+use super::{Model, Text};
+
+/// Builds the model of a text with values put in for parameters.
+pub(super) fn build(text: Rc<Text>, values: &[Value<'_>]) -> Result<Model, Vec<Diagnostic>> {
+    let script = script(&text.source, &text.tree)?;
+    let field = Field::new();
+    let symbols = Symbols::declare(&script.declarations, &field);
+    let evaluator = Evaluator::new(&field, &script, &symbols, &text.source);
+    put_in(&evaluator, values)?;
+    let ground = match establish(&evaluator, &|_| true) {
+        Ok(ground) => ground,
+        Err(conflict) => return Err(vec![contradiction(&text, &script, values, conflict)]),
+    };
+    evaluator.naming.set(true);
+    let content = content(&evaluator);
+    let mistakes = evaluator.take_mistakes();
+    let Some(content) = content.filter(|_| mistakes.is_empty()) else { return Err(mistakes) };
+    let parameters = parameters(&evaluator);
+    drop(evaluator);
+    Ok(assemble(text, &script, field, &symbols, ground, content, parameters))
+}
+
+/// What is computed once the ground is established.
+struct Content {
+    abbreviations: Vec<(String, Element)>,
+    demands: Vec<Demand>,
+    claims: Vec<Claim>,
+}
+
+fn content(evaluator: &Evaluator<'_>) -> Option<Content> {
+    let abbreviations = abbreviations(evaluator);
+    let goods = 0..evaluator.script.defined.len();
+    let demands: Vec<Result<Demand, Failed>> =
+        goods.map(|good| evaluator.demand(good, None).map(|demand| Demand::clone(&demand))).collect();
+    let claims = claims(evaluator);
+    let demands = demands.into_iter().collect::<Result<Vec<Demand>, Failed>>();
+    Some(Content { abbreviations: abbreviations.ok()?, demands: demands.ok()?, claims: claims.ok()? })
+}
+
+/// Puts values in for parameters.
+fn put_in(evaluator: &Evaluator<'_>, values: &[Value<'_>]) -> Result<(), Vec<Diagnostic>> {
+    if values.is_empty() {
+        return Ok(());
+    }
+    let field = evaluator.field;
+    let all = evaluator.symbols.all();
+    let by_name: FxHashMap<String, Var> = all.into_iter().filter_map(|var| Some((field.name(var)?, var))).collect();
+    let mut mistakes = Vec::new();
+    for value in values {
+        let named = by_name.get(value.parameter).filter(|var| field.role(**var) == Some(Role::Parameter));
+        let Some(var) = named else {
+            mistakes.push(no_such_parameter(&evaluator.script.declarations.names, value.parameter));
+            continue;
+        };
+        let symbol = |name: &str| {
+            let var = *by_name.get(name)?;
+            Some(evaluator.replacement(var).map_or_else(|| Element::var(var), |held| Element::clone(&held)))
+        };
+        match field.import(value.field, value.element, &symbol) {
+            Ok(element) => evaluator.eliminate(*var, element),
+            Err(_) => {
+                let message = format!("the value for `{}` is not defined in this model", value.parameter);
+                mistakes.push(Diagnostic::error(Span::new(0, 0), message).remedy("check the names in it"));
+            }
+        }
+    }
+    if mistakes.is_empty() { Ok(()) } else { Err(mistakes) }
+}
+
+fn no_such_parameter(names: &Names, wanted: &str) -> Diagnostic {
+    let message = Diagnostic::error(Span::new(0, 0), format!("there is no parameter `{wanted}` to give a value to"));
+    match names.nearest_name(wanted) {
+        Some(near) => message.remedy(format!("did you mean `{near}`?")),
+        None => message.remedy("name a declared parameter"),
+    }
+}
+
+fn parameters(evaluator: &Evaluator<'_>) -> Vec<Parameter> {
+    let names = &evaluator.script.declarations.names;
+    let mut all = Vec::new();
+    for (place, family) in names.families.iter().enumerate() {
+        if family.role != Role::Parameter {
+            continue;
+        }
+        let id = FamilyId(place);
+        for (at, var) in tuples(names.goods.len(), family.arity).zip(evaluator.symbols.family(id)) {
+            let eliminated = evaluator.replacement(*var).map(|held| evaluator.field.current(&held));
+            let name = names.member_name(&family.name, &at);
+            all.push(Parameter { name, var: *var, latex: family.latex.clone(), eliminated });
+        }
+    }
+    all
+}
+
+fn abbreviations(evaluator: &Evaluator<'_>) -> Result<Vec<(String, Element)>, Failed> {
+    let names = &evaluator.script.declarations.names;
+    let mut all = Vec::new();
+    let mut outcome = Ok(());
+    for (place, abbreviation) in names.abbreviations.iter().enumerate() {
+        for at in tuples(names.goods.len(), abbreviation.arity) {
+            match evaluator.abbreviation(AbbreviationId(place), &at, None) {
+                Ok(value) => all.push((names.member_name(&abbreviation.name, &at), Element::clone(&value))),
+                Err(failed) => outcome = Err(failed),
+            }
+        }
+    }
+    outcome.map(|()| all)
+}
+
+fn claims(evaluator: &Evaluator<'_>) -> Result<Vec<Claim>, Failed> {
+    let script = evaluator.script;
+    let goods = script.declarations.names.goods.len();
+    let mut all = Vec::new();
+    let mut outcome = Ok(());
+    for stated in &script.claims {
+        for mut environment in tuples(goods, stated.free.len()) {
+            for (index, sign) in stated.signs.iter().enumerate() {
+                let left = evaluator.compute(&stated.sides[index], &mut environment);
+                let right = evaluator.compute(&stated.sides[index + 1], &mut environment);
+                let (Ok(left), Ok(right)) = (left, right) else {
+                    outcome = Err(Failed);
+                    continue;
+                };
+                let text = claim_text(evaluator, stated, index, &environment);
+                let (left, right) = (Element::clone(&left), Element::clone(&right));
+                all.push(Claim { text, left, relation: *sign, right, span: stated.span });
+            }
+        }
+    }
+    outcome.map(|()| all)
+}
+
+/// One link of a chain as it was written, with the values of its free indices.
+fn claim_text(evaluator: &Evaluator<'_>, stated: &Stated, link: usize, environment: &[usize]) -> String {
+    let side = |at: usize| plain_text(evaluator.source.slice(stated.sides[at].span));
+    let mut text = match stated.signs.as_slice() {
+        [_] => stated.text.clone(),
+        signs => format!("{} {} {}", side(link), signs[link].sign(), side(link + 1)),
+    };
+    if !stated.free.is_empty() {
+        let goods = &evaluator.script.declarations.names.goods;
+        let values =
+            stated.free.iter().zip(environment).map(|(index, good)| format!("{} = {}", index.text, goods[*good]));
+        text = format!("{text} for {}", values.collect::<Vec<_>>().join(", "));
+    }
+    text
+}
+
+/// The message for assumptions that cannot hold together: with any one of those named left out, no contradiction is
+/// found any more.
+fn contradiction(text: &Text, script: &Script, values: &[Value<'_>], first: Conflict) -> Diagnostic {
+    let conflicts = |chosen: &[usize]| -> bool {
+        let field = Field::new();
+        let symbols = Symbols::declare(&script.declarations, &field);
+        let evaluator = Evaluator::new(&field, script, &symbols, &text.source);
+        put_in(&evaluator, values).is_ok() && establish(&evaluator, &|place| chosen.contains(&place)).is_err()
+    };
+    let mut kept: Vec<usize> = (0..script.assumed.len()).collect();
+    let mut step = kept.len();
+    while step > 0 {
+        let mut at = 0;
+        while at < kept.len() {
+            let mut fewer = kept.clone();
+            fewer.drain(at..(at + step).min(kept.len()));
+            if conflicts(&fewer) { kept = fewer } else { at += step }
+        }
+        step /= 2;
+    }
+    let named: Vec<String> = kept.iter().map(|place| format!("`{}`", script.assumed[*place].text)).collect();
+    let place = kept.last().copied().unwrap_or(first.0);
+    let span = script.assumed[place].span;
+    let under = if values.is_empty() { "" } else { " for the values put in" };
+    match named.as_slice() {
+        [one] => Diagnostic::error(span, format!("no point satisfies {one}{under}")).remedy("correct this assumption"),
+        many => Diagnostic::error(span, format!("no point satisfies {} together{under}", many.join(", ")))
+            .remedy("drop or correct one of these assumptions"),
+    }
+}
+
+fn assemble(
+    text: Rc<Text>,
+    script: &Script,
+    field: Field,
+    symbols: &Symbols,
+    ground: Ground,
+    content: Content,
+    parameters: Vec<Parameter>,
+) -> Model {
+    let names = &script.declarations.names;
+    let fresh = |e: &Element| field.current(e);
+    let mut content = content;
+    for demand in &mut content.demands {
+        let all = [&mut demand.formula, &mut demand.quantity, &mut demand.outlay, &mut demand.share];
+        all.into_iter().for_each(|e| *e = fresh(e));
+    }
+    content.abbreviations.iter_mut().for_each(|(_, e)| *e = fresh(e));
+    content.claims.iter_mut().for_each(|c| (c.left, c.right) = (fresh(&c.left), fresh(&c.right)));
+    let mut warnings = text.tree.warnings.clone();
+    warnings.extend(names.unused().into_iter().map(|(name, span)| {
+        Diagnostic::warning(span, format!("`{name}` is declared and never used")).remedy("use it, or drop it")
+    }));
+    warnings.sort_by_key(|warning| warning.span);
+    let others = script.declarations.others.iter().filter_map(|id| symbols.member(*id, 0)).collect();
+    Model {
+        title: script.title.clone(),
+        goods: names.goods.iter().map(|name| Good { name: name.clone() }).collect(),
+        groups: names.groups.iter().map(|group| (group.name.clone(), group.members.clone())).collect(),
+        prices: symbols.prices().to_vec(),
+        income: symbols.income(),
+        quantities: symbols.quantities().to_vec(),
+        utility: symbols.utility(),
+        utility_name: symbols.utility_name().to_string(),
+        parameters,
+        assumptions: ground.assumptions,
+        abbreviations: content.abbreviations,
+        coverage: match script.covered {
+            Covered::All => Coverage::Complete,
+            Covered::Some => Coverage::Others(others),
+            Covered::Deflated => Coverage::Deflated,
+        },
+        demands: content.demands,
+        rest: script.defined.iter().position(|defined| *defined == Defined::Rest),
+        claims: content.claims,
+        domain: ground.domain,
+        warnings,
+        field,
+        text,
+    }
+}

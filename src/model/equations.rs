@@ -1,0 +1,193 @@
+//! Assumed equations: each that is linear eliminates the parameter declared last.
+//!
+//! Every row expresses its pivot by parameters declared earlier, so a new equation is brought down from the last
+//! parameter on, and the rows are put into each other once, at the end. Sparse and exact.
+
+use std::collections::BTreeMap;
+
+use num_traits::{One, Zero};
+
+use crate::algebra::budget;
+use crate::algebra::field::Field;
+use crate::algebra::generator::{Element, Kind, Role};
+use crate::algebra::monomial::{Monomial, Var};
+use crate::algebra::number::Rational;
+use crate::algebra::polynomial::Poly;
+
+/// Σ cᵢ vᵢ + constant.
+#[derive(Clone, Debug, Default, PartialEq, Eq)]
+struct Linear {
+    terms: BTreeMap<Var, Rational>,
+    constant: Rational,
+}
+
+impl Linear {
+    /// The element as a linear form in parameters with rational coefficients, if it is one.
+    fn of(field: &Field, e: &Element) -> Option<Linear> {
+        let mut linear = Linear::default();
+        for (monomial, coefficient) in e.terms() {
+            let mut powers = monomial.iter();
+            match (powers.next(), powers.next()) {
+                (None, _) => linear.constant = coefficient,
+                (Some((var, 1)), None) if field.role(var) == Some(Role::Parameter) => {
+                    linear.terms.insert(var, coefficient);
+                }
+                _ => return None,
+            }
+        }
+        Some(linear)
+    }
+
+    /// Adds factor · other.
+    fn add(&mut self, other: &Linear, factor: &Rational) {
+        budget::spend(1 + other.terms.len() as u64);
+        self.constant += &other.constant * factor;
+        for (var, coefficient) in &other.terms {
+            let slot = self.terms.entry(*var).or_insert_with(Rational::zero);
+            *slot += coefficient * factor;
+            if slot.is_zero() {
+                self.terms.remove(var);
+            }
+        }
+    }
+
+    fn to_element(&self) -> Element {
+        let mut terms: Vec<(Monomial, Rational)> =
+            self.terms.iter().map(|(var, c)| (Monomial::power(*var, 1), c.clone())).collect();
+        terms.push((Monomial::one(), self.constant.clone()));
+        Poly::from_terms(terms)
+    }
+}
+
+/// What a linear equation did.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Inserted {
+    /// It eliminates a parameter, or says nothing new.
+    Consistent,
+    /// It contradicts the ones before it.
+    Contradiction,
+    /// It is not linear in the parameters with constant coefficients.
+    NotLinear,
+}
+
+/// The linear equations so far, each solved for its last parameter.
+#[derive(Default)]
+pub(super) struct Elimination {
+    rows: BTreeMap<Var, Linear>,
+}
+
+impl Elimination {
+    /// Takes the equation e = 0.
+    pub fn insert(&mut self, field: &Field, e: &Element) -> Inserted {
+        let Some(mut linear) = Linear::of(field, e) else { return Inserted::NotLinear };
+        while let Some((var, coefficient)) = linear.terms.last_key_value().map(|(v, c)| (*v, c.clone())) {
+            linear.terms.remove(&var);
+            match self.rows.get(&var) {
+                Some(row) => linear.add(row, &coefficient),
+                None => {
+                    let mut row = Linear::default();
+                    row.add(&linear, &(-Rational::one() / coefficient));
+                    self.rows.insert(var, row);
+                    return Inserted::Consistent;
+                }
+            }
+        }
+        if linear.constant.is_zero() { Inserted::Consistent } else { Inserted::Contradiction }
+    }
+
+    /// Every eliminated parameter with what stands for it, free of eliminated parameters.
+    pub fn solved(self) -> Vec<(Var, Element)> {
+        let mut done: BTreeMap<Var, Linear> = BTreeMap::new();
+        for (var, row) in self.rows {
+            let mut settled = Linear { terms: BTreeMap::new(), constant: row.constant };
+            for (inner, coefficient) in row.terms {
+                match done.get(&inner) {
+                    Some(known) => settled.add(known, &coefficient),
+                    None => {
+                        let single = Linear { terms: BTreeMap::from([(inner, Rational::one())]), ..Linear::default() };
+                        settled.add(&single, &coefficient);
+                    }
+                }
+            }
+            done.insert(var, settled);
+        }
+        done.into_iter().map(|(var, linear)| (var, linear.to_element())).collect()
+    }
+}
+
+/// Why an equation that is not linear could not be used.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Unusable {
+    /// It holds something other than parameters.
+    NotParameters,
+    /// It holds logarithms, exponentials, symbolic powers or special functions.
+    NotAlgebraic,
+    /// It is a product that is zero.
+    Product,
+    /// It is linear in no parameter with a coefficient that is known not to be zero.
+    NoPivot,
+}
+
+/// What an equation that need not be linear does.
+pub(super) enum Solved {
+    /// It says nothing new.
+    Nothing,
+    /// It cannot hold.
+    Contradiction,
+    /// The parameter is eliminated.
+    For(Var, Element),
+    /// It cannot be used.
+    Unusable(Unusable),
+}
+
+/// Solves e = 0 for the last parameter that occurs linearly, a constant coefficient before one that is only known not
+/// to be zero.
+pub(super) fn solve(field: &Field, e: &Element) -> Solved {
+    let (numerator, _) = field.fraction(e);
+    if numerator.is_zero() {
+        return Solved::Nothing;
+    }
+    if numerator.is_constant() || field.sign(&numerator).excludes_zero() {
+        return Solved::Contradiction;
+    }
+    if let Some(reason) = foreign(field, &numerator) {
+        return Solved::Unusable(reason);
+    }
+    let split = numerator.primitive();
+    let numerator = positive_factors_dropped(field, &split.monomial, split.part);
+    let mut pivots: Vec<(Var, Poly)> = Vec::new();
+    for var in numerator.vars().into_iter().rev() {
+        let own = field.role(var) == Some(Role::Parameter);
+        let hidden = numerator.vars().into_iter().any(|v| v != var && field.depends_on(&Poly::var(v), var));
+        if own && !hidden && numerator.degree(var) == 1 && numerator.low_degree(var) >= 0 {
+            let slope = numerator.coefficients(var).into_iter().next().map(|(_, slope)| slope);
+            pivots.extend(slope.map(|slope| (var, slope)));
+        }
+    }
+    let constant = pivots.iter().find(|(_, slope)| slope.is_constant());
+    let safe = || pivots.iter().find(|(_, slope)| field.sign(slope).excludes_zero());
+    if let Some((var, slope)) = constant.or_else(safe) {
+        let rest = &numerator - &slope.mul_monomial(&Monomial::power(*var, 1));
+        if let Ok(value) = field.quotient(&rest.neg(), slope) {
+            return Solved::For(*var, field.reduce(&value));
+        }
+    }
+    let factors = crate::algebra::factor::factor(&numerator);
+    let count = factors.factors.len() + factors.monomial.len();
+    Solved::Unusable(if count > 1 { Unusable::Product } else { Unusable::NoPivot })
+}
+
+/// The numerator without factors that are never zero.
+fn positive_factors_dropped(field: &Field, monomial: &Monomial, part: Poly) -> Poly {
+    let open = monomial.iter().filter(|(var, _)| !field.variable_sign(*var).excludes_zero());
+    part.mul_monomial(&Monomial::from_pairs(open.filter(|(_, k)| *k > 0)))
+}
+
+fn foreign(field: &Field, numerator: &Poly) -> Option<Unusable> {
+    let symbols = field.symbols_of(numerator);
+    if symbols.iter().any(|var| field.role(*var) != Some(Role::Parameter)) {
+        return Some(Unusable::NotParameters);
+    }
+    let algebraic = |var: &Var| matches!(&*field.kind(*var), Kind::Symbol(_) | Kind::Sum { .. });
+    (!numerator.vars().iter().all(algebraic)).then_some(Unusable::NotAlgebraic)
+}
