@@ -2,6 +2,9 @@
 
 use super::syntax::Span;
 
+/// The most mistakes that are reported for one file.
+pub const MAX_MISTAKES: usize = 200;
+
 /// How bad it is.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
 pub enum Severity {

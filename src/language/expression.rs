@@ -12,7 +12,7 @@ use pest::iterators::Pair;
 
 use super::brackets::MAX_NESTING;
 use super::constant::{self, Constant};
-use super::diagnostic::Diagnostic;
+use super::diagnostic::{Diagnostic, MAX_MISTAKES};
 use super::grammar::Rule;
 use super::letters::normal_name;
 use super::nearest::nearest;
@@ -82,6 +82,17 @@ impl Builder {
         Builder { offset, ..Builder::default() }
     }
 
+    /// Takes a mistake down, unless there are more than anyone will read.
+    pub fn report(&mut self, mistake: Diagnostic) {
+        if !self.is_full() {
+            self.mistakes.push(mistake);
+        }
+    }
+
+    fn is_full(&self) -> bool {
+        self.mistakes.len() > MAX_MISTAKES
+    }
+
     /// Where in the file a pair stands.
     pub fn span(&self, pair: &Pair<Rule>) -> Span {
         let span = pair.as_span();
@@ -120,7 +131,7 @@ impl Builder {
                 _ => {
                     exponents = if operator == '^' { exponents + 1 } else { 0 };
                     if depth + exponents > MAX_NESTING {
-                        self.mistakes.push(nested_powers(span));
+                        self.report(nested_powers(span));
                         break;
                     }
                     let bare_number = part.as_rule() == Rule::number;
@@ -201,7 +212,7 @@ impl Builder {
         if constant::value(&exponent.expr) == Constant::TooLarge {
             let message = format!("this exponent is beyond the bound of {}", constant::MAX_EXPONENT);
             let remedy = "write a smaller exponent, or a parameter in its place";
-            self.mistakes.push(Diagnostic::error(exponent.outer, message).remedy(remedy));
+            self.report(Diagnostic::error(exponent.outer, message).remedy(remedy));
             return Part::new(ExprKind::Pi, outer);
         }
         Part::new(ExprKind::Power(Box::new(base), Box::new(exponent.expr)), outer)
@@ -213,7 +224,7 @@ impl Builder {
             Rule::reference => self.reference(part, span, depth),
             Rule::aggregate => self.aggregate(part, span, depth),
             Rule::formula => {
-                self.mistakes.push(unsupported::latex_formula(span));
+                self.report(unsupported::latex_formula(span));
                 placeholder(span)
             }
             _ => self.inside(part, depth),
@@ -235,7 +246,7 @@ impl Builder {
         let digits = whole.len() + fraction.len();
         if digits > MAX_DIGITS {
             let message = format!("this number has {digits} digits; a number may have at most {MAX_DIGITS}");
-            self.mistakes.push(Diagnostic::error(self.span(pair), message).remedy("write a parameter in its place"));
+            self.report(Diagnostic::error(self.span(pair), message).remedy("write a parameter in its place"));
             return Rational::from_integer(BigInt::ZERO);
         }
         let numerator = format!("{whole}{fraction}").parse().unwrap_or(BigInt::ZERO);
@@ -256,7 +267,9 @@ impl Builder {
                 ExprKind::Call(function, Box::new(self.inside(argument, depth)))
             }
             (Some(argument), None) if argument.as_rule() == Rule::argument => {
-                self.mistakes.push(no_function(&name, span));
+                if !self.is_full() {
+                    self.report(no_function(&name, span));
+                }
                 self.inside(argument, depth);
                 return placeholder(span);
             }
@@ -268,7 +281,7 @@ impl Builder {
             }
             (None, None) if name.text == "pi" => ExprKind::Pi,
             (Some(_), None) if name.text == "pi" => {
-                self.mistakes.push(Diagnostic::error(span, "`pi` is a number, and has no indices"));
+                self.report(Diagnostic::error(span, "`pi` is a number, and has no indices"));
                 return placeholder(span);
             }
             (indices, None) => {
@@ -294,7 +307,7 @@ impl Builder {
         match part.as_str().parse() {
             Ok(number) => Some((Index::Number(number), span)),
             Err(_) => {
-                self.mistakes.push(Diagnostic::error(span, "no good has so large a number"));
+                self.report(Diagnostic::error(span, "no good has so large a number"));
                 None
             }
         }
@@ -316,10 +329,10 @@ impl Builder {
         if let Some((_, again)) = excepts.get(1).or(excepts.first().filter(|_| binders.len() > 1)) {
             let message = "`!=` leaves one good out of a sum over one index";
             let remedy = "write one sum inside the other: sum over j != i of (sum over k of (…))";
-            self.mistakes.push(Diagnostic::error(*again, message).remedy(remedy));
+            self.report(Diagnostic::error(*again, message).remedy(remedy));
         }
         if let Some(again) = groups.get(1) {
-            self.mistakes.push(Diagnostic::error(again.span, "a sum runs over one group"));
+            self.report(Diagnostic::error(again.span, "a sum runs over one group"));
         }
         let except = excepts.into_iter().next();
         let over = Over { product, binders, except, group: groups.into_iter().next(), body };

@@ -22,6 +22,7 @@ mod statement;
 pub mod syntax;
 mod unsupported;
 
+use diagnostic::MAX_MISTAKES;
 pub use diagnostic::{Diagnostic, Severity};
 pub use letters::normal_name;
 pub use nearest::nearest;
@@ -48,8 +49,6 @@ pub struct Reading {
     pub declarations_lost: bool,
 }
 
-/// The most mistakes that are reported for one file.
-const MAX_MISTAKES: usize = 200;
 /// The longest statement, in bytes.
 const MAX_STATEMENT_BYTES: usize = 1 << 20;
 

@@ -8,6 +8,8 @@ use super::source::Source;
 const WIDTH: usize = 76;
 /// What is shown before the place where a line is cut on its left.
 const LEAD: usize = 24;
+/// The bytes on either side of the place that are looked at.
+const REACH: usize = 4 * WIDTH;
 const INDENT: &str = "    ";
 const TAB: &str = "    ";
 const CUT: &str = "…";
@@ -31,14 +33,17 @@ impl Diagnostic {
     }
 }
 
-/// The part of a line around `from..to`, and the carets to go under it.
+/// The part of a line around `from..to`, and the carets to go under it. The cost does not grow with the line.
 fn excerpt(line: &str, from: usize, to: usize) -> (String, String) {
-    let cells = cells(line, from, to);
+    let begin = boundary(line, from.saturating_sub(REACH));
+    let end = boundary(line, from.saturating_add(REACH));
+    let cells = cells(&line[begin..end], from - begin, to - begin);
     let first = cells.iter().position(|cell| cell.marked).unwrap_or(cells.len());
-    let left = if cells.len() <= WIDTH { 0 } else { first.saturating_sub(LEAD).min(cells.len().saturating_sub(WIDTH)) };
+    let whole = begin == 0 && end == line.len() && cells.len() <= WIDTH;
+    let left = if whole { 0 } else { first.saturating_sub(LEAD).min(cells.len().saturating_sub(WIDTH)) };
     let right = cells.len().min(left + WIDTH);
     let (mut shown, mut carets) = (String::new(), String::new());
-    if left > 0 {
+    if begin > 0 || left > 0 {
         shown += CUT;
         carets += " ";
     }
@@ -46,13 +51,19 @@ fn excerpt(line: &str, from: usize, to: usize) -> (String, String) {
         shown += &cell.text;
         carets += &(if cell.marked { "^" } else { " " }).repeat(cell.width);
     }
-    if right < cells.len() {
+    if end < line.len() || right < cells.len() {
         shown += CUT;
     }
     if first == cells.len() {
         carets += "^";
     }
     (shown.trim_end().to_string(), carets.trim_end().to_string())
+}
+
+/// The last boundary between characters that is not behind `at`.
+fn boundary(line: &str, at: usize) -> usize {
+    let at = at.min(line.len());
+    (0..=at).rev().find(|at| line.is_char_boundary(*at)).unwrap_or(0)
 }
 
 /// One character as it is shown, with the accents on it.

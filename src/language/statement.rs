@@ -140,7 +140,7 @@ impl Reader {
             }
             Rule::rest => Statement::Rest(self.target(parts.next()?)?),
             _ => {
-                self.builder.mistakes.push(Diagnostic::error(whole, "this is not a statement"));
+                self.builder.report(Diagnostic::error(whole, "this is not a statement"));
                 return None;
             }
         })
@@ -255,7 +255,7 @@ impl Reader {
     }
 
     fn refuse<T>(&mut self, span: Span, message: &str, remedy: &str) -> Option<T> {
-        self.builder.mistakes.push(Diagnostic::error(span, message).remedy(remedy));
+        self.builder.report(Diagnostic::error(span, message).remedy(remedy));
         None
     }
 }

@@ -28,6 +28,8 @@ pub enum Block {
     Paragraph(Vec<Inline>),
     /// Displayed equations, aligned at their relations.
     Display(Vec<Equation>),
+    /// What the names in the display above stand for: "where A = …".
+    Where(Vec<Equation>),
     /// Verdicts, one a line.
     Verdicts(Vec<VerdictLine>),
     /// A table.
@@ -220,7 +222,7 @@ impl Document {
         for block in &self.blocks {
             match block {
                 Block::Heading { text, .. } | Block::Paragraph(text) | Block::Note(text) => visit_inlines(text, visit),
-                Block::Display(equations) => equations.iter().for_each(&mut *visit),
+                Block::Display(equations) | Block::Where(equations) => equations.iter().for_each(&mut *visit),
                 Block::Verdicts(lines) => lines.iter().for_each(|line| visit_inlines(&line.note, visit)),
                 Block::Table(table) => {
                     let cells = table.columns.iter().chain(table.rows.iter().flatten());

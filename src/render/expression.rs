@@ -124,34 +124,60 @@ impl Expression {
         Expression::Differential(Box::new(expression.into()))
     }
 
-    /// Calls `visit` on every name in the expression, heads of objects and bound indices included.
-    pub fn for_each_symbol(&self, visit: &mut impl FnMut(&Symbol)) {
+    /// The expressions that this one is directly made of, in reading order.
+    pub fn children(&self) -> Vec<&Expression> {
         match self {
-            Expression::Number(_) => {}
-            Expression::Symbol(symbol) => visit(symbol),
-            Expression::Sum(parts) | Expression::Product(parts) => {
-                parts.iter().for_each(|part| part.for_each_symbol(visit));
+            Expression::Number(_) | Expression::Symbol(_) => Vec::new(),
+            Expression::Sum(parts) | Expression::Product(parts) => parts.iter().collect(),
+            Expression::Negative(inner) | Expression::Call(_, inner) | Expression::Differential(inner) => vec![inner],
+            Expression::Quotient(first, second) | Expression::Power(first, second) => vec![first, second],
+            Expression::Object(object) => object.arguments.iter().collect(),
+            Expression::Partial { of, by } => std::iter::once(&**of).chain(by).collect(),
+            Expression::Total { body, .. } => vec![body],
+        }
+    }
+
+    /// The same expression made of what `change` makes of its children.
+    pub fn map_children(&self, change: &mut impl FnMut(&Expression) -> Expression) -> Expression {
+        match self {
+            Expression::Number(_) | Expression::Symbol(_) => self.clone(),
+            Expression::Sum(parts) => Expression::Sum(parts.iter().map(change).collect()),
+            Expression::Product(parts) => Expression::Product(parts.iter().map(change).collect()),
+            Expression::Negative(inner) => Expression::Negative(Box::new(change(inner))),
+            Expression::Call(function, inner) => Expression::Call(*function, Box::new(change(inner))),
+            Expression::Differential(inner) => Expression::Differential(Box::new(change(inner))),
+            Expression::Quotient(above, below) => {
+                Expression::Quotient(Box::new(change(above)), Box::new(change(below)))
             }
-            Expression::Negative(inner) | Expression::Call(_, inner) | Expression::Differential(inner) => {
-                inner.for_each_symbol(visit);
-            }
-            Expression::Quotient(first, second) | Expression::Power(first, second) => {
-                first.for_each_symbol(visit);
-                second.for_each_symbol(visit);
-            }
+            Expression::Power(base, exponent) => Expression::Power(Box::new(change(base)), Box::new(change(exponent))),
             Expression::Object(object) => {
-                visit(&object.head);
-                object.arguments.iter().for_each(|argument| argument.for_each_symbol(visit));
+                let arguments = object.arguments.iter().map(change).collect();
+                Expression::Object(Object { arguments, ..object.clone() })
             }
             Expression::Partial { of, by } => {
-                of.for_each_symbol(visit);
-                by.iter().for_each(|variable| variable.for_each_symbol(visit));
+                let of = Box::new(change(of));
+                Expression::Partial { of, by: by.iter().map(change).collect() }
             }
             Expression::Total { index, body } => {
-                visit(&Symbol::new(index.as_str()));
-                body.for_each_symbol(visit);
+                Expression::Total { index: index.clone(), body: Box::new(change(body)) }
             }
         }
+    }
+
+    /// Calls `visit` on the expression and on every part of it, in reading order.
+    pub fn for_each_part<'a>(&'a self, visit: &mut impl FnMut(&'a Expression)) {
+        visit(self);
+        self.children().into_iter().for_each(|part| part.for_each_part(visit));
+    }
+
+    /// Calls `visit` on every name in the expression, heads of objects and bound indices included.
+    pub fn for_each_symbol(&self, visit: &mut impl FnMut(&Symbol)) {
+        self.for_each_part(&mut |part| match part {
+            Expression::Symbol(symbol) => visit(symbol),
+            Expression::Object(object) => visit(&object.head),
+            Expression::Total { index, .. } => visit(&Symbol::new(index.as_str())),
+            _ => {}
+        });
     }
 }
 

@@ -64,7 +64,7 @@ fn body(document: &Document, headings: [&str; 3]) -> String {
 
 /// A display belongs to the paragraph in front of it; everything else begins a paragraph.
 fn begins_paragraph(block: &Block) -> bool {
-    !matches!(block, Block::Display(_) | Block::Matrix(_))
+    !matches!(block, Block::Display(_) | Block::Where(_) | Block::Matrix(_))
 }
 
 fn block(block: &Block, headings: [&str; 3], namer: &mut Namer) -> String {
@@ -75,6 +75,7 @@ fn block(block: &Block, headings: [&str; 3], namer: &mut Namer) -> String {
         }
         Block::Paragraph(text) => format!("{}\n", running(text, true, namer)),
         Block::Display(equations) => display(equations, "", namer),
+        Block::Where(equations) => format!("where\n{}", display(equations, "", namer)),
         Block::Verdicts(lines) => verdicts(lines, namer),
         Block::Table(each) => table(each, namer),
         Block::Matrix(each) => matrix(each, namer),

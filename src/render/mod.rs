@@ -13,6 +13,8 @@ mod latex_lines;
 mod latex_names;
 mod latex_pieces;
 mod latex_where;
+mod letters;
 mod names;
+pub mod shared;
 pub mod text;
 mod text_lines;

@@ -45,6 +45,7 @@ fn render_block(block: &Block, layout: Layout) -> String {
         Block::Heading { text, .. } => wrap(&running(text), layout.width, 0, 0),
         Block::Paragraph(text) => wrap(&running(text), layout.width, 0, 0),
         Block::Display(equations) => display(equations, layout),
+        Block::Where(equations) => format!("where\n\n{}", display(equations, layout)),
         Block::Verdicts(lines) => verdicts(lines, layout),
         Block::Table(table) => render_table(table, layout),
         Block::Matrix(matrix) => render_matrix(matrix, layout),

@@ -6,3 +6,4 @@ mod documents;
 mod formulas;
 mod reader;
 mod samples;
+mod shared;
