@@ -1,5 +1,6 @@
 //! Scaffold.
 pub mod algebra;
+pub mod conditions;
 pub mod language;
 pub mod model;
 pub mod proof;

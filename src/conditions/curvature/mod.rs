@@ -1,0 +1,113 @@
+//! Curvature: whether the Slutsky matrix is negative semidefinite wherever the quantities demanded are positive.
+//!
+//! A ladder, one rung a file; the first that decides ends it. Certificates come first ([`certificates`]); then points are
+//! searched for one where the matrix is not negative semidefinite ([`search`]), and what fails there is told apart
+//! ([`failure`]): for all parameter values, for some, or in a part of the domain. Where symmetry fails the question is
+//! about vᵀSv, that is about the symmetric part.
+
+mod certificates;
+mod direction;
+mod failure;
+mod search;
+
+use std::rc::Rc;
+
+use crate::algebra::budget;
+use crate::algebra::field::Relation;
+use crate::algebra::generator::Element;
+use crate::algebra::polynomial::Poly;
+use crate::model::{Coverage, Model};
+use crate::proof::{Balanced, Expression, Factor, Matrix, Proved, Prover};
+
+use super::finding::{Condition, Finding, Verdict};
+use super::slutsky::System;
+
+/// The work that one rung may take.
+const RUNG_WORK: u64 = 300_000_000;
+/// The subject of the steps.
+const SUBJECT: &str = "curvature";
+
+/// The question, with what is known of the matrix.
+struct Question<'a> {
+    model: &'a Model,
+    system: &'a System,
+    /// pᵢ pⱼ Sᵢⱼ, over m in shares.
+    matrix: Rc<Matrix>,
+    /// Its entries.
+    entries: Vec<Element>,
+    /// That its rows and columns sum to zero, if they do.
+    balance: Option<Proved<Balanced>>,
+    /// What must be positive for the quantities demanded to be.
+    quantities: Vec<Element>,
+}
+
+/// Climbs the ladder.
+pub(super) fn examine(model: &Model, system: &System, prover: &mut Prover<'_>, earlier: &[Finding]) -> Finding {
+    let domain = positive_quantities(model, system);
+    let mut finding = prover.supposing(&domain, |prover| {
+        let quantities: Vec<Element> = domain.iter().map(|(e, _)| prover.value(e)).collect();
+        if search::points(model, &quantities).next().is_none() {
+            return nowhere(model, &quantities);
+        }
+        let matrix = system.scaled_matrix();
+        let entries = prover.entries(&matrix);
+        let balance = budget::attempt(RUNG_WORK, || prover.balanced(SUBJECT, &matrix, &[])).ok().flatten();
+        let question = Question { model, system, matrix, entries, balance, quantities };
+        certificates::prove(&question, prover).unwrap_or_else(|| by_points(&question, prover))
+    });
+    let symmetry = earlier.iter().find(|f| f.condition == Condition::Symmetry);
+    if symmetry.is_some_and(|f| f.verdict != Verdict::Proven) {
+        finding.method.push_str("; symmetry is not proven, so the question is about the symmetric part, v'Sv");
+    }
+    finding
+}
+
+/// The part of the domain that curvature is about: every quantity positive, and less than all of income spent on the
+/// goods of an incomplete system.
+fn positive_quantities(model: &Model, system: &System) -> Vec<(Expression, Relation)> {
+    let mut domain: Vec<(Expression, Relation)> =
+        system.functions.iter().map(|f| (Expression::from(Factor::Function(*f)), Relation::Positive)).collect();
+    if model.coverage != Coverage::Complete {
+        let whole = match system.coordinates {
+            super::Coordinates::Shares => Expression::integer(1),
+            super::Coordinates::Outlays => Expression::element(Poly::var(system.income)),
+        };
+        let left = system.functions.iter().fold(whole, |sum, f| sum.plus(-1, vec![Factor::Function(*f)]));
+        domain.push((left, Relation::Positive));
+    }
+    domain
+}
+
+fn nowhere(model: &Model, quantities: &[Element]) -> Finding {
+    use crate::algebra::sign::Sign;
+    let negative = |e: &Element| {
+        let sign = budget::attempt(RUNG_WORK, || model.field.sign(e)).unwrap_or(Sign::Unknown);
+        matches!(sign, Sign::Negative | Sign::NonPositive | Sign::Zero)
+    };
+    let reason = match quantities.iter().position(negative).and_then(|i| model.goods.get(i)) {
+        Some(good) => {
+            format!("the demand for {} is nowhere positive, so that there is no point to ask about", good.name)
+        }
+        None => "no admissible point was found at which every quantity is positive".to_string(),
+    };
+    Finding::undecided(Condition::Curvature, &reason)
+}
+
+fn by_points(question: &Question<'_>, prover: &mut Prover<'_>) -> Finding {
+    let seen = search::look(question, prover);
+    let looked = seen.looked;
+    match seen.failing {
+        Some(failing) => failure::tell_apart(question, prover, failing, seen.regular),
+        None => {
+            let mut finding = Finding::undecided(
+                Condition::Curvature,
+                &format!(
+                    "no certificate was found (signs of the entries and of the characteristic coefficients), and no \
+                     direction v with v'Sv > 0 at {looked} admissible points"
+                ),
+            );
+            finding.regular_point = seen.regular.map(|proof| proof.claim().point.clone());
+            finding
+        }
+    }
+}

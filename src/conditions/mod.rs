@@ -1,0 +1,47 @@
+//! The conditions that demands must satisfy to come from preferences: each returns a [`Finding`].
+//!
+//! Homogeneity, adding-up and symmetry are zero tests of a family of identities ([`settlement`]); where one fails, the
+//! coefficients of what is left say for which parameters it holds ([`branches`]). Curvature climbs a ladder of methods
+//! ([`curvature`]). A condition proposes; [`crate::proof`] establishes or refuses.
+
+mod adding_up;
+mod branches;
+mod claims;
+mod coefficients;
+mod curvature;
+mod finding;
+mod homogeneity;
+mod settlement;
+mod slutsky;
+mod symmetry;
+mod witness;
+
+use crate::model::{Coverage, Model};
+use crate::proof::Prover;
+
+pub use claims::examine_claim;
+pub use finding::{Branch, ClaimFinding, Condition, Finding, Verdict, Witness};
+pub use slutsky::{Coordinates, System};
+
+/// Whether a condition is asked of a model: adding-up only of complete systems, homogeneity not of deflated ones.
+pub fn applies(condition: Condition, model: &Model) -> bool {
+    match condition {
+        _ if model.demands.is_empty() || model.income.is_none() => false,
+        Condition::AddingUp => model.coverage == Coverage::Complete,
+        Condition::Homogeneity => model.coverage != Coverage::Deflated,
+        Condition::Symmetry | Condition::Curvature => true,
+    }
+}
+
+/// Examines one condition. The steps are added to the prover's derivation; `earlier` are the findings so far.
+pub fn examine(condition: Condition, model: &Model, prover: &mut Prover<'_>, earlier: &[Finding]) -> Finding {
+    let Some(system) = System::of(model, prover) else {
+        return Finding::undecided(condition, "the model has no demands");
+    };
+    match condition {
+        Condition::Homogeneity => settlement::settle(model, &system, prover, &homogeneity::FAMILY),
+        Condition::AddingUp => adding_up::examine(model, &system, prover),
+        Condition::Symmetry => settlement::settle(model, &system, prover, &symmetry::FAMILY),
+        Condition::Curvature => curvature::examine(model, &system, prover, earlier),
+    }
+}

@@ -1,0 +1,88 @@
+//! From a family of identities to a finding: proven by normal forms, or refuted at a point, or conditional on
+//! restrictions of the parameters.
+
+use crate::algebra::budget;
+use crate::model::Model;
+use crate::proof::{Equation, Prover, Residual};
+
+use super::branches::{self, Solved};
+use super::finding::{Condition, Finding, Verdict, Witness};
+use super::slutsky::System;
+use super::witness;
+
+/// The identities of a condition.
+pub(super) struct Family {
+    /// The condition.
+    pub condition: Condition,
+    /// The identities of a system.
+    pub equations: fn(&System) -> Vec<Equation>,
+    /// The same identity with the difference of its sides as a reader expects it.
+    pub in_quantities: fn(&System, &Equation) -> Equation,
+}
+
+/// The work that the search for restrictions may take.
+const BRANCH_WORK: u64 = 400_000_000;
+/// The work that one sign may take.
+const SIGN_WORK: u64 = 4_000_000;
+
+/// Settles a condition that is a family of identities.
+pub(super) fn settle(model: &Model, system: &System, prover: &mut Prover<'_>, family: &Family) -> Finding {
+    let subject = family.condition.name();
+    let equations = (family.equations)(system);
+    let residuals = match prover.identities(subject, equations.clone(), &[]) {
+        Ok(proof) => {
+            let mut finding = Finding::new(family.condition, Verdict::Proven, "normal form");
+            finding.steps.push(proof.step());
+            return finding;
+        }
+        Err(residuals) => residuals,
+    };
+    let shown = |residual: &Residual| {
+        let equation = equations.iter().find(|e| e.label == residual.label);
+        equation.map(|e| (family.in_quantities)(system, e))
+    };
+    let mut finding = match witness::against(model, prover, subject, &residuals, &shown) {
+        Some(refuted) => {
+            let mut finding = Finding::new(family.condition, Verdict::Refuted, "evaluation at a point");
+            finding.witness = Some(Witness::of(refuted.failure(), None));
+            finding.steps.push(refuted.step());
+            restrict(model, family, &residuals, &mut finding);
+            finding
+        }
+        None => {
+            let reason = format!(
+                "the normal form is not zero for {}, and no admissible point was found that shows a difference",
+                witness::places(model, &residuals)
+            );
+            Finding::undecided(family.condition, &reason)
+        }
+    };
+    finding.residuals = residuals;
+    finding
+}
+
+/// Looks for parameter values that rescue the condition, or for a reason why none do.
+fn restrict(model: &Model, family: &Family, residuals: &[Residual], finding: &mut Finding) {
+    let excludes =
+        |r: &Residual| budget::attempt(SIGN_WORK, || model.field.sign(&r.element).excludes_zero()).unwrap_or(false);
+    let free = model.parameters.iter().any(|p| p.eliminated.is_none());
+    if !free || residuals.iter().take(8).any(excludes) {
+        finding.never = Some(true);
+        return;
+    }
+    let holds = |special: &Model| {
+        let mut prover = Prover::new(&special.field);
+        let Some(system) = System::of(special, &mut prover) else { return false };
+        prover.identities(family.condition.name(), (family.equations)(&system), &[]).is_ok()
+    };
+    let solved = budget::attempt(BRANCH_WORK, || branches::solve(model, residuals, &holds));
+    let Ok(Solved { branches, complete }) = solved else { return };
+    if branches.is_empty() {
+        finding.never = complete.then_some(true);
+        return;
+    }
+    finding.verdict = Verdict::Conditional;
+    finding.never = Some(false);
+    finding.restrictions = Some(branches);
+    finding.restrictions_complete = complete;
+}
