@@ -65,11 +65,13 @@ fn may_fail(model: &Model, e: &Element, relation: Relation, point: &Point) -> bo
     use std::cmp::Ordering::{Equal, Greater, Less};
     let enclosed = budget::attempt(WORK, || model.field.enclose(e, point, 64));
     let Ok(Some(interval)) = enclosed else { return false };
-    match (relation, interval.sign()) {
-        (Relation::Positive | Relation::NonNegative, Some(Greater)) => false,
-        (Relation::NonZero, Some(Greater | Less)) | (Relation::NonNegative, Some(Equal)) => false,
-        _ => true,
-    }
+    let holds = matches!(
+        (relation, interval.sign()),
+        (Relation::Positive | Relation::NonNegative, Some(Greater))
+            | (Relation::NonZero, Some(Greater | Less))
+            | (Relation::NonNegative, Some(Equal))
+    );
+    !holds
 }
 
 fn settled(verdict: Verdict, witness: Option<Witness>, step: crate::proof::StepId) -> ClaimFinding {

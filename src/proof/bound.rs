@@ -81,13 +81,13 @@ fn certifies(field: &Field, combination: &Combination, f: &Element, relation: Re
             return false;
         }
         strict |= sign == Sign::Positive && known == Relation::Positive;
-        rest = &rest - &(&(multiplier * fact)).scale(scale);
+        rest = &rest - &(multiplier * fact).scale(scale);
     }
     for (scale, root) in &combination.squares {
         if !scale.is_positive() {
             return false;
         }
-        rest = &rest - &(&(root * root)).scale(scale);
+        rest = &rest - &(root * root).scale(scale);
     }
     let rest_sign = if field.is_zero(&rest) { Sign::Zero } else { field.sign(&rest) };
     strict |= rest_sign == Sign::Positive;

@@ -6,9 +6,12 @@ use crate::proof::{Proved, Prover, Semidefinite};
 use super::super::finding::{Condition, Finding, Verdict};
 use super::{Question, RUNG_WORK, SUBJECT};
 
+/// A rung: it establishes that the matrix is negative semidefinite, or gives up.
+type Rung<'r> = &'r dyn Fn(&mut Prover<'_>) -> Option<Proved<Semidefinite>>;
+
 /// Tries the rungs in turn.
 pub(super) fn prove(question: &Question<'_>, prover: &mut Prover<'_>) -> Option<Finding> {
-    let rungs: [(&str, &dyn Fn(&mut Prover<'_>) -> Option<Proved<Semidefinite>>); 3] = [
+    let rungs: [(&str, Rung<'_>); 3] = [
         ("the matrix is zero", &|prover| prover.zero_matrix(SUBJECT, &question.matrix)),
         ("Laplacian form", &|prover| prover.laplacian(SUBJECT, question.balance.as_ref()?)),
         ("characteristic coefficients", &|prover| by_coefficients(question, prover)),
