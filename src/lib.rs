@@ -4,4 +4,5 @@ pub mod conditions;
 pub mod language;
 pub mod model;
 pub mod proof;
+pub mod recovery;
 pub mod render;
