@@ -287,7 +287,15 @@ impl Field {
                 content = -content;
             }
             let oriented = if flip { factor.neg() } else { factor.clone() };
-            powers.push((self.named(&oriented, None), *exponent as i32));
+            let named = self.named(&oriented, None);
+            match named.as_monomial() {
+                // a retired sum: a power of its root, or the product of its factors
+                Some((c, m)) if m.len() != 1 || m.total_degree() != 1 => {
+                    content *= num_traits::Pow::pow(c, *exponent);
+                    powers.extend(m.iter().map(|(v, k)| (Poly::var(v), k * *exponent as i32)));
+                }
+                _ => powers.push((named, *exponent as i32)),
+            }
         }
         powers.extend(denominator.into_iter().map(|(v, k)| (Poly::var(v), -((k * self.root_index(v)) as i32))));
         (content, powers)
