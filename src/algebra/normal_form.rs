@@ -162,24 +162,49 @@ impl Field {
                 e = e.mul_term(&Rational::one(), &Monomial::power(var, (root * power) as i32));
                 continue;
             }
-            let Some((var, value, root)) = self.smallest_sum(&e) else { return false };
-            e = put_back(&e, var, &value, root as i32);
+            let Some(next) = self.put_back_plain(&e) else {
+                let Some((var, value, root)) = self.highest_sum(&e) else { return false };
+                e = put_back(&e, var, &value, root as i32);
+                continue;
+            };
+            e = next;
         }
     }
 
-    fn smallest_sum(&self, e: &Element) -> Option<(Var, Element, u32)> {
-        let mut best: Option<(usize, Var, Element, u32)> = None;
-        for var in e.vars() {
-            if let Kind::Sum { value, root } = &*self.kind(var)
-                && e.degree(var) >= *root as i32
-            {
-                let value = self.current(value);
-                if best.as_ref().is_none_or(|b| value.len() < b.0) {
-                    best = Some((value.len(), var, value, *root));
-                }
-            }
+    /// Puts back all sums of parameters that occur to the first power at once, in one pass; they are the cheap ones.
+    /// `None` where there is no such sum.
+    fn put_back_plain(&self, e: &Element) -> Option<Element> {
+        let plain: Vec<(Var, Element)> = e
+            .vars()
+            .into_iter()
+            .filter(|v| e.degree(*v) == 1 && e.low_degree(*v) >= 0)
+            .filter_map(|v| match &*self.kind(v) {
+                Kind::Sum { value, root: 1 } if self.is_of_parameters(v) => Some((v, self.current(value))),
+                _ => None,
+            })
+            .collect();
+        if plain.is_empty() {
+            return None;
         }
-        best.map(|(_, var, value, root)| (var, value, root))
+        let mut untouched = Vec::new();
+        let mut parts = Vec::new();
+        for (monomial, coefficient) in e.raw_terms() {
+            let Some((var, value)) = plain.iter().find(|(v, _)| monomial.exponent(*v) == 1) else {
+                untouched.push((monomial.clone(), coefficient.clone()));
+                continue;
+            };
+            parts.push(value.mul_term(&coefficient.to_rational(), &monomial.mul(&Monomial::power(*var, -1))));
+        }
+        parts.push(Poly::from_int_terms(untouched));
+        Some(Poly::sum(parts).scale(&e.denominator().to_rational().recip()))
+    }
+
+    fn is_of_parameters(&self, var: Var) -> bool {
+        self.support(var).iter().all(|v| match &*self.kind(*v) {
+            Kind::Symbol(role) => !role.is_positive(),
+            Kind::Sum { root, .. } => *root == 1,
+            _ => false,
+        })
     }
 
     /// Whether the element is non-zero at a fixed point of a prime field, its free variables chosen at will: then it is
