@@ -117,12 +117,8 @@ impl Field {
     /// The degree of each generator is found once; where a named sum is homogeneous its derivative is a multiple of it.
     pub fn euler(&self, e: &Element, scale: &Scale) -> Element {
         let e = self.current(e);
-        let moving: Vec<(Var, Rc<Element>)> = e
-            .vars()
-            .into_iter()
-            .map(|v| (v, self.euler_variable(v, scale)))
-            .filter(|(_, d)| !d.is_zero())
-            .collect();
+        let moving: Vec<(Var, Rc<Element>)> =
+            e.vars().into_iter().map(|v| (v, self.euler_variable(v, scale))).filter(|(_, d)| !d.is_zero()).collect();
         let all: Vec<_> = moving.iter().collect();
         let (whole, fractional): (Vec<_>, Vec<_>) = all.into_iter().partition(|(_, d)| d.denominator().is_one());
         let mut parts = vec![leibniz(&e, &whole)];

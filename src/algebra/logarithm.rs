@@ -64,18 +64,22 @@ impl Field {
         }
     }
 
-    /// ln of c·v, known to be positive, for a single variable v and c = ±1 (or a positive rational).
+    /// ln of c·vᵏ, known to be positive, for a single variable v.
     fn ln_positive(&self, base: &Element) -> Built {
         let Some((content, monomial)) = base.as_monomial() else {
             return Ok(Poly::var(self.log_var(Base::Sum(Rc::new(base.clone())))));
         };
-        let Some((var, 1)) = monomial.iter().next() else {
-            return Ok(self.ln_rational(&content));
-        };
-        if content.is_negative() {
-            return Ok(self.ln_negated(var));
+        let mut powers = monomial.iter();
+        let (first, second) = (powers.next(), powers.next());
+        match (first, second) {
+            (None, _) if content.is_positive() => Ok(self.ln_rational(&content)),
+            (Some((var, k)), None) if content.is_positive() => {
+                let log = self.ln_var(var).scale(&Rational::from_integer(k.into()));
+                Ok(&log + &self.ln_rational(&content))
+            }
+            (Some((var, 1)), None) => Ok(&self.ln_negated(var) + &self.ln_rational(&-content)),
+            _ => Err(Blocked::SignUnknown(base.clone())),
         }
-        Ok(&self.ln_var(var) + &self.ln_rational(&content))
     }
 
     /// ln(−v) for a negative variable; a named sum is turned round, another variable gets a sum for its negative.

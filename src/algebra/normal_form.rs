@@ -1,6 +1,7 @@
 //! The normal form: named sums put back, denominators kept as powers of named sums, and the zero test.
 
 use num_traits::One;
+use rustc_hash::FxHashMap;
 
 use super::budget;
 use super::field::Field;
@@ -29,9 +30,9 @@ impl Field {
     /// The named sum of highest level that occurs to its N-th or a higher power.
     fn highest_sum(&self, e: &Element) -> Option<(Var, Element, u32)> {
         let mut best: Option<(u32, Var)> = None;
-        for var in e.vars() {
+        for (var, (_, high)) in e.ranges() {
             if let Kind::Sum { root, .. } = &*self.kind(var)
-                && e.degree(var) >= *root as i32
+                && high >= *root as i32
                 && best.is_none_or(|b| b < (self.level(var), var))
             {
                 best = Some((self.level(var), var));
@@ -82,8 +83,7 @@ impl Field {
     /// A sum with a negative power, its root, and the power of its value that clears it; highest level first.
     fn lowest_sum(&self, e: &Element) -> Option<(Var, u32, u32)> {
         let mut best: Option<(u32, Var, u32, u32)> = None;
-        for var in e.vars() {
-            let low = e.low_degree(var);
+        for (var, (low, _)) in e.ranges() {
             if let Kind::Sum { root, .. } = &*self.kind(var)
                 && low < 0
             {
@@ -174,26 +174,27 @@ impl Field {
     /// Puts back all sums of parameters that occur to the first power at once, in one pass; they are the cheap ones.
     /// `None` where there is no such sum.
     fn put_back_plain(&self, e: &Element) -> Option<Element> {
-        let plain: Vec<(Var, Element)> = e
-            .vars()
-            .into_iter()
-            .filter(|v| e.degree(*v) == 1 && e.low_degree(*v) >= 0)
-            .filter_map(|v| match &*self.kind(v) {
-                Kind::Sum { value, root: 1 } if self.is_of_parameters(v) => Some((v, self.current(value))),
-                _ => None,
-            })
-            .collect();
+        let ranges = e.ranges();
+        let mut plain: FxHashMap<Var, Element> = FxHashMap::default();
+        for (var, range) in &ranges {
+            if let Kind::Sum { value, root: 1 } = &*self.kind(*var)
+                && *range == (1, 1)
+                && self.is_of_parameters(*var)
+            {
+                plain.insert(*var, self.current(value));
+            }
+        }
         if plain.is_empty() {
             return None;
         }
         let mut untouched = Vec::new();
         let mut parts = Vec::new();
         for (monomial, coefficient) in e.raw_terms() {
-            let Some((var, value)) = plain.iter().find(|(v, _)| monomial.exponent(*v) == 1) else {
+            let Some((var, value)) = monomial.iter().find_map(|(v, _)| plain.get(&v).map(|value| (v, value))) else {
                 untouched.push((monomial.clone(), coefficient.clone()));
                 continue;
             };
-            parts.push(value.mul_term(&coefficient.to_rational(), &monomial.mul(&Monomial::power(*var, -1))));
+            parts.push(value.mul_term(&coefficient.to_rational(), &monomial.mul(&Monomial::power(var, -1))));
         }
         parts.push(Poly::from_int_terms(untouched));
         Some(Poly::sum(parts).scale(&e.denominator().to_rational().recip()))
@@ -210,11 +211,11 @@ impl Field {
     /// Whether the element is non-zero at a fixed point of a prime field, its free variables chosen at will: then it is
     /// not the zero of the field. Inconclusive (`false`) where a root would have to be taken.
     fn is_visibly_nonzero(&self, e: &Element) -> bool {
-        let mut values = rustc_hash::FxHashMap::default();
+        let mut values = FxHashMap::default();
         self.residue(e, &mut values).is_some_and(|r| r != 0)
     }
 
-    fn residue(&self, e: &Element, values: &mut rustc_hash::FxHashMap<Var, Option<u64>>) -> Option<u64> {
+    fn residue(&self, e: &Element, values: &mut FxHashMap<Var, Option<u64>>) -> Option<u64> {
         for var in e.vars() {
             if values.contains_key(&var) {
                 continue;

@@ -6,16 +6,16 @@ use num_traits::{One, Signed, ToPrimitive, Zero};
 use super::factor::factor;
 use super::field::Field;
 use super::generator::{Element, Kind, Role};
-use super::monomial::Var;
+use super::monomial::{Monomial, Var};
 use super::number::Rational;
 use super::polynomial::Poly;
 
-/// a + b√c with rational a, b and a named root √c.
+/// a + b√c with rational a, b and √c a product of named square roots of numbers.
 struct Quadratic {
     a: Rational,
     b: Rational,
     c: Rational,
-    root: Var,
+    root: Monomial,
 }
 
 impl Field {
@@ -30,17 +30,14 @@ impl Field {
     }
 
     fn as_quadratic(&self, e: &Element) -> Option<Quadratic> {
-        let vars = e.vars();
-        let [root] = vars[..] else { return None };
-        let Kind::Sum { value, root: 2 } = &*self.kind(root) else { return None };
-        let c = value.as_constant()?;
-        if e.degree(root) != 1 || e.low_degree(root) < 0 {
-            return None;
+        let mut irrational = e.terms().filter(|(m, _)| !m.is_one());
+        let (Some((root, b)), None) = (irrational.next(), irrational.next()) else { return None };
+        let mut c = Rational::one();
+        for (var, exponent) in root.iter() {
+            let Kind::Sum { value, root: 2 } = &*self.kind(var) else { return None };
+            c *= (exponent == 1).then(|| value.as_constant()).flatten()?;
         }
-        let mut parts = e.coefficients(root).into_iter();
-        let b = parts.next()?.1.as_constant()?;
-        let a = parts.next().map_or(Some(Rational::zero()), |(_, p)| p.as_constant())?;
-        Some(Quadratic { a, b, c, root })
+        Some(Quadratic { a: e.coefficient(&Monomial::one()), b, c, root: root.clone() })
     }
 
     /// β = t/2 + v√c with βⁿ = a + b√c: the norm ν of β is an n-th root of the norm of the number, and its trace t a
@@ -63,7 +60,7 @@ impl Field {
     fn from_trace(&self, number: &Quadratic, trace: &Rational, nu: &Rational) -> Option<Element> {
         let half = trace / Rational::from_integer(2.into());
         let v = rational_root(&((&half * &half - nu) / &number.c), 2)?;
-        Some(&Poly::constant(&half) + &Poly::var(number.root).scale(&v))
+        Some(&Poly::constant(&half) + &Poly::term(&v, number.root.clone()))
     }
 
     /// √(a + b√c) = √x ± √y with x + y = a and 4xy = b²c.
@@ -83,7 +80,7 @@ impl Field {
     /// right power.
     fn positive_side(&self, root: &Element, base: &Element, n: u32) -> Option<Element> {
         let mirrored = match self.as_quadratic(root) {
-            Some(q) => &Poly::constant(&q.a) - &Poly::var(q.root).scale(&q.b),
+            Some(q) => &Poly::constant(&q.a) - &Poly::term(&q.b, q.root.clone()),
             None => root.clone(),
         };
         [root.clone(), root.neg(), mirrored.clone(), mirrored.neg()].into_iter().find(|candidate| {

@@ -166,6 +166,18 @@ impl Poly {
         Some(if self.den.is_one() { sum } else { sum / self.den.to_rational() })
     }
 
+    /// Each variable with its smallest and largest exponent over the terms that hold it, in one pass.
+    pub fn ranges(&self) -> FxHashMap<Var, (i32, i32)> {
+        let mut ranges: FxHashMap<Var, (i32, i32)> = FxHashMap::default();
+        for (m, _) in &self.terms {
+            for (v, e) in m.iter() {
+                let slot = ranges.entry(v).or_insert((e, e));
+                *slot = (slot.0.min(e), slot.1.max(e));
+            }
+        }
+        ranges
+    }
+
     /// Whether every coefficient is positive (true for 0).
     pub fn has_positive_coefficients(&self) -> bool {
         self.terms.iter().all(|(_, c)| c.signum() > 0)
