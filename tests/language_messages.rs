@@ -171,6 +171,12 @@ fn statements() {
         "others",
         "claim a",
         "claim",
+        "goods: bread, fish",
+        "income m[i]",
+        "others q, r[j]",
+        "parameters g[i,i]",
+        "assume a == 1, b > 0 > c,\n  c d > 0, ln e > 0, foo(a) = 1",
+        "parameters a b, c, d[1], pi",
     ];
     check("statements", table(&files));
 }
@@ -253,16 +259,19 @@ fn bounds() {
     let deep = format!("let a = {}b{}", "(".repeat(100_000), ")".repeat(100_000));
     let never_closed = format!("let a = {}b", "(".repeat(100_000));
     let tower = format!("let a = b{}", "^b".repeat(100_000));
+    let name = format!("let {} = b", "a".repeat(100_000));
     let digits = format!("let a = {}", "7".repeat(1001));
     let statement = format!("let a = {}b", "b + ".repeat(300_000));
     let file = "a".repeat(10_000_000);
     let files = [
         &deep,
         &never_closed,
+        &name,
         &tower,
         &digits,
         &statement,
         &file,
+        &file[..10_000],
         "let a = 2^1000000",
         "let a = b^-10001",
         "let a = 2^(10^9)",
@@ -291,6 +300,8 @@ fn bytes_that_are_no_text() {
 
 #[test]
 fn mistakes_without_end_are_cut_off() {
+    let source = Source::new("model.demand", format!("assume {}a", "a, ".repeat(300_000)));
+    assert_eq!(examine(&source).mistakes.len(), 21);
     let source = Source::new("model.demand", "let a = b b\n".repeat(1000));
     let mistakes = examine(&source).mistakes;
     assert_eq!(mistakes.len(), 201);

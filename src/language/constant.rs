@@ -89,3 +89,38 @@ fn power(base: Rational, exponent: Rational) -> Constant {
         _ => Constant::Unknown,
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::language::{Source, Statement, read};
+
+    /// What is known of the exponent of `a^(…)`.
+    fn of(formula: &str) -> Constant {
+        let model = read(&Source::new("", format!("let y = {formula}"))).unwrap();
+        match &model.statements[0].statement {
+            Statement::Let { value: expr, .. } => value(expr),
+            other => panic!("{other:?}"),
+        }
+    }
+
+    #[test]
+    fn small_values_are_exact() {
+        for (formula, numerator, denominator) in
+            [("3/4 - 1", -1, 4), ("-2^3", -8, 1), ("(1/2)^-2", 4, 1), ("100^2", 10_000, 1), ("2^-3*4", 1, 2)]
+        {
+            let expected = Rational::new(numerator.into(), denominator.into());
+            assert_eq!(of(formula), Constant::Value(expected), "{formula}");
+        }
+    }
+
+    #[test]
+    fn large_values_are_never_worked_out() {
+        for formula in ["10001", "-10001", "10^9", "2^10000", "2^1000*3^1000", "(3/2)^100", "1 + 10^4"] {
+            assert_eq!(of(formula), Constant::TooLarge, "{formula}");
+        }
+        for formula in ["a", "2*a", "ln(2)", "2^(1/2)", "1/0", "0^-1", "pi"] {
+            assert_eq!(of(formula), Constant::Unknown, "{formula}");
+        }
+    }
+}

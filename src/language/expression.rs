@@ -22,6 +22,9 @@ use super::unsupported;
 /// The most digits of a number.
 const MAX_DIGITS: usize = 1000;
 
+/// The longest name, in bytes.
+const MAX_NAME_BYTES: usize = 200;
+
 /// Builds trees, and keeps what is wrong with them.
 #[derive(Debug, Default)]
 pub struct Builder {
@@ -100,7 +103,12 @@ impl Builder {
     }
 
     /// The name that a pair is.
-    pub fn name(&self, pair: &Pair<Rule>) -> Name {
+    pub fn name(&mut self, pair: &Pair<Rule>) -> Name {
+        if pair.as_str().len() > MAX_NAME_BYTES {
+            let message =
+                format!("this name has {} bytes; a name may have at most {MAX_NAME_BYTES}", pair.as_str().len());
+            self.report(Diagnostic::error(self.span(pair), message).remedy("choose a shorter name"));
+        }
         Name { text: normal_name(pair.as_str()), span: self.span(pair) }
     }
 

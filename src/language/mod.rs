@@ -1,10 +1,11 @@
 //! Text to syntax tree, with the messages for what cannot be read.
 //!
 //! A file is split into statements by [`layout`], each statement is looked over by [`brackets`], parsed by the grammar
-//! of its keyword, and built by [`statement`] and [`expression`]; [`slips`] turns what the grammar refuses into a
+//! of its keyword, and built by [`build`] and [`expression`]; [`slips`] turns what the grammar refuses into a
 //! message. A mistake in one statement does not hide those in the next.
 
 mod brackets;
+mod build;
 mod constant;
 pub mod diagnostic;
 mod expression;
@@ -63,6 +64,7 @@ pub fn examine(source: &Source) -> Reading {
     let mut exponentials = Vec::new();
     for draft in &layout.drafts {
         if reading.mistakes.len() > MAX_MISTAKES {
+            reading.declarations_lost = true;
             break;
         }
         take(draft, &mut reading, &mut exponentials);

@@ -29,6 +29,16 @@ impl<'a> Place<'a> {
         Place { text, offset, at, expected }
     }
 
+    /// The whole statement.
+    pub fn text(&self) -> &'a str {
+        self.text
+    }
+
+    /// Its offset in the statement.
+    pub fn at(&self) -> usize {
+        self.at
+    }
+
     /// Whether one of these would have been right here.
     pub fn expects(&self, rules: &[Rule]) -> bool {
         rules.iter().any(|rule| self.expected.contains(rule))

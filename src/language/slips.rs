@@ -368,7 +368,8 @@ fn number_of_a_good(place: &Place) -> Option<Diagnostic> {
 /// `a ? b`
 fn sign_of_no_language(place: &Place) -> Option<Diagnostic> {
     let sign = place.after().chars().next()?;
-    if goes_on_word(sign) || "+-*/^()[]=<>!,.\"$".contains(sign) {
+    let in_formula = place.expects_operand() || place.expects_operator();
+    if !in_formula || goes_on_word(sign) || "+-*/^()[]=<>!,.\"$".contains(sign) {
         return None;
     }
     let remedy = "formulas have names, numbers, + - * / ^, parentheses, indices in [ ] and functions such as ln(…)";

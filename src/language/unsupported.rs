@@ -70,6 +70,8 @@ fn symbolic_range(rest: &str) -> Option<String> {
     if first.is_empty() || last.is_empty() { None } else { Some(format!("goods {first}..{last}")) }
 }
 
+const COMPARISONS: [&str; 6] = ["=", "!=", "<", "<=", ">", ">="];
+
 /// The form of a claim that is neither an identity nor an inequality.
 fn claim(rest: &str) -> Option<String> {
     let words = words(rest);
@@ -81,13 +83,13 @@ fn claim(rest: &str) -> Option<String> {
         leading_token(tail.trim_start())
     };
     Some(match words[..] {
-        ["demand" | "hicksian" | "share" | "outlay" | "inverse", _] if after(2) == "=" => {
+        ["demand" | "hicksian" | "share" | "outlay" | "inverse", _] if COMPARISONS.contains(&after(2)) => {
             format!("claim {} GOOD = …", words[0])
         }
         ["demand" | "hicksian" | "share" | "outlay" | "inverse"] if after(1) == "[" => {
             format!("claim {}[…] = …", words[0])
         }
-        ["expenditure" | "utility"] if after(1) == "=" => format!("claim {} = …", words[0]),
+        ["expenditure" | "utility"] if COMPARISONS.contains(&after(1)) => format!("claim {} = …", words[0]),
         ["indirect", "utility", ..] => "claim indirect utility = …".to_string(),
         ["slutsky" | "elasticity"] if after(1) == "[" => format!("claim {}[…] = …", words[0]),
         ["compensated", "elasticity", ..] => "claim compensated elasticity[…] = …".to_string(),
