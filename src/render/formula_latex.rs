@@ -48,7 +48,7 @@ fn number(value: &Rational, style: Style) -> Piece {
         let width = 50 * (above.len() + below.len() + 1) as u32;
         return Piece::new(format!("{above}/{below}"), width, Level::Ratio).edged(Edge::Digit, Edge::Digit);
     }
-    let width = 35 * above.len().max(below.len()) as u32 + 24;
+    let width = 40 * above.len().max(below.len()) as u32 + 24;
     let tex = match above.len() == 1 && below.len() == 1 {
         true => format!("\\tfrac{above}{below}"),
         false => format!("\\tfrac{{{above}}}{{{below}}}"),
@@ -142,7 +142,7 @@ fn quotient(above: &Expression, below: &Expression, style: Style) -> Piece {
     let inner = if style == Style::Display { Style::Text } else { Style::Script };
     let (above, below) = (typeset(above, inner), typeset(below, inner));
     let natural = above.width.max(below.width);
-    let width = if style == Style::Display { natural } else { natural * 7 / 10 };
+    let width = if style == Style::Display { natural } else { natural * 8 / 10 };
     let height = 1 + above.height.max(below.height);
     Piece::new(format!("\\frac{{{}}}{{{}}}", above.tex, below.tex), width + 24, Level::Product).tall(height)
 }
@@ -255,7 +255,7 @@ fn partial(of: &Expression, by: &[Expression], style: Style) -> Piece {
             Piece::new(format!("{above}/{}", below.tex), derivand.width + 108 + below.width, Level::Ratio)
         }
         Style::Text => {
-            Piece::new(format!("\\frac{{{above}}}{{{}}}", below.tex), natural * 7 / 10 + 24, Level::Product).tall(1)
+            Piece::new(format!("\\frac{{{above}}}{{{}}}", below.tex), natural * 8 / 10 + 24, Level::Product).tall(1)
         }
         Style::Display => {
             Piece::new(format!("\\frac{{{above}}}{{{}}}", below.tex), natural + 24, Level::Product).tall(1)

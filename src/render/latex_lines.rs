@@ -119,7 +119,12 @@ fn put_behind(chunks: &mut [Chunk], tex: &str, width: u32) {
 
 /// Factors that are wide and can be opened are; the others stand side by side.
 fn flow_product(factors: &[Expression], room: u32, depth: u32, out: &mut Vec<Chunk>) {
-    let mut before: Option<Piece> = None;
+    flow_factors(factors, None, room, depth, out);
+}
+
+/// Factors behind the factor `before`, if there is one.
+fn flow_factors(factors: &[Expression], before: Option<Piece>, room: u32, depth: u32, out: &mut Vec<Chunk>) {
+    let mut before = before;
     for (position, factor) in factors.iter().enumerate() {
         let next = factors.get(position + 1);
         let piece = factor_piece(factor, next, Style::Display);
@@ -136,26 +141,38 @@ fn flow_product(factors: &[Expression], room: u32, depth: u32, out: &mut Vec<Chu
     }
 }
 
-/// A fraction that is too wide loses the wide factors of its numerator to a bracket behind it.
+/// A fraction that is too wide loses factors of its numerator: those that can be opened, and the last ones where there
+/// are many.
 fn flow_quotient(above: &Expression, below: &Expression, room: u32, depth: u32, out: &mut Vec<Chunk>) {
     let factors = match above {
         Expression::Product(factors) => factors.clone(),
         other => vec![other.clone()],
     };
-    let is_wide = |factor: &Expression| can_open(factor) && typeset(factor, Style::Text).width > room / 3;
-    let (wide, narrow): (Vec<Expression>, Vec<Expression>) = factors.into_iter().partition(is_wide);
-    if wide.is_empty() {
+    let (mut kept, mut moved) = (Vec::new(), Vec::new());
+    let mut left = room * 2 / 3;
+    for factor in factors {
+        let width = typeset(&factor, Style::Text).width;
+        match width <= left && !(can_open(&factor) && width > room / 3) {
+            true => {
+                left -= width;
+                kept.push(factor);
+            }
+            false => moved.push(factor),
+        }
+    }
+    if moved.is_empty() {
         let whole = Expression::Quotient(Box::new(above.clone()), Box::new(below.clone()));
         return out.push(chunk(typeset(&whole, Style::Display), depth));
     }
-    let numerator = match narrow.len() {
+    let numerator = match kept.len() {
         0 => Expression::Number(One::one()),
-        1 => narrow.into_iter().next().unwrap_or(Expression::Number(One::one())),
-        _ => Expression::Product(narrow),
+        1 => kept.swap_remove(0),
+        _ => Expression::Product(kept),
     };
     let fraction = Expression::Quotient(Box::new(numerator), Box::new(below.clone()));
-    let product: Vec<Expression> = std::iter::once(fraction).chain(wide).collect();
-    flow_product(&product, room, depth, out);
+    let fraction = typeset(&fraction, Style::Display);
+    out.push(chunk(fraction.clone(), depth));
+    flow_factors(&moved, Some(fraction), room, depth, out);
 }
 
 /// Whether an expression can go over several lines when it stands as a factor.
@@ -180,9 +197,9 @@ fn flow_factor(factor: &Expression, next: Option<&Expression>, room: u32, depth:
             enclose(&mut out[start..]);
         }
         Expression::Power(base, exponent) if can_open(base) => {
-            flow(base, room.saturating_sub(200), depth + 1, out);
-            enclose(&mut out[start..]);
             let script = raise(Piece::new("", 0, Level::Atom), exponent);
+            flow(base, room.saturating_sub(150 + script.width), depth + 1, out);
+            enclose(&mut out[start..]);
             put_behind(&mut out[start..], &script.tex, script.width);
         }
         Expression::Call(function, argument) if *function != Function::Sqrt && can_open(argument) => {
@@ -190,7 +207,9 @@ fn flow_factor(factor: &Expression, next: Option<&Expression>, room: u32, depth:
             enclose(&mut out[start..]);
             put_before(&mut out[start..], operator(*function), 120);
         }
-        Expression::Negative(_) | Expression::Quotient(_, _) | Expression::Product(_) if can_open(factor) => {
+        Expression::Product(factors) => flow_product(factors, room, depth, out),
+        Expression::Quotient(above, below) if can_open(above) => flow_quotient(above, below, room, depth, out),
+        Expression::Negative(_) if can_open(factor) => {
             flow(factor, room.saturating_sub(100), depth + 1, out);
             enclose(&mut out[start..]);
         }

@@ -125,7 +125,7 @@ pub fn set_parts(parts: &[Part], commas: bool) -> (String, u32) {
         out.push_str(&tex);
         width += part_width;
     }
-    (out, if width == 0 { 0 } else { width * 7 / 10 + SCRIPT_SPACE })
+    (out, if width == 0 { 0 } else { width * 8 / 10 + SCRIPT_SPACE })
 }
 
 fn set_part(part: &Part) -> (String, u32) {

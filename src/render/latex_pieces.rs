@@ -121,7 +121,7 @@ impl Piece {
 
     /// The width of the piece once it is set as a script.
     pub fn script_width(&self) -> u32 {
-        self.width * 7 / 10 + 5
+        self.width * 8 / 10 + 5
     }
 
     /// Puts `next` behind this piece, with `between` (of the given width) in between.

@@ -1,6 +1,7 @@
 //! LaTeX output compiles without complaint, where there is a LaTeX to ask.
 
 use crate::samples;
+use crate::scrambled::scrambled;
 use mainspring::render::document::Document;
 use mainspring::render::latex::{fragment, whole};
 use std::fs;
@@ -48,6 +49,7 @@ fn documents() -> Vec<Document> {
     let mut documents: Vec<Document> = [2, 4, 12].map(samples::ces).into();
     documents.extend([2, 4, 10].map(samples::almost_ideal));
     documents.extend([samples::nested(), samples::verdicts()]);
+    documents.extend([1, 2, 3].map(scrambled));
     documents
 }
 

@@ -1,6 +1,7 @@
 //! Whole documents in each form.
 
 use crate::samples;
+use crate::scrambled::scrambled;
 use mainspring::render::document::Document;
 use mainspring::render::latex::{fragment, whole};
 use mainspring::render::text::{Layout, text};
@@ -13,6 +14,7 @@ fn all_samples() -> Vec<Document> {
     let mut samples: Vec<Document> = [2, 4, 12].map(samples::ces).into();
     samples.extend([2, 4].map(samples::almost_ideal));
     samples.extend([samples::nested(), samples::verdicts()]);
+    samples.extend([1, 2, 3, 4, 5].map(scrambled));
     samples
 }
 

@@ -6,4 +6,5 @@ mod documents;
 mod formulas;
 mod reader;
 mod samples;
+mod scrambled;
 mod shared;
