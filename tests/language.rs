@@ -416,7 +416,7 @@ proptest! {
                     assume 0 < α < 1, g[i,j] = g[j,i]\nlet P = sum over j != 1 in food of (α * ln(p[j]))\n\
                     demand bread = (α * m^-s) / p_b # half\n  + 0.25 * m / p_b\nlog demand fish = ln(m) - P\n";
         let cut = text.char_indices().map(|(at, _)| at).nth(length).unwrap_or(text.len());
-        survives(text[..cut].as_bytes());
+        survives(&text.as_bytes()[..cut]);
         survives(format!("{}{letter}{}", &text[..cut], &text[cut..]).as_bytes());
     }
 }
