@@ -88,15 +88,18 @@ impl<'a> Search<'a> {
         let mut stream = Stream::new(0x0f1e_2d3c);
         let mut usable: Vec<Image> = Vec::new();
         for round in 0..POINTS {
-            let reach = 2 + round / 3;
-            let mut coordinate = |v: Var| (v, stream.below(2 * reach + 1) as i64 - reach as i64);
+            let mut coordinate = |v: Var| {
+                let reach = self.reach(v, round);
+                (v, stream.below(2 * reach + 1) as i64 - reach as i64)
+            };
             let point: Vec<(Var, i64)> = self.others.iter().map(|&v| coordinate(v)).collect();
             match self.look_at(point) {
                 Outcome::Irreducible => return Some(Pieces::irreducible(self.p.clone())),
                 Outcome::Useless => continue,
                 Outcome::Usable(image) => usable.push(image),
             }
-            if usable.len() < COMPARED {
+            let two_left = usable.last().is_some_and(|image| image.fitted.images.len() == 2);
+            if usable.len() < COMPARED && !two_left {
                 continue;
             }
             // The fewest factors are the most credible; the lifting decides.
@@ -107,6 +110,13 @@ impl<'a> Search<'a> {
             }
         }
         None
+    }
+
+    /// The greatest coordinate tried: small, but larger where factors of the leading coefficient must be told apart.
+    fn reach(&self, v: Var, round: u64) -> u64 {
+        let load = self.leading.factors.iter().filter(|(l, _)| l.contains(v)).count();
+        let apart = if load > 0 { 3 * self.leading.factors.len() as u64 } else { 0 };
+        2 + apart * (1 + round / 8) + round / 3
     }
 
     /// The factors of the image at a point.

@@ -4,16 +4,18 @@ use num_bigint::BigInt;
 use num_traits::{One, Signed, Zero};
 
 use super::integral::{self, Integral};
-use super::splitting::{Parts, by_degree, split_equal_degree};
+use super::splitting::Splitting;
 use crate::algebra::budget;
 use crate::algebra::modular::dense::degree;
-use crate::algebra::modular::{Modulus, Primes, Stream};
+use crate::algebra::modular::{Modulus, Primes};
 use crate::algebra::monomial::{Monomial, Var};
 use crate::algebra::number::Int;
 use crate::algebra::polynomial::Poly;
 
-/// Primes compared before one is chosen.
-const TRIED: usize = 4;
+/// Small primes used for the degrees that factors may have.
+const SMALL_PRIMES: [u64; 4] = [1009, 2003, 4001, 8009];
+/// Large primes compared before one is chosen.
+const TRIED: usize = 2;
 
 /// The irreducible factors of a primitive squarefree polynomial in the single variable `v`.
 pub(super) fn factor_univariate(p: &Poly, v: Var) -> Vec<Poly> {
@@ -47,19 +49,15 @@ pub(super) fn factor_integral(f: &Integral) -> Vec<Integral> {
         factors.push(vec![BigInt::zero(), BigInt::one()]);
         return factors;
     }
-    let Some(choice) = choose_prime(f) else { return vec![f.clone()] };
-    let mut stream = Stream::new(0x5bd1_e995);
-    let mut factors = Vec::new();
-    for (d, part) in choice.parts {
-        split_equal_degree(&choice.m, part, d, &mut stream, &mut factors);
-    }
+    let Some((splitting, possible)) = choose_prime(f) else { return vec![f.clone()] };
+    let m = splitting.modulus();
     let bound = coefficient_bound(f);
-    let mut modulus = BigInt::from(choice.m.prime());
+    let mut modulus = BigInt::from(m.prime());
     while modulus <= bound {
         modulus = &modulus * &modulus;
     }
-    match integral::hensel_lift(&choice.m, f, &factors, &modulus) {
-        Some(lifted) => Recombination { rest: f.clone(), lifted, modulus, possible: choice.possible }.run(),
+    match integral::hensel_lift(&m, f, &splitting.factors(), &modulus) {
+        Some(lifted) => Recombination { rest: f.clone(), lifted, modulus, possible }.run(),
         None => vec![f.clone()],
     }
 }
@@ -71,42 +69,43 @@ fn coefficient_bound(f: &Integral) -> BigInt {
     (lead * (square.sqrt() + 1u32)) << (f.len() + 1)
 }
 
-/// A prime, the factors of equal degree modulo it, and the degrees a rational factor may have.
-struct Choice {
-    m: Modulus,
-    parts: Parts,
-    possible: Vec<bool>,
-}
-
-/// The best of a few primes; None when the degrees prove f irreducible.
-fn choose_prime(f: &Integral) -> Option<Choice> {
+/// The factorisation by degrees modulo a large prime, and the degrees a rational factor may have; None when the
+/// degrees prove f irreducible.
+fn choose_prime(f: &Integral) -> Option<(Splitting, Vec<bool>)> {
     let n = f.len() - 1;
     let mut possible = vec![true; n + 1];
-    let mut best: Option<(usize, Modulus, Parts)> = None;
-    let mut tried = 0;
-    for p in Primes::new() {
-        let m = Modulus::new(p);
-        let image = integral::to_dense(&m, f);
-        if degree(&image) < n || degree(&m.common(&image, &m.slope(&image))) > 0 {
-            continue;
-        }
-        let parts = by_degree(&m, &m.monic(&image));
-        let degrees: Vec<usize> = parts.iter().flat_map(|(d, g)| vec![*d; degree(g) / d]).collect();
-        let sums = subset_sums(&degrees, n);
+    let mut narrow = |splitting: &Splitting| {
+        let sums = subset_sums(&splitting.degrees(), n);
         possible.iter_mut().zip(&sums).for_each(|(all, &here)| *all &= here);
-        if possible.iter().filter(|&&d| d).count() <= 2 {
+        possible.iter().filter(|&&d| d).count() > 2
+    };
+    let small = SMALL_PRIMES.into_iter().filter_map(|p| split_modulo(p, f));
+    for splitting in small {
+        if !narrow(&splitting) {
             return None;
         }
-        if best.as_ref().is_none_or(|(count, ..)| degrees.len() < *count) {
-            best = Some((degrees.len(), m, parts));
+    }
+    let mut best: Option<Splitting> = None;
+    for splitting in Primes::new().filter_map(|p| split_modulo(p, f)).take(TRIED) {
+        if !narrow(&splitting) {
+            return None;
         }
-        tried += 1;
-        let few = best.as_ref().is_some_and(|(count, ..)| *count <= 3);
-        if tried >= TRIED || few && tried >= 2 {
+        if best.as_ref().is_none_or(|old| splitting.degrees().len() < old.degrees().len()) {
+            best = Some(splitting);
+        }
+        if best.as_ref().is_some_and(|best| best.degrees().len() <= 4) {
             break;
         }
     }
-    best.map(|(_, m, parts)| Choice { m, parts, possible })
+    best.map(|splitting| (splitting, possible))
+}
+
+/// None when the degree drops modulo p or the polynomial is not squarefree there.
+fn split_modulo(p: u64, f: &Integral) -> Option<Splitting> {
+    let m = Modulus::new(p);
+    let image = integral::to_dense(&m, f);
+    let usable = degree(&image) + 1 == f.len() && degree(&m.common(&image, &m.slope(&image))) == 0;
+    usable.then(|| Splitting::new(m, m.monic(&image)))
 }
 
 /// Which sums of the given degrees occur.
