@@ -97,6 +97,14 @@ impl Field {
         sums.map(|sum| self.current(&if over.is_one() { sum } else { sum.scale(&over) })).collect()
     }
 
+    /// All prices and incomes, in the order of their declaration.
+    pub fn moving_symbols(&self) -> Vec<Var> {
+        let tables = self.tables.borrow();
+        let moves = |kind: &Kind| matches!(kind, Kind::Symbol(Role::Price | Role::Income | Role::Others));
+        let all = tables.kinds.iter().enumerate().filter(|(_, kind)| moves(kind));
+        all.map(|(index, _)| Var::new(index as u32)).collect()
+    }
+
     /// The symbols (by position) that move a variable, with x ∂v/∂x.
     fn log_moves(&self, var: Var, symbols: &[Var]) -> Vec<(usize, Rc<Element>)> {
         let support = self.support(var);

@@ -11,7 +11,7 @@ use rustc_hash::FxHashMap;
 
 use super::budget;
 use super::generator::{Base, Blocked, Built, Element, Kind, Role, Special};
-use super::monomial::Var;
+use super::monomial::{Monomial, Var};
 use super::number::Rational;
 use super::polynomial::Poly;
 use super::sign_rules::Sign;
@@ -206,26 +206,39 @@ impl Field {
         let (content, value) =
             if split.content.is_negative() { (-split.content, split.part.neg()) } else { (split.content, split.part) };
         let known = self.tables.borrow().sums.get(&value).cloned();
-        let base = known.map_or_else(|| self.new_sum(&value), |known| self.current(&known));
-        if let (Some(name), Some((_, monomial))) = (name, base.as_monomial())
-            && content.is_one()
-            && split.monomial.is_one()
-            && let Some((var, 1)) = monomial.iter().next()
-        {
+        if let Some(known) = known {
+            let base = self.current(&known);
+            self.keep_name(&base.mul_term(&content, &split.monomial), name);
+            return base.mul_term(&content, &split.monomial);
+        }
+        if name.is_some() && split.monomial.is_one() {
+            // the author's sum keeps its coefficients: ln P with its 1/2
+            let var = self.new_sum(&e, &content.recip(), &value);
+            self.keep_name(&Poly::var(var), name);
+            return Poly::var(var);
+        }
+        let var = self.new_sum(&value, &Rational::one(), &value);
+        let named = Poly::term(&content, split.monomial.mul(&Monomial::power(var, 1)));
+        self.keep_name(&named, name);
+        named
+    }
+
+    /// Gives a bare variable without a name the author's name.
+    fn keep_name(&self, named: &Element, name: Option<&str>) {
+        if let (Some(name), Some(var)) = (name, named.as_var()) {
             let slot = &mut self.tables.borrow_mut().names[var.index()];
             slot.get_or_insert_with(|| name.to_string());
         }
-        base.mul_term(&content, &split.monomial)
     }
 
-    /// A fresh named sum for a primitive value, together with its negative.
-    fn new_sum(&self, value: &Element) -> Element {
+    /// A fresh named sum R with the given value; `part` = `scale`·value is remembered as scale·R, with its negative.
+    fn new_sum(&self, value: &Element, scale: &Rational, part: &Element) -> Var {
         let var = self.add(Kind::Sum { value: Rc::new(value.clone()), root: 1 }, None);
-        let named = Poly::var(var);
+        let named = Poly::var(var).scale(scale);
         let mut tables = self.tables.borrow_mut();
-        tables.sums.insert(value.neg(), named.neg());
-        tables.sums.insert(value.clone(), named.clone());
-        named
+        tables.sums.insert(part.neg(), named.neg());
+        tables.sums.insert(part.clone(), named);
+        var
     }
 
     /// a·b. Long sums are named rather than multiplied out.

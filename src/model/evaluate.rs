@@ -86,9 +86,26 @@ impl<'s> Evaluator<'s> {
         self.powers.borrow_mut().clear();
     }
 
-    /// From now on the symbol is written as the element.
+    /// From now on the symbol is written as the element; a sum keeps the symbol's name.
     pub fn replace(&self, var: Var, element: Element) {
+        let name = self.field.name(var);
+        let element = self.field.named(&element, name.as_deref());
+        self.shorten(name.as_deref(), &element);
         self.replaced.borrow_mut().insert(var, Rc::new(element));
+    }
+
+    /// Lets reports write an element by the author's name for it: a named sum by itself, a product of powers by a symbol
+    /// that stands for it in print only.
+    fn shorten(&self, name: Option<&str>, element: &Element) {
+        let Some(name) = name else { return };
+        match element.as_var() {
+            Some(var) => self.field.shorthand(var, element),
+            None if element.as_monomial().is_some_and(|(_, m)| m.len() > 1) => {
+                let symbol = self.field.symbol(name, Role::Unknown);
+                self.field.shorthand(symbol, element);
+            }
+            None => {}
+        }
     }
 
     /// What stands for the symbol, if it is replaced.
@@ -103,7 +120,7 @@ impl<'s> Evaluator<'s> {
             if self.field.depends_on(held, var)
                 && let Ok(fresh) = self.field.substitute(held, &with)
             {
-                *held = Rc::new(fresh);
+                *held = Rc::new(self.field.reduce(&fresh));
             }
         }
         self.replace(var, element);
@@ -272,11 +289,13 @@ impl<'s> Evaluator<'s> {
         }
         let node = &self.script.abbreviations[id.0];
         let result = self.compute(node, &mut goods.to_vec()).map(|value| {
-            if !self.naming.get() || value.len() < 2 {
+            if !self.naming.get() {
                 return value;
             }
             let name = names.member_name(&names.abbreviations[id.0].name, goods);
-            Rc::new(self.field.named(&value, Some(&name)))
+            let value = self.field.named(&value, Some(&name));
+            self.shorten(Some(&name), &value);
+            Rc::new(value)
         });
         if let Some(slot) = self.abbreviations.borrow_mut()[id.0].get_mut(place) {
             *slot = Memo::Closed(result.clone());

@@ -114,13 +114,30 @@ impl<'f> Prover<'f> {
         self.field.product(a, b)
     }
 
+    /// x ∂f/∂x; the slopes in all other prices and income are found in the same pass and kept.
+    fn gradient(&mut self, element: &Element, f: FunctionId, x: Var) -> Element {
+        let moving = self.field.moving_symbols();
+        if !moving.contains(&x) {
+            return self.field.log_derivative(element, x);
+        }
+        let slopes = self.field.log_gradient(element, &moving);
+        let mut wanted = Poly::zero();
+        for (symbol, slope) in moving.into_iter().zip(slopes) {
+            if symbol == x {
+                wanted = slope.clone();
+            }
+            self.slopes.insert((f, symbol, true), Rc::new(slope));
+        }
+        wanted
+    }
+
     /// ∂f/∂x, or x ∂f/∂x.
     fn slope(&mut self, f: FunctionId, x: Var, logarithmic: bool) -> Rc<Element> {
         if let Some(known) = self.slopes.get(&(f, x, logarithmic)) {
             return known.clone();
         }
         let value = match self.derivation.function(f) {
-            Some(function) if logarithmic => self.field.log_derivative(&function.element, x),
+            Some(function) if logarithmic => self.gradient(&function.element.clone(), f, x),
             Some(function) => self.field.derivative(&function.element, x),
             None => Poly::zero(),
         };
