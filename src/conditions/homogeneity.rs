@@ -1,5 +1,8 @@
 //! Homogeneity: demands have degree zero in all prices and income.
 
+use std::rc::Rc;
+
+use crate::algebra::monomial::Var;
 use crate::proof::{Equation, Expression, Factor, Label};
 
 use super::finding::Condition;
@@ -11,13 +14,14 @@ use super::slutsky::{Coordinates, System, scaled};
 pub(super) const FAMILY: Family = Family { condition: Condition::Homogeneity, equations, in_quantities };
 
 fn equations(system: &System) -> Vec<Equation> {
-    (0..system.size()).map(|i| equation(system, i)).collect()
+    let movers = system.prices.iter().chain(&system.others).chain(std::iter::once(&system.income));
+    let movers = Rc::new(movers.copied().collect());
+    (0..system.size()).map(|i| equation(system, i, &movers)).collect()
 }
 
-fn equation(system: &System, i: usize) -> Equation {
+fn equation(system: &System, i: usize, movers: &Rc<Vec<Var>>) -> Equation {
     let f = system.functions[i];
-    let movers = system.prices.iter().chain(&system.others).chain(std::iter::once(&system.income));
-    let left = movers.fold(Expression::zero(), |sum, x| sum.plus(1, vec![Factor::LogSlope(f, *x)]));
+    let left = Expression::from(Factor::Euler(f, movers.clone()));
     let right = match system.coordinates {
         Coordinates::Shares => Expression::zero(),
         Coordinates::Outlays => Expression::from(Factor::Function(f)),

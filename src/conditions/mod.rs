@@ -38,6 +38,9 @@ pub fn examine(condition: Condition, model: &Model, prover: &mut Prover<'_>, ear
     let Some(system) = System::of(model, prover) else {
         return Finding::undecided(condition, "the model has no demands");
     };
+    if matches!(condition, Condition::Symmetry | Condition::Curvature) {
+        system.prepare(prover);
+    }
     match condition {
         Condition::Homogeneity => settlement::settle(model, &system, prover, &homogeneity::FAMILY),
         Condition::AddingUp => adding_up::examine(model, &system, prover),

@@ -57,6 +57,13 @@ impl System {
         Some(System { coordinates, functions, prices: model.prices.clone(), income, others })
     }
 
+    /// Has the prover differentiate every function in one pass.
+    pub(super) fn prepare(&self, prover: &mut Prover<'_>) {
+        let mut movers = self.prices.clone();
+        movers.push(self.income);
+        self.functions.iter().for_each(|f| prover.prepare(*f, &movers));
+    }
+
     /// The number of goods.
     pub fn size(&self) -> usize {
         self.functions.len()

@@ -41,6 +41,8 @@ pub enum Factor {
     Slope(FunctionId, Var),
     /// x ∂f/∂x.
     LogSlope(FunctionId, Var),
+    /// Σ x ∂f/∂x over the symbols.
+    Euler(FunctionId, Rc<Vec<Var>>),
 }
 
 /// An integer times factors.

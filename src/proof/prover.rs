@@ -5,6 +5,7 @@ use std::rc::Rc;
 use rustc_hash::{FxHashMap, FxHashSet};
 
 use crate::algebra::budget;
+use crate::algebra::derivation::Scale;
 use crate::algebra::field::{Field, Relation};
 use crate::algebra::generator::{Base, Element, Kind, Special};
 use crate::algebra::monomial::{Monomial, Var};
@@ -22,13 +23,20 @@ pub struct Prover<'f> {
     pub(super) field: &'f Field,
     pub(super) derivation: Derivation,
     slopes: FxHashMap<(FunctionId, Var, bool), Rc<Element>>,
+    scales: Vec<(Rc<Vec<Var>>, Scale)>,
     supposing: Rc<Vec<(Expression, Relation)>>,
 }
 
 impl<'f> Prover<'f> {
     /// A derivation without steps over a field whose facts are the domain.
     pub fn new(field: &'f Field) -> Prover<'f> {
-        Prover { field, derivation: Derivation::default(), slopes: FxHashMap::default(), supposing: Rc::default() }
+        Prover {
+            field,
+            derivation: Derivation::default(),
+            slopes: FxHashMap::default(),
+            scales: Vec::new(),
+            supposing: Rc::default(),
+        }
     }
 
     /// The field.
@@ -99,6 +107,7 @@ impl<'f> Prover<'f> {
             },
             Factor::Slope(f, x) => self.slope(*f, *x, false),
             Factor::LogSlope(f, x) => self.slope(*f, *x, true),
+            Factor::Euler(f, symbols) => Rc::new(self.euler(*f, symbols)),
         };
         self.multiply(value, &by)
     }
@@ -146,6 +155,30 @@ impl<'f> Prover<'f> {
         value
     }
 
+    /// Computes x ∂f/∂x for all of the symbols in one pass, for the expressions to come. Cost: the size of f plus that of
+    /// the answer, where the single slopes cost the size of f each.
+    pub fn prepare(&mut self, f: FunctionId, symbols: &[Var]) {
+        let missing: Vec<Var> = symbols.iter().copied().filter(|x| !self.slopes.contains_key(&(f, *x, true))).collect();
+        let Some(function) = self.derivation.function(f) else { return };
+        let slopes = self.field.log_gradient(&function.element, &missing);
+        for (x, slope) in missing.into_iter().zip(slopes) {
+            self.slopes.insert((f, x, true), Rc::new(slope));
+        }
+    }
+
+    /// Σ x ∂f/∂x over the symbols.
+    fn euler(&mut self, f: FunctionId, symbols: &Rc<Vec<Var>>) -> Element {
+        let known = self.scales.iter().position(|(known, _)| known == symbols);
+        let at = known.unwrap_or_else(|| {
+            self.scales.push((symbols.clone(), Scale::new(symbols)));
+            self.scales.len() - 1
+        });
+        match self.derivation.function(f) {
+            Some(function) => self.field.euler(&function.element, &self.scales[at].1),
+            None => Poly::zero(),
+        }
+    }
+
     /// The entries of a matrix, row by row.
     pub fn entries(&mut self, matrix: &Matrix) -> Vec<Element> {
         matrix.entries.iter().map(|entry| self.value(entry)).collect()
@@ -172,7 +205,7 @@ impl<'f> Prover<'f> {
         for factor in expressions.flat_map(|e| &e.0).flat_map(|product| &product.factors) {
             match factor {
                 Factor::Element(e) => walk.element(e),
-                Factor::Function(f) | Factor::Slope(f, _) | Factor::LogSlope(f, _) => {
+                Factor::Function(f) | Factor::Slope(f, _) | Factor::LogSlope(f, _) | Factor::Euler(f, _) => {
                     if functions.insert(*f)
                         && let Some(function) = self.derivation.function(*f)
                     {

@@ -71,6 +71,8 @@ pub enum StoredFactor {
     Slope(u32, String),
     /// x ∂f/∂x.
     LogSlope(u32, String),
+    /// Σ x ∂f/∂x over the symbols.
+    Euler(u32, Vec<String>),
 }
 
 /// A sum of products as data.
@@ -236,6 +238,7 @@ impl Writer<'_> {
             Factor::Function(f) => StoredFactor::Function(f.0),
             Factor::Slope(f, x) => StoredFactor::Slope(f.0, self.name(*x)),
             Factor::LogSlope(f, x) => StoredFactor::LogSlope(f.0, self.name(*x)),
+            Factor::Euler(f, all) => StoredFactor::Euler(f.0, all.iter().map(|x| self.name(*x)).collect()),
         };
         expression.0.iter().map(|p| (p.coefficient, p.factors.iter().map(factor).collect())).collect()
     }
@@ -502,6 +505,10 @@ fn expression(
             StoredFactor::Function(f) => Factor::Function(function(*f)?),
             StoredFactor::Slope(f, x) => Factor::Slope(function(*f)?, symbol(symbols, x)?),
             StoredFactor::LogSlope(f, x) => Factor::LogSlope(function(*f)?, symbol(symbols, x)?),
+            StoredFactor::Euler(f, all) => {
+                let all = all.iter().map(|x| symbol(symbols, x)).collect::<Read<Vec<_>>>()?;
+                Factor::Euler(function(*f)?, Rc::new(all))
+            }
         })
     };
     let product = |(coefficient, factors): &(i64, Vec<StoredFactor>)| -> Read<Product> {
