@@ -118,45 +118,46 @@ impl Field {
         (Formula::product(above), Formula::product(below))
     }
 
-    /// The powers of a monomial, one a base, and the argument of the exponential that is left.
+    /// The powers of a monomial, one a base, and the argument of the exponential that is left. The exponentials are put
+    /// together before they are folded, so that p₁^a₁ ⋯ exp(½ Σ …) can be read as exp(ln P).
     fn gather(&self, monomial: &Monomial) -> (Vec<(Formula, Element)>, Element) {
         let mut powers: Vec<(PowerBase, Element)> = Vec::new();
-        let mut rest = Vec::new();
+        let mut exponents = Vec::new();
         for (var, k) in monomial.iter() {
             let times = Rational::from_integer(k.into());
             let (base, exponent) = match &*self.kind(var) {
-                Kind::Exp(argument) => match self.single_log(argument) {
-                    Some((log, exponent)) => (PowerBase::Log(log), exponent),
-                    None => {
-                        rest.push(argument.scale(&times));
-                        continue;
-                    }
-                },
+                Kind::Exp(argument) => {
+                    exponents.push(self.current(argument).scale(&times));
+                    continue;
+                }
                 Kind::Sum { root, .. } if *root > 1 => {
                     (PowerBase::Root(var), Poly::constant(&Rational::new(1.into(), (*root).into())))
                 }
                 _ => (self.power_base(var), Poly::one()),
             };
-            let exponent = exponent.scale(&times);
-            match powers.iter_mut().find(|(b, _)| *b == base) {
-                Some((_, total)) => *total = &*total + &exponent,
-                None => powers.push((base, exponent)),
+            add_power(&mut powers, base, exponent.scale(&times));
+        }
+        let mut rest = Vec::new();
+        for (m, c) in self.folded(&Poly::sum(exponents)).terms() {
+            let term = Poly::term(&c, m.clone());
+            match self.single_log(&term) {
+                Some((log, exponent)) => add_power(&mut powers, PowerBase::Log(log), exponent),
+                None => rest.push(term),
             }
         }
-        let ordered = self.in_reading_order(powers);
-        (ordered, Poly::sum(rest))
+        (self.in_reading_order(powers), Poly::sum(rest))
     }
 
     fn in_reading_order(&self, powers: Vec<(PowerBase, Element)>) -> Vec<(Formula, Element)> {
-        let mut keyed: Vec<(u8, usize, Formula, Element)> = powers
+        let mut keyed: Vec<((u8, bool, usize), Formula, Element)> = powers
             .into_iter()
             .map(|(base, exponent)| {
                 let (class, index, formula) = self.base_formula(&base);
-                (class, index, formula, exponent)
+                ((class, !exponent.is_constant(), index), formula, exponent)
             })
             .collect();
-        keyed.sort_by_key(|(class, index, _, _)| (*class, *index));
-        keyed.into_iter().map(|(_, _, formula, exponent)| (formula, exponent)).collect()
+        keyed.sort_by_key(|(order, _, _)| *order);
+        keyed.into_iter().map(|(_, formula, exponent)| (formula, exponent)).collect()
     }
 
     /// exp(e·ln b) with a single logarithm: the logarithm and e.
@@ -257,6 +258,13 @@ impl Field {
                 Formula::call(function, self.formula(argument))
             }
         }
+    }
+}
+
+fn add_power(powers: &mut Vec<(PowerBase, Element)>, base: PowerBase, exponent: Element) {
+    match powers.iter_mut().find(|(b, _)| *b == base) {
+        Some((_, total)) => *total = &*total + &exponent,
+        None => powers.push((base, exponent)),
     }
 }
 
