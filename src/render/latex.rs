@@ -2,12 +2,14 @@
 //!
 //! Only amsmath is asked for; everything is ASCII; no environment holds a blank line.
 
+use crate::render::display::COLUMN;
 use crate::render::document::{Block, Document, Equation, Inline, Table, VerdictLine};
-use crate::render::formula_latex::typeset;
-use crate::render::latex_display::{COLUMN, display, matrix, relation_latex};
+use crate::render::formula_latex::tex;
+use crate::render::latex_display::{display, matrix, relation_latex};
 use crate::render::latex_escape::escape;
-use crate::render::latex_pieces::Style;
-use crate::render::latex_where::Namer;
+use crate::render::layout::Style;
+use crate::render::naming::Namer;
+use crate::render::typeset::typeset;
 
 /// Formulas in running text that are wider than this, in hundredths of an em, are displayed.
 const WIDEST_INLINE: u32 = 2000;
@@ -132,11 +134,10 @@ fn punctuation(next: Option<&Inline>) -> &str {
 fn inline_math(equation: &Equation) -> (String, u32) {
     let right = typeset(&equation.right, Style::Text);
     let left = equation.left.as_ref().map(|left| typeset(left, Style::Text));
-    let mut parts = Vec::new();
-    parts.extend(left.as_ref().map(|left| left.tex.as_str()));
-    parts.extend(equation.relation.map(relation_latex));
-    parts.push(&right.tex);
-    (parts.join(" "), right.width + left.as_ref().map_or(0, |left| left.width) + 160)
+    let mut parts: Vec<String> = left.iter().map(|left| tex(&left.node)).collect();
+    parts.extend(equation.relation.map(|relation| relation_latex(relation).to_string()));
+    parts.push(tex(&right.node));
+    (parts.join(" "), right.width + left.map_or(0, |left| left.width) + 160)
 }
 
 fn list(environment: &str, items: &[String]) -> String {

@@ -2,19 +2,23 @@
 //!
 //! Nothing is computed here: what is printed is what the document says. [`expression`] is what may stand in a formula,
 //! and each form of output has one file for formulas and one for whole documents.
+mod display;
 pub mod document;
 pub mod expression;
 pub mod formula_latex;
 pub mod formula_text;
+pub mod html;
 pub mod latex;
 mod latex_display;
 mod latex_escape;
-mod latex_lines;
-mod latex_names;
-mod latex_pieces;
-mod latex_where;
+mod layout;
 mod letters;
+mod lines;
+mod mathml;
 mod names;
+mod naming;
+mod setting_names;
 pub mod shared;
 pub mod text;
 mod text_lines;
+mod typeset;

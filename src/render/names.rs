@@ -28,48 +28,16 @@ pub struct PrintedName {
     pub commas: bool,
 }
 
-/// The names of the Greek letters that have a LaTeX command of their own.
-const GREEK: &[&str] = &[
-    "alpha",
-    "beta",
-    "gamma",
-    "delta",
-    "epsilon",
-    "varepsilon",
-    "zeta",
-    "eta",
-    "theta",
-    "vartheta",
-    "iota",
-    "kappa",
-    "lambda",
-    "mu",
-    "nu",
-    "xi",
-    "pi",
-    "varpi",
-    "rho",
-    "varrho",
-    "sigma",
-    "varsigma",
-    "tau",
-    "upsilon",
-    "phi",
-    "varphi",
-    "chi",
-    "psi",
-    "omega",
-    "Gamma",
-    "Delta",
-    "Theta",
-    "Lambda",
-    "Xi",
-    "Pi",
-    "Sigma",
-    "Upsilon",
-    "Phi",
-    "Psi",
-    "Omega",
+/// The Greek letters that have a LaTeX command of their own, and the characters that look like what it prints.
+#[rustfmt::skip]
+const GREEK: &[(&str, char)] = &[
+    ("alpha", 'α'), ("beta", 'β'), ("gamma", 'γ'), ("delta", 'δ'), ("epsilon", 'ϵ'), ("varepsilon", 'ε'),
+    ("zeta", 'ζ'), ("eta", 'η'), ("theta", 'θ'), ("vartheta", 'ϑ'), ("iota", 'ι'), ("kappa", 'κ'),
+    ("lambda", 'λ'), ("mu", 'μ'), ("nu", 'ν'), ("xi", 'ξ'), ("pi", 'π'), ("varpi", 'ϖ'), ("rho", 'ρ'),
+    ("varrho", 'ϱ'), ("sigma", 'σ'), ("varsigma", 'ς'), ("tau", 'τ'), ("upsilon", 'υ'), ("phi", 'ϕ'),
+    ("varphi", 'φ'), ("chi", 'χ'), ("psi", 'ψ'), ("omega", 'ω'), ("Gamma", 'Γ'), ("Delta", 'Δ'),
+    ("Theta", 'Θ'), ("Lambda", 'Λ'), ("Xi", 'Ξ'), ("Pi", 'Π'), ("Sigma", 'Σ'), ("Upsilon", 'Υ'), ("Phi", 'Φ'),
+    ("Psi", 'Ψ'), ("Omega", 'Ω'),
 ];
 
 /// The LaTeX name of the Greek letter that `text` spells or is.
@@ -78,7 +46,12 @@ pub fn greek(text: &str) -> Option<&'static str> {
         Some(letter) if text.chars().count() == 1 => greek_letter(letter).unwrap_or(text),
         _ => text,
     };
-    GREEK.iter().copied().find(|name| *name == spelled)
+    GREEK.iter().map(|(name, _)| *name).find(|name| *name == spelled)
+}
+
+/// The character for the LaTeX name of a Greek letter.
+pub fn greek_character(name: &str) -> char {
+    GREEK.iter().find(|(known, _)| *known == name).map_or('?', |(_, character)| *character)
 }
 
 /// The name of a Greek letter, as LaTeX spells it.

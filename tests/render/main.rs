@@ -4,6 +4,7 @@ mod brackets;
 mod compile;
 mod documents;
 mod formulas;
+mod pages;
 mod reader;
 mod samples;
 mod scrambled;

@@ -3,9 +3,9 @@
 use crate::algebra::formula::{Function, Symbol};
 use crate::render::document::{Document, Equation};
 use crate::render::expression::Expression;
-use crate::render::formula_latex::typeset;
-use crate::render::latex_pieces::Style;
+use crate::render::layout::Style;
 use crate::render::letters::Letters;
+use crate::render::typeset::typeset;
 
 /// Gives letters that a document does not use to parts of its formulas; a part that comes again keeps its letter.
 pub struct Namer {

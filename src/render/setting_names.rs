@@ -1,8 +1,7 @@
-//! Names of the model in LaTeX, with their widths.
+//! Names of the model, laid out with their widths.
 
 use crate::algebra::formula::Symbol;
-use crate::render::latex_escape::escape;
-use crate::render::latex_pieces::ends_in_command;
+use crate::render::layout::{Node, Sign};
 use crate::render::names::{Part, PrintedName, greek, read_name};
 
 /// The commands that a declared LaTeX form may use besides Greek letters.
@@ -68,72 +67,71 @@ pub fn is_harmless(latex: &str) -> bool {
     depth == 0 && !latex.trim().is_empty()
 }
 
-/// A name as LaTeX, base and subscript apart, with their widths in hundredths of an em.
+/// A laid-out name, base and subscript apart, with their widths in hundredths of an em.
 pub struct SetName {
     /// What stands on the line.
-    pub base: String,
+    pub base: Node,
     /// Width of the base.
     pub base_width: u32,
-    /// What stands below; empty where there is nothing.
-    pub below: String,
+    /// What stands below.
+    pub below: Option<Node>,
     /// Width of the subscript, in script size.
     pub below_width: u32,
     /// Whether a further superscript would collide with one that is there.
     pub has_superscript: bool,
 }
 
-/// A name of the model in LaTeX.
+/// A name of the model, in the form that was declared for it, with its indices, or in the form that follows from its
+/// spelling.
 pub fn set_name(symbol: &Symbol) -> SetName {
-    let printed = read_name(&symbol.plain);
     let Some(declared) = symbol.latex.as_deref().filter(|latex| is_harmless(latex)) else {
-        return set_printed(&printed);
+        return set_printed(&read_name(&symbol.plain));
     };
     let indices = match symbol.plain.find('[') {
         Some(bracket) => read_name(&format!("x{}", &symbol.plain[bracket..])),
         None => PrintedName { base: Part::Letter('x'), subscripts: Vec::new(), commas: false },
     };
-    let scripted = declared.contains(['_', '^', '\'']);
-    let base = match scripted && !indices.subscripts.is_empty() {
-        true => format!("{{{declared}}}"),
-        false => declared.to_string(),
+    let base = match greek(declared.trim_start_matches('\\')) {
+        Some(name) => Node::Part(Part::Greek(name)),
+        None => Node::Declared(declared.to_string()),
     };
-    let own = set_printed(&indices);
-    SetName { base_width: rough_width(declared), base, has_superscript: declared.contains(['^', '\'']), ..own }
+    let has_superscript = declared.contains(['^', '\'']);
+    SetName { base, base_width: rough_width(declared), has_superscript, ..set_printed(&indices) }
 }
 
 fn set_printed(printed: &PrintedName) -> SetName {
     let (below, below_width) = set_parts(&printed.subscripts, printed.commas);
-    let (base, base_width) = set_part(&printed.base);
+    let (base, base_width) = (Node::Part(printed.base.clone()), part_width(&printed.base));
     SetName { base, base_width, below, below_width, has_superscript: false }
 }
 
 /// What TeX puts behind every script.
 const SCRIPT_SPACE: u32 = 5;
 
-/// Subscripts in a row.
-pub fn set_parts(parts: &[Part], commas: bool) -> (String, u32) {
-    let mut out = String::new();
+/// Subscripts in a row, if there are any, and their width.
+pub fn set_parts(parts: &[Part], commas: bool) -> (Option<Node>, u32) {
+    let mut nodes = Vec::new();
     let mut width = 0;
     for (position, part) in parts.iter().enumerate() {
-        let (tex, part_width) = set_part(part);
         if position > 0 && commas {
-            out.push(',');
-            width += 28;
-        } else if ends_in_command(&out) && tex.starts_with(|each: char| each.is_ascii_alphabetic()) {
-            out.push(' ');
+            nodes.push(Node::Sign(Sign::TightComma));
+            width += Sign::TightComma.width();
         }
-        out.push_str(&tex);
-        width += part_width;
+        nodes.push(Node::Part(part.clone()));
+        width += part_width(part);
     }
-    (out, if width == 0 { 0 } else { width * 8 / 10 + SCRIPT_SPACE })
+    match nodes.is_empty() {
+        true => (None, 0),
+        false => (Some(Node::Row(nodes)), width * 8 / 10 + SCRIPT_SPACE),
+    }
 }
 
-fn set_part(part: &Part) -> (String, u32) {
+fn part_width(part: &Part) -> u32 {
     match part {
-        Part::Letter(letter) => (letter.to_string(), letter_width(*letter)),
-        Part::Greek(name) => (format!("\\{name}"), greek_width(name)),
-        Part::Number(digits) => (digits.clone(), 50 * digits.len() as u32),
-        Part::Word(word) => (format!("\\text{{{}}}", escape(word)), 52 * word.chars().count() as u32),
+        Part::Letter(letter) => letter_width(*letter),
+        Part::Greek(name) => greek_width(name),
+        Part::Number(digits) => 50 * digits.len() as u32,
+        Part::Word(word) => 52 * word.chars().count() as u32,
     }
 }
 

@@ -1,12 +1,13 @@
-//! Long formulas in LaTeX: where they may be broken, and the best way to do it.
+//! Long formulas: where they may be broken, and the best way to do it.
 //!
 //! A formula that is wider than its room is opened at its outermost sums, and only where a term is too wide by itself
-//! inside that term's brackets. Brackets that are opened are `\bigl( \bigr)`, since `\left( \right)` cannot cross lines.
+//! inside that term's brackets. Brackets that are opened have a fixed size, since those that fit themselves to what they
+//! enclose cannot cross lines.
 
 use crate::algebra::formula::Function;
 use crate::render::expression::Expression;
-use crate::render::formula_latex::{factor_piece, raise, signed, typeset};
-use crate::render::latex_pieces::{Level, MINUS_WIDTH, Piece, SIGN_WIDTH, Style};
+use crate::render::layout::{Level, MINUS_WIDTH, Node, Piece, Sign, Size, Style, THIN};
+use crate::render::typeset::{factor_piece, function_width, raise, signed, typeset};
 use num_traits::One;
 
 /// How a chunk hangs together with the one before it.
@@ -19,13 +20,13 @@ enum Join {
     /// A term of a sum with a minus; a line may begin here.
     Minus,
     /// A factor of a product; a line may begin here, if it must.
-    Times(&'static str),
+    Times(Sign),
 }
 
 /// A part of a formula that stays on one line.
 #[derive(Clone, Debug)]
 struct Chunk {
-    tex: String,
+    node: Node,
     width: u32,
     height: u8,
     brackets: u8,
@@ -35,8 +36,8 @@ struct Chunk {
 
 /// A line of a display after the first, or the first.
 pub struct Line {
-    /// The LaTeX, with the sign that a continued line begins with.
-    pub tex: String,
+    /// What is to be seen, with the sign that a continued line begins with.
+    pub node: Node,
     /// How many brackets are open where the line begins.
     pub depth: u32,
 }
@@ -46,7 +47,7 @@ pub struct Line {
 pub fn lines(expression: &Expression, first: u32, rest: u32) -> Vec<Line> {
     let whole = typeset(expression, Style::Display);
     if whole.width <= first {
-        return vec![Line { tex: whole.tex, depth: 0 }];
+        return vec![Line { node: whole.node, depth: 0 }];
     }
     let mut chunks = Vec::new();
     flow(expression, rest, 0, &mut chunks);
@@ -66,17 +67,17 @@ fn flow(expression: &Expression, room: u32, depth: u32, out: &mut Vec<Chunk>) {
         Expression::Negative(inner) => {
             let start = out.len();
             flow_factor(inner, None, room, depth, out);
-            put_before(&mut out[start..], "-", MINUS_WIDTH);
+            put_before(&mut out[start..], Node::Sign(Sign::TightMinus), MINUS_WIDTH);
         }
-        Expression::Product(factors) => flow_product(factors, room, depth, out),
+        Expression::Product(factors) => flow_factors(factors, None, room, depth, out),
         Expression::Quotient(above, below) => flow_quotient(above, below, room, depth, out),
         _ => flow_factor(expression, None, room, depth, out),
     }
 }
 
 fn chunk(piece: Piece, depth: u32) -> Chunk {
-    let Piece { tex, width, height, brackets, .. } = piece;
-    Chunk { tex, width, height, brackets, join: Join::Start, depth }
+    let Piece { node, width, height, brackets, .. } = piece;
+    Chunk { node, width, height, brackets, join: Join::Start, depth }
 }
 
 fn flow_sum(terms: &[Expression], room: u32, depth: u32, out: &mut Vec<Chunk>) {
@@ -84,12 +85,14 @@ fn flow_sum(terms: &[Expression], room: u32, depth: u32, out: &mut Vec<Chunk>) {
         let (minus, positive) = signed(term);
         let start = out.len();
         let piece = typeset(&positive, Style::Display).at_least(Level::Ratio);
-        match piece.width + SIGN_WIDTH <= room {
-            true => out.push(chunk(piece, depth)),
-            false => flow(&positive, room.saturating_sub(SIGN_WIDTH), depth, out),
+        let left = room.saturating_sub(Sign::Plus.width());
+        match positive {
+            _ if piece.width <= left => out.push(chunk(piece, depth)),
+            Expression::Sum(_) => flow_factor(&positive, None, left, depth, out),
+            _ => flow(&positive, left, depth, out),
         }
         match (position, minus) {
-            (0, true) => put_before(&mut out[start..], "-", MINUS_WIDTH),
+            (0, true) => put_before(&mut out[start..], Node::Sign(Sign::TightMinus), MINUS_WIDTH),
             (0, false) => {}
             (_, true) => join_at(out, start, Join::Minus),
             (_, false) => join_at(out, start, Join::Plus),
@@ -103,26 +106,22 @@ fn join_at(chunks: &mut [Chunk], position: usize, join: Join) {
     }
 }
 
-fn put_before(chunks: &mut [Chunk], tex: &str, width: u32) {
+fn put_before(chunks: &mut [Chunk], node: Node, width: u32) {
     if let Some(first) = chunks.first_mut() {
-        first.tex.insert_str(0, tex);
+        first.node.put_before(node);
         first.width += width;
     }
 }
 
-fn put_behind(chunks: &mut [Chunk], tex: &str, width: u32) {
+fn put_behind(chunks: &mut [Chunk], node: Node, width: u32) {
     if let Some(last) = chunks.last_mut() {
-        last.tex.push_str(tex);
+        last.node.push(node);
         last.width += width;
     }
 }
 
-/// Factors that are wide and can be opened are; the others stand side by side.
-fn flow_product(factors: &[Expression], room: u32, depth: u32, out: &mut Vec<Chunk>) {
-    flow_factors(factors, None, room, depth, out);
-}
-
-/// Factors behind the factor `before`, if there is one.
+/// Factors, behind the factor `before` if there is one: those that are wide and can be opened are, the others stand side
+/// by side.
 fn flow_factors(factors: &[Expression], before: Option<Piece>, room: u32, depth: u32, out: &mut Vec<Chunk>) {
     let mut before = before;
     for (position, factor) in factors.iter().enumerate() {
@@ -134,7 +133,7 @@ fn flow_factors(factors: &[Expression], before: Option<Piece>, room: u32, depth:
             true => flow_factor(factor, next, room, depth, out),
             false => out.push(chunk(piece.clone(), depth)),
         }
-        if let Some((between, _)) = joint {
+        if let Some(between) = joint {
             join_at(out, start, Join::Times(between));
         }
         before = Some(piece);
@@ -194,53 +193,52 @@ fn flow_factor(factor: &Expression, next: Option<&Expression>, room: u32, depth:
     match factor {
         Expression::Sum(terms) => {
             flow_sum(terms, room.saturating_sub(100), depth + 1, out);
-            enclose(&mut out[start..]);
+            enclose(&mut out[start..], depth);
         }
         Expression::Power(base, exponent) if can_open(base) => {
-            let script = raise(Piece::new("", 0, Level::Atom), exponent);
+            let script = raise(Piece::empty(Level::Atom), exponent);
             flow(base, room.saturating_sub(150 + script.width), depth + 1, out);
-            enclose(&mut out[start..]);
-            put_behind(&mut out[start..], &script.tex, script.width);
+            enclose(&mut out[start..], depth);
+            put_script(&mut out[start..], script);
         }
         Expression::Call(function, argument) if *function != Function::Sqrt && can_open(argument) => {
             flow(argument, room.saturating_sub(300), depth + 1, out);
-            enclose(&mut out[start..]);
-            put_before(&mut out[start..], operator(*function), 120);
+            enclose(&mut out[start..], depth);
+            put_before(&mut out[start..], Node::Function(*function), function_width(*function));
         }
-        Expression::Product(factors) => flow_product(factors, room, depth, out),
+        Expression::Product(factors) => flow_factors(factors, None, room, depth, out),
         Expression::Quotient(above, below) if can_open(above) => flow_quotient(above, below, room, depth, out),
         Expression::Negative(_) if can_open(factor) => {
             flow(factor, room.saturating_sub(100), depth + 1, out);
-            enclose(&mut out[start..]);
+            enclose(&mut out[start..], depth);
         }
         _ => out.push(chunk(factor_piece(factor, next, Style::Display), depth)),
     }
 }
 
-fn operator(function: Function) -> &'static str {
-    match function {
-        Function::Ln => "\\ln",
-        Function::Exp => "\\exp",
-        Function::Sqrt => "\\sqrt",
-        Function::Ei => "\\operatorname{Ei}",
-        Function::Erf => "\\operatorname{erf}",
-        Function::Erfi => "\\operatorname{erfi}",
-        Function::LambertW => "\\operatorname{W}",
+/// Puts an exponent on the closing bracket.
+fn put_script(chunks: &mut [Chunk], script: Piece) {
+    let Node::Scripts { above, .. } = script.node else { return };
+    if let Some(last) = chunks.last_mut()
+        && let Node::Row(nodes) = &mut last.node
+        && let Some(bracket) = nodes.pop()
+    {
+        nodes.push(Node::Scripts { base: Box::new(bracket), below: None, above });
+        last.width += script.width;
     }
 }
 
-/// Puts brackets of a size that fits around chunks.
-fn enclose(chunks: &mut [Chunk]) {
+/// Puts brackets of a size that fits around chunks; the first one stands at `depth`, outside.
+fn enclose(chunks: &mut [Chunk], depth: u32) {
     let height = chunks.iter().map(|chunk| chunk.height).max().unwrap_or(0);
     let brackets = chunks.iter().map(|chunk| chunk.brackets).max().unwrap_or(0);
-    let (open, close, width) = match (height, brackets) {
-        (0, 0 | 1) => ("\\bigl(", "\\bigr)", 46),
-        (0, 2) => ("\\Bigl(", "\\Bigr)", 60),
-        _ => ("\\biggl(", "\\biggr)", 74),
-    };
-    put_before(chunks, open, width);
-    put_behind(chunks, close, width);
+    let size = Size::around(height, brackets, true);
+    put_before(chunks, Node::Open(size), size.width());
+    put_behind(chunks, Node::Close(size), size.width());
     chunks.iter_mut().for_each(|chunk| chunk.brackets = brackets + 1);
+    if let Some(first) = chunks.first_mut() {
+        first.depth = depth;
+    }
 }
 
 impl Chunk {
@@ -250,21 +248,21 @@ impl Chunk {
         kind + 25 * u64::from(self.depth)
     }
 
-    fn inside_line(&self) -> (&'static str, u32) {
+    fn inside_line(&self) -> Sign {
         match self.join {
-            Join::Start => ("", 0),
-            Join::Plus => (" + ", SIGN_WIDTH),
-            Join::Minus => (" - ", SIGN_WIDTH),
-            Join::Times(between) => (between, 17),
+            Join::Start => Sign::Juxtaposed,
+            Join::Plus => Sign::Plus,
+            Join::Minus => Sign::Minus,
+            Join::Times(between) => between,
         }
     }
 
-    fn at_line_start(&self) -> (&'static str, u32) {
+    fn at_line_start(&self) -> Option<Sign> {
         match self.join {
-            Join::Start => ("", 0),
-            Join::Plus => ("{}+ ", SIGN_WIDTH),
-            Join::Minus => ("{}- ", SIGN_WIDTH),
-            Join::Times(_) => ("{}\\times ", SIGN_WIDTH),
+            Join::Start => None,
+            Join::Plus => Some(Sign::LinePlus),
+            Join::Minus => Some(Sign::LineMinus),
+            Join::Times(_) => Some(Sign::LineTimes),
         }
     }
 }
@@ -282,7 +280,7 @@ fn fill(chunks: &[Chunk], first: u32, rest: u32) -> Vec<Line> {
         let chunk = &chunks[start];
         let room = if start == 0 { first } else { rest.saturating_sub(100 * chunk.depth) };
         let own = if start == 0 { 0 } else { chunk.cost_of_break() };
-        let mut width = chunk.at_line_start().1 + chunk.width;
+        let mut width = chunk.at_line_start().map_or(0, Sign::width) + chunk.width;
         for end in start + 1..=count.min(start + LONGEST_LINE) {
             let excess = u64::from(width.saturating_sub(room));
             let total = cost[end].saturating_add(own + 1000 * u64::from(excess > 0) + 10 * excess);
@@ -293,7 +291,7 @@ fn fill(chunks: &[Chunk], first: u32, rest: u32) -> Vec<Line> {
             if excess > 0 || end == count {
                 break;
             }
-            width += chunks[end].inside_line().1 + chunks[end].width;
+            width += chunks[end].inside_line().width() + THIN + chunks[end].width;
         }
     }
     let mut lines = Vec::new();
@@ -306,11 +304,11 @@ fn fill(chunks: &[Chunk], first: u32, rest: u32) -> Vec<Line> {
 }
 
 fn compose(chunks: &[Chunk]) -> Line {
-    let mut tex = String::new();
+    let mut nodes = Vec::new();
     for (position, chunk) in chunks.iter().enumerate() {
-        let (joint, _) = if position == 0 { chunk.at_line_start() } else { chunk.inside_line() };
-        tex.push_str(joint);
-        tex.push_str(&chunk.tex);
+        let sign = if position == 0 { chunk.at_line_start() } else { Some(chunk.inside_line()) };
+        nodes.extend(sign.map(Node::Sign));
+        nodes.push(chunk.node.clone());
     }
-    Line { tex, depth: chunks.first().map_or(0, |chunk| chunk.depth) }
+    Line { node: Node::Row(nodes), depth: chunks.first().map_or(0, |chunk| chunk.depth) }
 }
