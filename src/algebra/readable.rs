@@ -2,12 +2,18 @@
 
 use num_traits::{One, Signed};
 
+use super::budget;
+use super::factor::factor;
 use super::field::Field;
 use super::formula::{Formula, Function, Symbol};
 use super::generator::{Base, Element, Kind, Special};
 use super::monomial::{Monomial, Var};
 use super::number::Rational;
 use super::polynomial::Poly;
+
+/// The longest sum that is looked at for factors, and the work that this may cost.
+const MOST_FACTORED: usize = 48;
+const FACTORING: u64 = 200_000;
 
 impl Field {
     /// The element as a formula: the author's abbreviations where they still stand, common factors in front, powers of
@@ -17,9 +23,9 @@ impl Field {
         if e.len() < 2 {
             return self.terms_formula(&e);
         }
-        let split = self.common_factor(&e);
-        let outside = Poly::term(&split.0, split.1);
-        let inside = self.sum_formula(&split.2);
+        let (content, common, part) = self.common_factor(&e);
+        let outside = Poly::term(&content, common);
+        let inside = self.inside_formula(&part);
         if outside.is_one() {
             return inside;
         }
@@ -27,45 +33,69 @@ impl Field {
         Formula::quotient(Formula::product(vec![above, inside]), below)
     }
 
-    /// The element with sums put back, brought to one reduced fraction, and written with factored numerator.
-    pub fn reduced_formula(&self, e: &Element) -> Formula {
-        let (numerator, denominator) = self.fraction(e);
-        let factored = super::factor::factor(&numerator);
-        let below = self.recombine(&Poly::one(), &denominator);
-        let outside = Poly::term(&factored.content, factored.monomial.clone());
-        let mut above = Vec::new();
+    /// A sum without a common factor; as a product where it is one and not too long to look.
+    fn inside_formula(&self, part: &Poly) -> Formula {
+        if part.len() < 3 || part.len() > MOST_FACTORED {
+            return self.sum_formula(part);
+        }
+        let Ok(factored) = budget::attempt(FACTORING, || factor(part)) else { return self.sum_formula(part) };
+        let pieces: u32 = factored.factors.iter().map(|(_, k)| k).sum();
+        if pieces < 2 || !factored.monomial.is_one() || factored.content.is_negative() && pieces == 1 {
+            return self.sum_formula(part);
+        }
+        let (sign, mut product) = self.factors_formula(&factored.factors);
+        product.insert(0, Formula::number(factored.content * sign));
+        Formula::product(product)
+    }
+
+    /// The factors, each turned to the side that reads better, and the sign that this costs.
+    fn factors_formula(&self, factors: &[(Poly, u32)]) -> (Rational, Vec<Formula>) {
         let mut sign = Rational::one();
-        for (part, exponent) in &factored.factors {
-            let minus = part.raw_terms().iter().filter(|(_, c)| c.is_negative()).count();
-            let flip = 2 * minus > part.len()
-                || 2 * minus == part.len() && part.raw_terms().last().is_some_and(|(_, c)| c.is_negative());
-            let shown = self.folded(&if flip { part.neg() } else { part.clone() });
+        let mut product = Vec::new();
+        for (part, exponent) in factors {
+            let flip = reads_better_negated(part);
             if flip && exponent % 2 == 1 {
                 sign = -sign;
             }
-            above.push(Formula::power(self.sum_formula(&shown), Formula::integer(i64::from(*exponent))));
+            let shown = self.folded(&if flip { part.neg() } else { part.clone() });
+            product.push(Formula::power(self.sum_formula(&shown), Formula::integer(i64::from(*exponent))));
         }
+        (sign, product)
+    }
+
+    /// The element with sums put back, brought to one reduced fraction, and written with factored numerator.
+    pub fn reduced_formula(&self, e: &Element) -> Formula {
+        let (numerator, denominator) = self.fraction(e);
+        let factored = factor(&numerator);
+        let below = self.recombine(&Poly::one(), &denominator);
+        let outside = Poly::term(&factored.content, factored.monomial.clone());
+        let (sign, mut above) = self.factors_formula(&factored.factors);
         let outer = (&outside * &below).scale(&sign);
         let (top, bottom) = self.single_term(&outer);
         above.insert(0, top);
         Formula::quotient(Formula::product(above), bottom)
     }
 
-    /// Content, common monomial and what is left; a negative content only where every term is negative.
+    /// What every term holds, and what is left: powers with one sign in all terms; a whole number, or a fraction where
+    /// no term is whole; a minus where every term has one.
     fn common_factor(&self, e: &Element) -> (Rational, Monomial, Poly) {
-        let split = e.primitive();
-        let all_minus = e.raw_terms().iter().all(|(_, c)| c.is_negative());
-        let flip = split.content.is_negative() != all_minus;
-        let (content, part) = if flip { (-split.content, split.part.neg()) } else { (split.content, split.part) };
-        // a bare coefficient is not worth a bracket
-        if split.monomial.is_one()
-            && (content.is_integer() || content.numer().abs().is_one())
-            && !all_minus
-            && content.denom().is_one()
-        {
-            return (Rational::one(), split.monomial, part.scale(&content));
+        let mut common: Option<Vec<(Var, i32)>> = None;
+        for (monomial, _) in e.raw_terms() {
+            common = Some(match common {
+                None => monomial.iter().collect(),
+                Some(held) => {
+                    held.into_iter().filter_map(|(v, k)| shared(k, monomial.exponent(v)).map(|k| (v, k))).collect()
+                }
+            });
         }
-        (content, split.monomial, part)
+        let common = Monomial::from_pairs(common.unwrap_or_default());
+        let all_minus = e.raw_terms().iter().all(|(_, c)| c.is_negative());
+        let size = e.primitive().content.abs();
+        let whole_term = e.terms().any(|(_, c)| c.is_integer());
+        let size = if size.is_integer() || !whole_term { size } else { Rational::one() };
+        let content = if all_minus { -size } else { size };
+        let part = e.mul_term(&content.recip(), &common.inverse());
+        (content, common, part)
     }
 
     fn terms_formula(&self, e: &Element) -> Formula {
@@ -84,15 +114,41 @@ impl Field {
             return self.terms_formula(e);
         }
         let mut terms: Vec<(Monomial, Rational)> = e.terms().map(|(m, c)| (m.clone(), c)).collect();
-        terms.sort_by_cached_key(|(m, _)| self.reading_order(m));
+        let plus = terms.iter().any(|(_, c)| c.is_positive());
+        terms.sort_by_cached_key(|(m, c)| (m.is_one() && c.is_negative() && plus, self.reading_order(m)));
         Formula::sum(terms.into_iter().map(|(m, c)| self.terms_formula(&Poly::term(&c, m))).collect())
     }
 
     /// Parameters alone first, then by how many prices and functions a term holds, then by declaration.
-    fn reading_order(&self, m: &Monomial) -> (i64, Vec<(bool, usize, i32)>) {
+    fn reading_order(&self, m: &Monomial) -> (i64, Vec<(u8, usize, i32)>) {
         let moving = m.iter().filter(|(v, _)| !self.is_parameter(*v)).map(|(_, k)| i64::from(k.abs())).sum();
-        let vars = m.iter().map(|(v, k)| (!self.is_parameter(v), v.index(), -k)).collect();
+        let mut vars: Vec<(u8, usize, i32)> = m
+            .iter()
+            .map(|(v, k)| {
+                let (class, index) = self.place(v);
+                (class, index, -k)
+            })
+            .collect();
+        vars.sort_unstable();
         (moving, vars)
+    }
+
+    /// Where a variable stands in the order of reading: functions of one symbol go with it.
+    fn place(&self, var: Var) -> (u8, usize) {
+        let of_base = |log: Var, class: u8| match &*self.kind(log) {
+            Kind::Ln(Base::Var(base)) => (class, base.index()),
+            _ => (class + 2, log.index()),
+        };
+        match &*self.kind(var) {
+            Kind::Symbol(_) if self.is_parameter(var) => (0, var.index()),
+            Kind::Symbol(_) => (1, var.index()),
+            Kind::Exp(argument) => match self.single_log(argument) {
+                Some((log, _)) => of_base(log, 1),
+                None => (4, var.index()),
+            },
+            Kind::Ln(_) => of_base(var, 2),
+            _ => (4, var.index()),
+        }
     }
 
     fn is_parameter(&self, var: Var) -> bool {
@@ -259,6 +315,23 @@ impl Field {
             }
         }
     }
+}
+
+/// The power of a variable that two terms share: both positive or both negative, the one nearer to zero.
+fn shared(k: i32, own: i32) -> Option<i32> {
+    if k > 0 && own > 0 {
+        Some(k.min(own))
+    } else if k < 0 && own < 0 {
+        Some(k.max(own))
+    } else {
+        None
+    }
+}
+
+/// Whether a factor has more minus than plus signs, or as many and ends in a minus.
+fn reads_better_negated(part: &Poly) -> bool {
+    let minus = part.raw_terms().iter().filter(|(_, c)| c.is_negative()).count();
+    2 * minus > part.len() || 2 * minus == part.len() && part.raw_terms().last().is_some_and(|(_, c)| c.is_negative())
 }
 
 fn add_power(powers: &mut Vec<(PowerBase, Element)>, base: PowerBase, exponent: Element) {
