@@ -60,15 +60,11 @@ impl Potential {
         Ok(field.current(&total))
     }
 
-    /// −F.
-    pub fn negated(&self) -> Potential {
-        let logs = self.logs.iter().map(|(c, b)| (c.neg(), b.clone())).collect();
-        Potential { regular: self.regular.neg(), logs, pivots: self.pivots.clone() }
-    }
-
-    /// Whether F is a constant.
-    pub fn is_zero(&self) -> bool {
-        self.regular.is_zero() && self.logs.is_empty()
+    /// κ·F for a constant κ.
+    pub fn scaled(&self, field: &Field, by: &Element) -> Potential {
+        let times = |e: &Element| field.reduce(&field.product(e, by));
+        let logs = self.logs.iter().map(|(c, b)| (times(c), b.clone())).collect();
+        Potential { regular: times(&self.regular), logs, pivots: self.pivots.clone() }
     }
 }
 

@@ -1,0 +1,84 @@
+//! What a method proposes before anything is proven.
+
+use crate::algebra::field::Field;
+use crate::algebra::generator::Element;
+use crate::algebra::monomial::Var;
+use crate::algebra::polynomial::Poly;
+use crate::algebra::sign::Sign;
+
+use super::system::{Coordinate, System};
+
+/// Preferences as a method found them.
+#[derive(Clone, Debug)]
+pub struct Proposal {
+    /// v(p, m).
+    pub indirect_utility: Option<Element>,
+    /// e(p, u), where v could be solved for m.
+    pub expenditure: Option<Element>,
+    /// Elements in p and u that are positive because they equal positive functions of p and m.
+    pub positive: Vec<Element>,
+    /// The sign of ∂v/∂m.
+    pub rising: Sign,
+    /// How it was found.
+    pub working: Working,
+}
+
+/// The stations of a recovery, for the report.
+#[derive(Clone, Debug, Default)]
+pub struct Working {
+    /// The income coordinate y, where it is not income itself.
+    pub coordinate: Option<Coordinate>,
+    /// The symbol for y in the elements below.
+    pub income: Option<Var>,
+    /// The functions of income that span the demands.
+    pub functions: Vec<Element>,
+    /// z = φ(y).
+    pub z: Element,
+    /// The coefficients of 1, z, z² in dz, one vector each.
+    pub forms: Vec<Vec<Element>>,
+    /// The particular solution of a quadratic system.
+    pub particular: Option<Element>,
+    /// e^B, or the price index of a system with b = 0.
+    pub factor: Option<Element>,
+    /// e^B·A.
+    pub base: Option<Element>,
+    /// The factor that makes D dm − Σ Nᵢ dpᵢ exact.
+    pub integrating_factor: Option<Element>,
+}
+
+impl Proposal {
+    /// The proposal in income itself, when it was found in another coordinate.
+    pub fn in_income(mut self, system: &System, there: &System, coordinate: &Coordinate) -> Option<Proposal> {
+        let field = system.field;
+        if coordinate.is_plain() {
+            return Some(self);
+        }
+        let y = coordinate.of_income(field, &Poly::var(system.income));
+        if let Some(v) = &self.indirect_utility {
+            self.indirect_utility = Some(field.substitute(v, &[(there.income, y)]).ok()?);
+        }
+        if let Some(e) = &self.expenditure {
+            self.expenditure = coordinate.to_income(field, e).ok();
+        }
+        self.rising = self.rising.times(field.sign(&coordinate.scale));
+        self.working.coordinate = Some(coordinate.clone());
+        self.working.income = Some(there.income);
+        Some(self)
+    }
+
+    /// The proposal with v turned round if it falls in income.
+    pub fn turned(mut self, field: &Field, utility: Var) -> Proposal {
+        if self.rising != Sign::Negative {
+            return self;
+        }
+        let negative = [(utility, Poly::var(utility).neg())];
+        let turn = |e: &Element| field.substitute(e, &negative).ok();
+        self.indirect_utility = self.indirect_utility.map(|v| v.neg());
+        self.positive = self.positive.iter().filter_map(turn).collect();
+        let facts: Vec<_> =
+            self.positive.iter().map(|e| (e.clone(), crate::algebra::field::Relation::Positive)).collect();
+        self.expenditure = self.expenditure.and_then(|e| field.suppose(&facts, || turn(&e)));
+        self.rising = Sign::Positive;
+        self
+    }
+}

@@ -1,0 +1,105 @@
+//! The methods in their order, and the first proposal that is proven.
+
+use crate::algebra::budget;
+use crate::algebra::generator::Element;
+use crate::algebra::monomial::Var;
+use crate::proof::Prover;
+
+use super::check::{self, Established};
+use super::divisors::doubtful_divisors;
+use super::linear;
+use super::proposal::Proposal;
+use super::span::{self, Span};
+use super::system::{Coordinate, System, coordinates};
+use super::{Preferences, fractions::Moving};
+
+/// How preferences were found.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Method {
+    /// One function of income: dz = Σ aᵢ dpᵢ.
+    Separable,
+    /// dz = Σ (aᵢ + bᵢ z) dpᵢ.
+    Linear,
+    /// dz = Σ (aᵢ + bᵢ z + cᵢ z²) dpᵢ.
+    Riccati,
+    /// An integrating factor.
+    IntegratingFactor,
+}
+
+/// Units of work that one attempt may use.
+const WORK_OF_ONE_ATTEMPT: u64 = 400_000_000;
+
+/// The first proposal that is proven, or the reason why there is none.
+pub fn search(system: &System, utility: Var, prover: &mut Prover<'_>) -> Result<Box<Preferences>, String> {
+    let all = coordinates(system);
+    for (coordinate, there) in all.iter().filter_map(|c| Some((c, in_coordinate(system, c)?))) {
+        let proposals = budget::attempt(WORK_OF_ONE_ATTEMPT, || linear_proposals(&there, utility)).unwrap_or_default();
+        for (method, proposal) in proposals {
+            let Some(proposal) = proposal.in_income(system, &there, coordinate) else { continue };
+            let proposal = proposal.turned(system.field, utility);
+            if let Some(established) = check::establish(system, &proposal, utility, prover) {
+                return Ok(Box::new(preferences(system, utility, method, proposal, established)));
+            }
+        }
+    }
+    Err("no change of the income variable makes the system linear".to_string())
+}
+
+fn in_coordinate<'f>(system: &System<'f>, coordinate: &Coordinate) -> Option<System<'f>> {
+    if coordinate.is_plain() {
+        let demands = system.demands.iter().map(|x| system.field.reduce(x)).collect();
+        return Some(System { field: system.field, prices: system.prices.clone(), income: system.income, demands });
+    }
+    coordinate.transform(system)
+}
+
+fn linear_proposals(system: &System, utility: Var) -> Vec<(Method, Proposal)> {
+    let Some(span) = Span::of(system) else { return Vec::new() };
+    let mut found = Vec::new();
+    for reduced in span::reductions(system, &span, 1) {
+        let method = if reduced.lacks(1) { Method::Separable } else { Method::Linear };
+        if let Some(mut proposal) = linear::solve(system, &reduced, utility) {
+            proposal.working.functions = span.functions.clone();
+            found.push((method, proposal));
+            break;
+        }
+    }
+    found
+}
+
+fn preferences(
+    system: &System,
+    utility: Var,
+    method: Method,
+    proposal: Proposal,
+    established: Established,
+) -> Preferences {
+    let field = system.field;
+    let expenditure = established.expenditure;
+    let slopes = expenditure.iter().flat_map(|e| system.prices.iter().map(|p| field.derivative(e, *p)));
+    let hicksian: Vec<Element> = slopes.collect();
+    let mut moving = system.variables();
+    moving.push(utility);
+    let shown: Vec<&Element> = proposal.indirect_utility.iter().chain(&expenditure).collect();
+    let conditions = doubtful_divisors(field, &shown, &moving);
+    let rising = proposal.rising == crate::algebra::sign::Sign::Positive;
+    let indirect_utility = proposal.indirect_utility.map(|v| tidy(system, &v));
+    Preferences {
+        expenditure,
+        indirect_utility,
+        hicksian,
+        utility: None,
+        method,
+        working: proposal.working,
+        rising,
+        checked: established.checks,
+        conditions,
+        cases: Vec::new(),
+        steps: established.steps,
+    }
+}
+
+fn tidy(system: &System, e: &Element) -> Element {
+    let _ = Moving::new(system.field, &system.prices);
+    system.field.current(e)
+}
