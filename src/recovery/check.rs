@@ -39,11 +39,8 @@ pub fn establish(system: &System, proposal: &Proposal, utility: Var, prover: &mu
         return None;
     }
     let roy = roy(system, v, prover)?;
-    let mut found = Established {
-        checks: Checks { roy: true, ..Checks::default() },
-        steps: vec![roy],
-        expenditure: None,
-    };
+    let mut found =
+        Established { checks: Checks { roy: true, ..Checks::default() }, steps: vec![roy], expenditure: None };
     let Some(e) = &proposal.expenditure else { return Some(found) };
     let inverse = inverse(system, e, v, utility, roy, prover);
     let facts = domain_of_utility(field, system.income, proposal, e);
@@ -61,10 +58,9 @@ fn roy(system: &System, v: &Element, prover: &mut Prover<'_>) -> Option<StepId> 
     let name = prover.define("v", v);
     let equations = system.prices.iter().zip(&system.demands).enumerate().map(|(good, (price, demand))| Equation {
         label: Label::Good(good),
-        left: Expression::zero().plus(1, vec![Factor::Slope(name, *price)]).plus(
-            1,
-            vec![Factor::Element(demand.clone()), Factor::Slope(name, system.income)],
-        ),
+        left: Expression::zero()
+            .plus(1, vec![Factor::Slope(name, *price)])
+            .plus(1, vec![Factor::Element(demand.clone()), Factor::Slope(name, system.income)]),
         right: Expression::zero(),
     });
     let equations = equations.collect();
@@ -84,12 +80,7 @@ fn inverse(
     prover.identity("expenditure at the utility reached", left, right, &[roy]).ok().map(|proved| proved.step())
 }
 
-fn shephard(
-    system: &System,
-    e: &Element,
-    facts: &[(Element, Relation)],
-    prover: &mut Prover<'_>,
-) -> Option<StepId> {
+fn shephard(system: &System, e: &Element, facts: &[(Element, Relation)], prover: &mut Prover<'_>) -> Option<StepId> {
     let further: Vec<(Expression, Relation)> =
         facts.iter().map(|(e, r)| (Expression::element(e.clone()), *r)).collect();
     prover.supposing(&further, |prover| {
@@ -118,7 +109,9 @@ pub fn domain_of_utility(field: &Field, income: Var, proposal: &Proposal, e: &El
     }
     for fact in field.facts() {
         let about_income = field.depends_on(&fact.element, income);
-        if about_income && let Ok(there) = field.suppose(&facts, || field.substitute(&fact.element, &[(income, e.clone())])) {
+        if about_income
+            && let Ok(there) = field.suppose(&facts, || field.substitute(&fact.element, &[(income, e.clone())]))
+        {
             facts.push((there, fact.relation));
         }
     }

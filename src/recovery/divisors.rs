@@ -12,8 +12,7 @@ use super::fractions::Moving;
 /// The constant divisors of the elements and of everything that they are built from, as polynomials without common
 /// factors, where the facts do not exclude that they vanish.
 pub fn doubtful_divisors(field: &Field, elements: &[&Element], moving: &[Var]) -> Vec<Element> {
-    let mut search =
-        Search { moving: Moving::new(field, moving), seen: BTreeSet::new(), found: Vec::new() };
+    let mut search = Search { moving: Moving::new(field, moving), seen: BTreeSet::new(), found: Vec::new() };
     elements.iter().for_each(|e| search.element(e));
     search.found.retain(|e| !field.sign(e).excludes_zero());
     search.found

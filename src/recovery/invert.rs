@@ -1,15 +1,17 @@
 //! Solving φ(y) = Z for y.
 
+use std::collections::BTreeMap;
+
 use num_traits::{One, Signed};
 
 use crate::algebra::field::{Field, Relation};
 use crate::algebra::generator::{Base, Element, Kind};
-use crate::algebra::monomial::Var;
+use crate::algebra::monomial::{Monomial, Var};
 use crate::algebra::number::Rational;
 use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
 
-use super::fractions::Moving;
+use super::fractions::{Cleared, Moving};
 
 /// A solution y = φ⁻¹(Z) together with what must be positive for it.
 #[derive(Clone, Debug)]
@@ -26,7 +28,7 @@ pub fn solve(field: &Field, phi: &Element, y: Var, target: &Element) -> Option<I
     let mut inverse = Inverse { value: target.clone(), positive: Vec::new() };
     let mut phi = field.reduce(phi);
     for _ in 0..8 {
-        if phi.as_var() == Some(y) {
+        if phi == field.current(&Poly::var(y)) {
             return Some(inverse);
         }
         phi = step(&income, &phi, &mut inverse).or_else(|| product_of_logs(&income, &phi, &mut inverse))?;
@@ -34,62 +36,42 @@ pub fn solve(field: &Field, phi: &Element, y: Var, target: &Element) -> Option<I
     None
 }
 
-/// One layer: φ = (a·Gᵏ + b)/(c·Gᵏ + d) for one generator G; the target becomes that of what is inside G.
+/// One layer: φ = (a·M + b)/(c·M + d) for one monomial M in functions of y; the target becomes that of what is inside M.
 fn step(income: &Moving, phi: &Element, inverse: &mut Inverse) -> Option<Element> {
     let field = income.field;
-    let (numerator, denominator) = {
-        let cleared = income.clear(phi);
-        let below = income.raise(
-            &super::fractions::Cleared { numerator: Poly::one(), denominator: Default::default() },
-            &cleared.denominator,
-        );
-        (cleared.numerator, below)
-    };
-    let mut moving: Vec<Var> = numerator.vars();
-    moving.extend(denominator.vars());
-    moving.retain(|v| income.moves(*v));
+    let cleared = income.clear(phi);
+    let unit = Cleared { numerator: Poly::one(), denominator: BTreeMap::new() };
+    let below = income.collect(&income.raise(&unit, &cleared.denominator));
+    let above = income.collect(&cleared.numerator);
+    let mut moving: Vec<&Monomial> = above.keys().chain(below.keys()).filter(|m| !m.is_one()).collect();
     moving.sort_unstable();
     moving.dedup();
     let [own] = moving[..] else { return None };
-    let power = single_power(own, &[&numerator, &denominator])?;
-    let coefficient = |p: &Poly, k: i32| {
-        let found = p.coefficients(own).into_iter().find(|(e, _)| *e == k);
-        found.map_or_else(Poly::zero, |(_, c)| c)
-    };
-    // a G^k + b = Z (c G^k + d)
+    let coefficient = |terms: &BTreeMap<Monomial, Element>, m: &Monomial| terms.get(m).cloned().unwrap_or_default();
+    let one = Monomial::one();
+    // a M + b = Z (c M + d)
     let target = field.current(&inverse.value);
-    let lead = &coefficient(&numerator, power) - &field.product(&target, &coefficient(&denominator, power));
-    let rest = &field.product(&target, &coefficient(&denominator, 0)) - &coefficient(&numerator, 0);
-    let raised = field.reduce(&field.quotient(&field.current(&rest), &field.current(&lead)).ok()?);
-    inverse.value = if power == 1 {
-        raised
-    } else {
-        if field.sign(&Poly::var(own)) != Sign::Positive {
-            return None;
-        }
-        let exponent = Poly::constant(&Rational::new(1.into(), power.into()));
-        powered(field, inverse, &raised, &exponent)?
-    };
-    inside(income, own, inverse)
-}
-
-/// k where the variable occurs to the powers 0 and k only.
-fn single_power(var: Var, parts: &[&Poly]) -> Option<i32> {
-    let mut exponents: Vec<i32> = parts.iter().flat_map(|p| p.coefficients(var)).map(|(k, _)| k).collect();
-    exponents.retain(|k| *k != 0);
-    exponents.sort_unstable();
-    exponents.dedup();
-    match exponents[..] {
-        [k] => Some(k),
-        _ => None,
+    let lead = &coefficient(&above, own) - &field.product(&target, &coefficient(&below, own));
+    let rest = &field.product(&target, &coefficient(&below, &one)) - &coefficient(&above, &one);
+    inverse.value = field.reduce(&field.quotient(&field.current(&rest), &field.current(&lead)).ok()?);
+    let mut factors = own.iter();
+    match (factors.next(), factors.next()) {
+        (Some((var, 1)), None) => inside(income, var, inverse),
+        _ => inside_product(income, own, inverse),
     }
 }
 
-/// value^exponent, the value being positive because a generator of y is.
-fn powered(field: &Field, inverse: &mut Inverse, value: &Element, exponent: &Element) -> Option<Element> {
-    require_positive(field, inverse, value);
-    let facts: Vec<(Element, Relation)> = inverse.positive.iter().map(|e| (e.clone(), Relation::Positive)).collect();
-    field.suppose(&facts, || field.power(value, exponent)).ok()
+/// From M = target to what is inside M, for M a power of one positive thing.
+fn inside_product(income: &Moving, product: &Monomial, inverse: &mut Inverse) -> Option<Element> {
+    let field = income.field;
+    let whole = Poly::monomial(product.clone());
+    if field.sign(&whole) != Sign::Positive {
+        return None;
+    }
+    let log = field.ln(&whole).ok()?;
+    let target = field.current(&inverse.value);
+    require_positive(field, inverse, &target);
+    power_inside(income, &log, inverse, &target)
 }
 
 fn require_positive(field: &Field, inverse: &mut Inverse, value: &Element) {
@@ -119,7 +101,7 @@ fn inside(income: &Moving, own: Var, inverse: &mut Inverse) -> Option<Element> {
         Kind::Sum { value, root } => {
             if *root > 1 {
                 require_positive(field, inverse, &target);
-                inverse.value = field.integer_power(&target, &(*root).into()).ok()?;
+                inverse.value = field.named(&target, None).pow(*root);
             }
             Some(field.reduce(value))
         }
@@ -139,7 +121,9 @@ fn power_inside(income: &Moving, argument: &Element, inverse: &mut Inverse, targ
         && let [(1, factor)] = &argument.coefficients(log)[..]
     {
         let exponent = field.inverse(factor).ok()?;
-        inverse.value = field.suppose(&facts, || field.power(target, &exponent)).ok()?;
+        // the base is kept as one thing, so that its roots can be taken again
+        let target = field.named(target, None);
+        inverse.value = field.suppose(&facts, || field.power(&target, &exponent)).ok()?;
         return Some(match base {
             Base::Sum(value) => field.reduce(value),
             Base::Var(var) => field.current(&Poly::var(*var)),
@@ -174,7 +158,8 @@ pub fn log_product(income: &Moving, phi: &Element) -> Option<(Element, Element, 
         let (Some((log, 1)), None) = (powers.next(), powers.next()) else { return None };
         let Kind::Ln(_) = &*field.kind(log) else { return None };
         factors.push((log, coefficient.clone()));
-        let smaller = scale.as_ref().is_none_or(|s| ratio(field, &coefficient, s).is_some_and(|q| q.abs() < Rational::one()));
+        let smaller =
+            scale.as_ref().is_none_or(|s| ratio(field, &coefficient, s).is_some_and(|q| q.abs() < Rational::one()));
         if smaller {
             scale = Some(coefficient);
         }

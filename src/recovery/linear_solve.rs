@@ -53,6 +53,9 @@ struct Elimination<'a> {
     ranks: FxHashMap<Element, u8>,
 }
 
+/// Doubt about the pivot, fill-in, length of the row: less is better.
+type Score = (u8, usize, usize);
+
 /// How many of the shortest rows are looked at for a pivot.
 const ROWS_COMPARED: usize = 12;
 
@@ -147,7 +150,7 @@ impl<'a> Elimination<'a> {
     /// The surest pivot among the shortest rows; an unknown that few rows hold is preferred.
     fn choose(&mut self) -> Option<(usize, usize)> {
         let shortest: Vec<usize> = self.by_length.iter().take(ROWS_COMPARED).map(|(_, row)| *row).collect();
-        let mut best: Option<((u8, usize, usize), (usize, usize))> = None;
+        let mut best: Option<(Score, (usize, usize))> = None;
         for row in shortest {
             let entries: Vec<(usize, Element)> = match self.rows.get(row) {
                 Some(Some(equation)) => equation.left.iter().map(|(c, e)| (*c, e.clone())).collect(),

@@ -5,13 +5,13 @@ use crate::algebra::generator::Element;
 use crate::algebra::monomial::Var;
 use crate::proof::Prover;
 
+use super::Preferences;
 use super::check::{self, Established};
 use super::divisors::doubtful_divisors;
 use super::linear;
 use super::proposal::Proposal;
 use super::span::{self, Span};
 use super::system::{Coordinate, System, coordinates};
-use super::{Preferences, fractions::Moving};
 
 /// How preferences were found.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -83,10 +83,9 @@ fn preferences(
     let shown: Vec<&Element> = proposal.indirect_utility.iter().chain(&expenditure).collect();
     let conditions = doubtful_divisors(field, &shown, &moving);
     let rising = proposal.rising == crate::algebra::sign::Sign::Positive;
-    let indirect_utility = proposal.indirect_utility.map(|v| tidy(system, &v));
     Preferences {
         expenditure,
-        indirect_utility,
+        indirect_utility: proposal.indirect_utility,
         hicksian,
         utility: None,
         method,
@@ -97,9 +96,4 @@ fn preferences(
         cases: Vec::new(),
         steps: established.steps,
     }
-}
-
-fn tidy(system: &System, e: &Element) -> Element {
-    let _ = Moving::new(system.field, &system.prices);
-    system.field.current(e)
 }

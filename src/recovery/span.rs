@@ -86,7 +86,9 @@ impl Span {
     /// With a single function, constant factors of its coefficients go over to it.
     fn move_constants(&mut self, prices: &Moving) {
         let field = prices.field;
-        let (Some(function), Some(column)) = (self.functions.first_mut(), self.coefficients.first_mut()) else { return };
+        let (Some(function), Some(column)) = (self.functions.first_mut(), self.coefficients.first_mut()) else {
+            return;
+        };
         let Some(first) = column.iter().find(|e| !e.is_zero()) else { return };
         let Some((_, constant)) = prices.collect(&prices.clear(first).numerator).into_iter().next() else { return };
         let Ok(inverse) = field.inverse(&constant) else { return };
@@ -94,7 +96,9 @@ impl Span {
             return;
         }
         let simpler: Vec<Element> = column.iter().map(|e| field.reduce(&field.product(e, &inverse))).collect();
-        let size = |list: &[Element]| list.iter().map(|e| e.raw_terms().iter().map(|(m, _)| 1 + m.len()).sum::<usize>()).sum::<usize>();
+        let size = |list: &[Element]| {
+            list.iter().map(|e| e.raw_terms().iter().map(|(m, _)| 1 + m.len()).sum::<usize>()).sum::<usize>()
+        };
         if size(&simpler) < size(column) {
             *column = simpler;
             *function = field.reduce(&field.product(function, &constant));
@@ -166,10 +170,8 @@ fn coordinate(income: &Moving, g: &Element) -> Option<(Element, Element)> {
     let z = potential(income, &[field.inverse(g).ok()?])?.value(field).ok()?;
     let z = field.reduce(&z);
     let mut terms = income.collect(&income.clear(&z).numerator).into_iter();
-    let (first, rest) = (terms.next(), terms.next());
-    let z = match (first, rest) {
-        (Some((_, factor)), None) if field.sign(&factor) == Sign::Positive => field.quotient(&z, &factor).ok()?,
-        (Some((_, factor)), None) if field.sign(&factor) == Sign::Negative => field.quotient(&z, &factor).ok()?,
+    let z = match (terms.next(), terms.next()) {
+        (Some((_, factor)), None) => without_known_factors(field, z, &factor),
         (Some((_, factor)), Some(_)) => match factor.as_constant() {
             Some(q) => z.scale(&q.abs().recip()),
             None => z,
@@ -179,6 +181,13 @@ fn coordinate(income: &Moving, g: &Element) -> Option<(Element, Element)> {
     let z = field.reduce(&z);
     let slope = field.reduce(&field.derivative(&z, y));
     Some((z, slope))
+}
+
+/// z over those factors of its constant coefficient whose sign is known.
+fn without_known_factors(field: &Field, z: Element, coefficient: &Element) -> Element {
+    let Some((content, monomial)) = coefficient.as_monomial() else { return z };
+    let known = monomial.split(|v| orientation(field, &Poly::var(v)).is_some()).0;
+    z.mul_term(&content.recip(), &known.inverse())
 }
 
 /// The system in z, if every gₖ dz/dy is a polynomial of at most that degree in z with constant coefficients.
