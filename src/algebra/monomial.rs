@@ -220,12 +220,29 @@ impl Monomial {
 
     /// Whether no exponent is negative.
     pub fn is_polynomial(&self) -> bool {
-        self.0.iter().all(|&f| exponent_of(f) > 0)
+        self.0.iter().all(|&f| f > ABSENT)
     }
 
     /// Whether self / other has no negative exponent.
     pub fn is_divisible_by(&self, other: &Monomial) -> bool {
-        self.meet(other) == *other
+        other.is_below(self)
+    }
+
+    /// Whether no exponent is greater than in `other`, where an absent variable counts as 0.
+    pub(crate) fn is_below(&self, other: &Monomial) -> bool {
+        let (a, b) = (&self.0[..], &other.0[..]);
+        let (mut i, mut j) = (0, 0);
+        while i < a.len() && j < b.len() {
+            let (v, w) = (var_bits(a[i]), var_bits(b[j]));
+            let (left, right) =
+                (if v <= w { exponent_of(a[i]) } else { 0 }, if w <= v { exponent_of(b[j]) } else { 0 });
+            if left > right {
+                return false;
+            }
+            i += usize::from(v <= w);
+            j += usize::from(w <= v);
+        }
+        a[i..].iter().all(|&f| f < ABSENT) && b[j..].iter().all(|&f| f > ABSENT)
     }
 
     /// The sum of the exponents.

@@ -25,7 +25,7 @@ pub use integer::integer_factors;
 pub use squarefree::squarefree;
 
 /// Work granted to one squarefree part.
-const WORK: u64 = 60_000_000;
+const WORK: u64 = 30_000_000;
 
 /// content · monomial · Π factorᵉ; see [`factor`].
 #[derive(Clone, Debug, PartialEq, Eq)]

@@ -2,6 +2,7 @@
 
 use std::cmp::Ordering;
 use std::collections::BinaryHeap;
+use std::collections::binary_heap::PeekMut;
 
 use num_traits::One;
 
@@ -34,7 +35,9 @@ impl Poly {
         }
         let mut monomial = lead.clone();
         for (m, _) in &self.terms[1..] {
-            monomial = monomial.meet(m);
+            if !monomial.is_below(m) {
+                monomial = monomial.meet(m);
+            }
         }
         let part = if content.is_one() && self.den.is_one() && monomial.is_one() {
             self.clone()
@@ -93,7 +96,10 @@ fn divide_primitive(n: &Poly, d: &Poly) -> Option<Poly> {
 
 /// The largest exponents a quotient may have: degree by degree.
 fn quotient_bound(n: &Poly, d: &Poly) -> Option<Monomial> {
-    let degrees = |p: &Poly| p.terms.iter().fold(Monomial::one(), |all, (m, _)| all.join(m));
+    let degrees = |p: &Poly| {
+        let join = |all: Monomial, (m, _): &Term| if m.is_below(&all) { all } else { all.join(m) };
+        p.terms.iter().fold(Monomial::one(), join)
+    };
     let (top, low) = (degrees(n), degrees(d));
     let bound = top.div(&low);
     bound.is_polynomial().then_some(bound)
@@ -171,12 +177,21 @@ impl<'a> Division<'a> {
     /// Takes every waiting product with this monomial off the coefficient.
     fn subtract_products(&mut self, monomial: &Monomial, c: &mut Int) {
         let mut spent = 1;
-        while self.heap.peek().is_some_and(|top| top.monomial == *monomial) {
-            let Some(Waiting { i, j, .. }) = self.heap.pop() else { break };
+        while let Some(mut top) = self.heap.peek_mut() {
+            if top.monomial != *monomial {
+                break;
+            }
+            let (i, j) = (top.i, top.j);
             *c = c.sub(&self.quotient[i].1.mul(&self.d[j].1));
             match self.quotient.get(i + 1) {
-                Some((q, _)) => self.heap.push(Waiting { monomial: q.mul(&self.d[j].0), i: i + 1, j }),
-                None => self.idle.push(j),
+                Some((q, _)) => {
+                    top.monomial = q.mul(&self.d[j].0);
+                    top.i = i + 1;
+                }
+                None => {
+                    PeekMut::pop(top);
+                    self.idle.push(j);
+                }
             }
             spent += 2;
         }
