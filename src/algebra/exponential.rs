@@ -16,6 +16,8 @@ use super::relation::rational_relation;
 
 /// The largest integer exponent that is multiplied out.
 const MOST_EXPONENT: i64 = 4000;
+/// A longer sum without a base of its own gets one exponential for all of it.
+const MOST_SINGLE_TERMS: usize = 8;
 /// The finest root that is taken.
 const FINEST_ROOT: u32 = 1000;
 
@@ -96,11 +98,15 @@ impl Field {
         found.map_or(Group::Other, Group::Log)
     }
 
-    /// exp of terms without a base of their own: together if they are a combination of known arguments, else singly.
+    /// exp of terms without a base of their own: together if they are a combination of known arguments, else singly
+    /// where they are few.
     fn exp_other(&self, terms: Vec<Element>) -> Built {
         let whole = Poly::sum(terms.clone());
         if let Some(known) = self.exp_known(Group::Other, &whole) {
             return known;
+        }
+        if terms.len() > MOST_SINGLE_TERMS {
+            return self.exp_in(Group::Other, &whole);
         }
         let mut product = Poly::one();
         for term in terms {

@@ -1,6 +1,7 @@
 //! Linear relations over the rationals between elements.
 
 use num_traits::Zero;
+use rustc_hash::FxHashMap;
 
 use super::field::Field;
 use super::generator::Element;
@@ -17,7 +18,36 @@ pub fn rational_relation(field: &Field, target: &Element, basis: &[Element]) -> 
     let mut all: Vec<Element> = basis.to_vec();
     all.push(target.clone());
     let columns = over_one_denominator(field, &all);
-    solve(&columns)
+    let connected = connected(&columns)?;
+    let few: Vec<Poly> = connected.iter().map(|place| &columns[*place]).chain(columns.last()).cloned().collect();
+    let mut coefficients = vec![Rational::zero(); basis.len()];
+    for (place, coefficient) in connected.into_iter().zip(solve(&few)?) {
+        coefficients[place] = coefficient;
+    }
+    Some(coefficients)
+}
+
+/// The columns that share monomials with the last one, directly or through each other: only they can matter. `None` if
+/// a monomial of the last column stands in no other.
+fn connected(columns: &[Poly]) -> Option<Vec<usize>> {
+    let (target, basis) = columns.split_last()?;
+    let mut holders: FxHashMap<&Monomial, Vec<usize>> = FxHashMap::default();
+    for (place, column) in basis.iter().enumerate() {
+        column.raw_terms().iter().for_each(|(monomial, _)| holders.entry(monomial).or_default().push(place));
+    }
+    if !target.raw_terms().iter().all(|(monomial, _)| holders.contains_key(monomial)) {
+        return None;
+    }
+    let mut reached = vec![false; basis.len()];
+    let mut waiting: Vec<&Poly> = vec![target];
+    while let Some(column) = waiting.pop() {
+        for place in column.raw_terms().iter().filter_map(|(monomial, _)| holders.remove(monomial)).flatten() {
+            if !std::mem::replace(&mut reached[place], true) {
+                waiting.push(&basis[place]);
+            }
+        }
+    }
+    Some((0..basis.len()).filter(|place| reached[*place]).collect())
 }
 
 /// The numerators of the elements over a common denominator.

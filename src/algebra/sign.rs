@@ -167,9 +167,7 @@ impl Field {
 
     /// The sign of a polynomial as a combination of facts.
     fn from_facts(&self, f: &Poly) -> Sign {
-        let facts: Vec<Rc<Fact>> = self.facts();
-        let facts: Vec<Fact> =
-            facts.iter().map(|fact| Fact { element: self.current(&fact.element), relation: fact.relation }).collect();
+        let facts = self.current_facts();
         let nonzero = facts.iter().any(|g| g.relation == Relation::NonZero && self.divides(f, &g.element));
         for (candidate, strict, weak) in
             [(f.clone(), Sign::Positive, Sign::NonNegative), (f.neg(), Sign::Negative, Sign::NonPositive)]
@@ -184,6 +182,16 @@ impl Field {
         if nonzero { Sign::NonZero } else { Sign::Unknown }
     }
 
+    /// The facts, written in variables that are still in use.
+    fn current_facts(&self) -> Vec<Rc<Fact>> {
+        let facts = self.facts();
+        if self.tables.borrow().retired.is_empty() {
+            return facts;
+        }
+        let fresh = |fact: &Rc<Fact>| Rc::new(Fact { element: self.current(&fact.element), relation: fact.relation });
+        facts.iter().map(fresh).collect()
+    }
+
     /// Whether g is a multiple of f by something that is defined everywhere, so that f vanishes nowhere where g does not.
     fn divides(&self, f: &Poly, g: &Poly) -> bool {
         let defined =
@@ -192,7 +200,7 @@ impl Field {
     }
 
     /// Tries to write f as positive multiples of facts plus terms of one sign, cancelling the first doubtful term.
-    fn combination(&self, f: &Poly, facts: &[Fact], deep: u32, strict: bool, trials: &mut u32) -> Sign {
+    fn combination(&self, f: &Poly, facts: &[Rc<Fact>], deep: u32, strict: bool, trials: &mut u32) -> Sign {
         if f.is_zero() {
             return if strict { Sign::Positive } else { Sign::NonNegative };
         }
@@ -211,7 +219,10 @@ impl Field {
         if deep == 0 {
             return Sign::Unknown;
         }
-        for fact in facts.iter().filter(|g| g.relation != Relation::NonZero) {
+        // a multiple by a positive monomial keeps what is of unknown sign: a fact without it cannot help
+        let unsettled = monomial.vars().into_iter().find(|v| !self.variable_sign(*v).excludes_zero());
+        let helps = |g: &&Rc<Fact>| g.relation != Relation::NonZero && unsettled.is_none_or(|v| g.element.contains(v));
+        for fact in facts.iter().filter(helps) {
             for step in self.steps(f, &monomial, &fact.element) {
                 if *trials == 0 {
                     return Sign::Unknown;
@@ -233,10 +244,12 @@ impl Field {
         let Some(target) = f.terms().find(|(m, _)| *m == monomial).map(|(_, c)| c) else { return Vec::new() };
         let mut steps = Vec::new();
         for (own, coefficient) in g.terms() {
-            let scale = &target / &coefficient;
+            if target.is_positive() != coefficient.is_positive() {
+                continue;
+            }
             let shift = monomial.div(own);
-            if scale.is_positive() && self.monomial_sign(&shift) == Sign::Positive {
-                steps.push(g.mul_term(&scale, &shift));
+            if self.monomial_sign(&shift) == Sign::Positive {
+                steps.push(g.mul_term(&(&target / &coefficient), &shift));
             }
         }
         steps

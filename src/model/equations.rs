@@ -50,13 +50,6 @@ impl Linear {
             }
         }
     }
-
-    fn to_element(&self) -> Element {
-        let mut terms: Vec<(Monomial, Rational)> =
-            self.terms.iter().map(|(var, c)| (Monomial::power(*var, 1), c.clone())).collect();
-        terms.push((Monomial::one(), self.constant.clone()));
-        Poly::from_terms(terms)
-    }
 }
 
 /// What a linear equation did.
@@ -97,21 +90,18 @@ impl Elimination {
 
     /// Every eliminated parameter with what stands for it, free of eliminated parameters.
     pub fn solved(self) -> Vec<(Var, Element)> {
-        let mut done: BTreeMap<Var, Linear> = BTreeMap::new();
+        let mut done: Vec<(Var, Element)> = Vec::with_capacity(self.rows.len());
         for (var, row) in self.rows {
-            let mut settled = Linear { terms: BTreeMap::new(), constant: row.constant };
-            for (inner, coefficient) in row.terms {
-                match done.get(&inner) {
-                    Some(known) => settled.add(known, &coefficient),
-                    None => {
-                        let single = Linear { terms: BTreeMap::from([(inner, Rational::one())]), ..Linear::default() };
-                        settled.add(&single, &coefficient);
-                    }
-                }
+            let mut parts = vec![Poly::constant(&row.constant)];
+            for (inner, coefficient) in &row.terms {
+                parts.push(match done.binary_search_by(|(known, _)| known.cmp(inner)) {
+                    Ok(found) => done[found].1.scale(coefficient),
+                    Err(_) => Poly::term(coefficient, Monomial::power(*inner, 1)),
+                });
             }
-            done.insert(var, settled);
+            done.push((var, Poly::sum(parts)));
         }
-        done.into_iter().map(|(var, linear)| (var, linear.to_element())).collect()
+        done
     }
 }
 

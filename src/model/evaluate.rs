@@ -38,6 +38,8 @@ enum Memo<T> {
     Closed(Result<T, Failed>),
 }
 
+/// A logarithm that comes out as a longer sum than this is kept as one.
+const LONG_SUM: usize = 16;
 /// Formulas nested more deeply than this, through each other, are refused.
 const MOST_FRAMES: u32 = 1500;
 
@@ -244,6 +246,7 @@ impl<'s> Evaluator<'s> {
             Function::LambertW => self.field.special(Special::LambertW, value),
         };
         let value = match built {
+            Ok(value) if self.naming.get() && value.len() > LONG_SUM => Rc::new(self.field.named(&value, None)),
             Ok(value) => Rc::new(value),
             Err(blocked) => {
                 return Err(self.report(messages::call(self, &blocked, function, node, argument, environment)));
