@@ -7,7 +7,7 @@ use rustc_hash::FxHashMap;
 use crate::algebra::field::Field;
 use crate::algebra::generator::{Element, Role};
 use crate::algebra::monomial::Var;
-use crate::language::{Diagnostic, Span};
+use crate::language::{self, Diagnostic, Source, Span};
 
 use super::evaluate::{Evaluator, Failed};
 use super::ground::{Conflict, Ground, establish};
@@ -20,7 +20,7 @@ use super::{Model, Text};
 
 /// Builds the model of a text with values put in for parameters.
 pub(super) fn build(text: Rc<Text>, values: &[Value<'_>]) -> Result<Model, Vec<Diagnostic>> {
-    let script = script(&text.source, &text.tree)?;
+    let script = script(&text.source, &text.tree, true)?;
     let field = Field::new();
     let symbols = Symbols::declare(&script.declarations, &field);
     let evaluator = Evaluator::new(&field, &script, &symbols, &text.source);
@@ -36,6 +36,11 @@ pub(super) fn build(text: Rc<Text>, values: &[Value<'_>]) -> Result<Model, Vec<D
     let parameters = parameters(&evaluator);
     drop(evaluator);
     Ok(assemble(text, &script, field, &symbols, ground, content, parameters))
+}
+
+/// The mistakes in the names of a file that could be read in part only.
+pub(super) fn further_mistakes(source: &Source, tree: &language::Model) -> Vec<Diagnostic> {
+    script(source, tree, false).err().unwrap_or_default()
 }
 
 /// What is computed once the ground is established.

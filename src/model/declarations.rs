@@ -51,7 +51,6 @@ pub(super) fn declare(source: &Source, outline: &Outline<'_>, mistakes: &mut Vec
     reader.groups(outline);
     let declarations = reader.declarations;
     declarations.names.check_lookalikes(mistakes);
-    missing(outline, mistakes);
     declarations
 }
 
@@ -215,7 +214,7 @@ pub(super) fn listed(all: &[String]) -> String {
 }
 
 /// Statements that demands need and that are not there.
-fn missing(outline: &Outline<'_>, mistakes: &mut Vec<Diagnostic>) {
+pub(super) fn missing(outline: &Outline<'_>, mistakes: &mut Vec<Diagnostic>) {
     let first = outline.equations.first().map(|e| e.span).or(outline.rest.map(|r| r.span));
     let Some(span) = first else {
         return;

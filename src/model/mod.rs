@@ -75,6 +75,25 @@ struct Text {
     tree: language::Model,
 }
 
+/// Reads a model file and gives it its meaning, with values put in for parameters.
+///
+/// # Errors
+/// Every mistake of the file, those of its form and those of its names together where both can be seen, in the order of
+/// the file.
+pub fn read(source: &Source, values: &[Value<'_>]) -> Result<Model, Vec<Diagnostic>> {
+    let reading = language::examine(source);
+    if reading.mistakes.is_empty() {
+        return build::build(Rc::new(Text { source: source.clone(), tree: reading.model }), values);
+    }
+    let mut mistakes = reading.mistakes;
+    if !reading.declarations_lost {
+        let further = build::further_mistakes(source, &reading.model);
+        mistakes.extend(further);
+        mistakes.sort_by_key(|mistake| mistake.span);
+    }
+    Err(mistakes)
+}
+
 /// Gives a syntax tree its meaning.
 ///
 /// # Errors

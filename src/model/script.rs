@@ -57,21 +57,27 @@ pub(super) struct Script {
     pub covered: Covered,
 }
 
-/// Looks up everything.
+/// Looks up everything. Of a tree from which statements may be missing (it is not `whole`), only mistakes that no
+/// missing statement could explain are reported.
 ///
 /// # Errors
 /// All mistakes that can be seen without computing.
-pub(super) fn script(source: &Source, tree: &language::Model) -> Result<Script, Vec<Diagnostic>> {
+pub(super) fn script(source: &Source, tree: &language::Model, whole: bool) -> Result<Script, Vec<Diagnostic>> {
     let mut mistakes = Vec::new();
     let outline = Outline::of(source, tree, &mut mistakes);
     let declarations = declarations::declare(source, &outline, &mut mistakes);
+    if whole {
+        declarations::missing(&outline, &mut mistakes);
+    }
     let mut writer = Writer { source, declarations: &declarations, mistakes: &mut mistakes };
     let abbreviations = outline.abbreviations.iter().map(|(name, value)| writer.abbreviation(name, value)).collect();
     let assumed = outline.assumed.iter().map(|relation| writer.stated(relation)).collect();
     let claims = outline.claims.iter().map(|relation| writer.stated(relation)).collect();
-    let (definitions, defined) = writer.demands(&outline);
+    let (definitions, defined) = writer.demands(&outline, whole);
     let covered = writer.covered(&outline);
-    writer.something_to_do(&outline);
+    if whole {
+        writer.something_to_do(&outline);
+    }
     if !mistakes.is_empty() {
         mistakes.sort_by_key(|mistake| mistake.span);
         mistakes.dedup();
@@ -123,7 +129,7 @@ impl Writer<'_> {
         }
     }
 
-    fn demands(&mut self, outline: &Outline<'_>) -> (Vec<Definition>, Vec<Defined>) {
+    fn demands(&mut self, outline: &Outline<'_>, whole: bool) -> (Vec<Definition>, Vec<Defined>) {
         let count = self.names().goods.len();
         let mut slots: Vec<Option<(Defined, Span)>> = vec![None; count];
         let mut definitions = Vec::new();
@@ -143,7 +149,7 @@ impl Writer<'_> {
                 self.define(&mut slots, good, Defined::Rest, whole_target(target));
             }
         }
-        if outline.has_demands() {
+        if whole && outline.has_demands() {
             self.undefined(outline, &slots);
         }
         let defined = slots.into_iter().flatten().map(|(defined, _)| defined).collect();
