@@ -43,7 +43,7 @@ fn equal(model: &Model, a: &Element, b: &Element) -> bool {
 
 fn parameter(model: &Model, name: &str) -> Element {
     let found = model.parameters.iter().find(|p| p.name == name).expect("a declared parameter");
-    found.eliminated.clone().unwrap_or_else(|| Poly::var(found.var))
+    found.eliminated.as_ref().map_or_else(|| Poly::var(found.var), |e| model.field.reduce(e))
 }
 
 fn coordinate(model: &Model, point: &Point, name: &str) -> Rational {
@@ -340,7 +340,8 @@ fn points_are_found_for_many_shares_and_for_awkward_conditions() {
     let root = model("parameters a, b\nassume a > 0, b = sqrt(a)\nclaim b > 0");
     let point = root.points().next().expect("a square");
     assert_eq!(coordinate(&root, &point, "a"), coordinate(&root, &point, "b").pow(2));
-    let empty = model("parameters a\nassume a^2 < a, a^3 > a^2 + 1\nclaim a = a");
+    // contradictory by the inequality of means, which nobody here claims to see
+    let empty = model("parameters a, b\nassume a^2 + b^2 < 1, a*b > 1\nclaim a = b");
     assert_eq!(empty.points().count(), 0);
 }
 

@@ -193,8 +193,11 @@ pub(super) fn unknown_good(names: &Names, index: &Index, span: Span) -> Diagnost
         _ if names.goods.is_empty() => {
             Diagnostic::error(span, "there are no goods").remedy("declare them: `goods 1..4`")
         }
-        Index::Number(number) => Diagnostic::error(span, format!("there is no good {number}"))
-            .remedy(format!("the goods are numbered from 1 to {}", names.goods.len())),
+        Index::Number(number) => Diagnostic::error(span, format!("there is no good {number}")).remedy(format!(
+            "there are {}: good 1 to good {}",
+            counted(names.goods.len(), "good"),
+            names.goods.len()
+        )),
         Index::Name(name) => {
             let message = Diagnostic::error(span, format!("there is no good `{name}`"));
             match nearest(name, goods) {

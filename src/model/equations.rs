@@ -178,6 +178,19 @@ fn foreign(field: &Field, numerator: &Poly) -> Option<Unusable> {
     if symbols.iter().any(|var| field.role(*var) != Some(Role::Parameter)) {
         return Some(Unusable::NotParameters);
     }
-    let algebraic = |var: &Var| matches!(&*field.kind(*var), Kind::Symbol(_) | Kind::Sum { .. });
+    let algebraic = |var: &Var| match &*field.kind(*var) {
+        Kind::Symbol(_) | Kind::Sum { .. } => true,
+        Kind::Exp(argument) => is_root(field, argument),
+        _ => false,
+    };
     (!numerator.vars().iter().all(algebraic)).then_some(Unusable::NotAlgebraic)
+}
+
+/// Whether exp of the argument is a root: a rational multiple of one logarithm.
+fn is_root(field: &Field, argument: &Element) -> bool {
+    let only = argument.as_monomial().and_then(|(_, monomial)| match monomial.len() {
+        1 => monomial.iter().next(),
+        _ => None,
+    });
+    only.is_some_and(|(var, exponent)| exponent == 1 && matches!(&*field.kind(var), Kind::Ln(_)))
 }

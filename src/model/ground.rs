@@ -67,6 +67,8 @@ pub(super) fn establish(evaluator: &Evaluator<'_>, chosen: &dyn Fn(usize) -> boo
     let (equations, inequalities): (Vec<Link<'_>>, Vec<Link<'_>>) =
         links.into_iter().partition(|link| link.sign == Comparison::Equal);
     let later = builder.linear(equations)?;
+    // where nothing more is eliminated, the author's names can be given from here on
+    evaluator.naming.set(later.is_empty());
     let requirements = survey.requirements();
     builder.in_turn(&inequalities, later, &requirements)?;
     builder.relaxation(&inequalities)?;
@@ -98,7 +100,7 @@ struct Builder<'a, 's> {
     seen: FxHashSet<(bool, Element)>,
     /// Symbols that a fact is about.
     constrained: FxHashSet<Var>,
-    constraints: Vec<(usize, Constraint)>,
+    constraints: Vec<Constraint>,
 }
 
 impl<'s> Builder<'_, 's> {
@@ -172,7 +174,8 @@ impl<'s> Builder<'_, 's> {
 
     /// At each depth relations come first, then equations, then needs, those of logarithms before those of divisors.
     fn turns<'b>(&self, inequalities: &'b [Link<'s>], requirements: &'b [Requirement<'s>]) -> Vec<Turn<'b, 's>> {
-        let mut turns: Vec<((u32, u8, Option<Need>), Turn<'b, 's>)> = Vec::new();
+        type Order = (u32, u8, Option<Need>);
+        let mut turns: Vec<(Order, Turn<'b, 's>)> = Vec::new();
         for link in inequalities {
             turns.push(((self.survey.stated_depth(self.stated(link)), 0, None), Turn::Relation(link)));
         }
@@ -233,7 +236,8 @@ impl<'s> Builder<'_, 's> {
         self.keep(link, left, right);
         if relation != Relation::NonZero {
             let strict = relation == Relation::Positive;
-            self.constraints.push((link.stated, Constraint { form: difference.clone(), strict }));
+            let form = self.evaluator.field.expand(&difference);
+            self.constraints.push(Constraint { form, strict });
         }
         if !self.takes_every_value(&difference) {
             let sign = self.evaluator.field.sign(&difference);
@@ -281,14 +285,17 @@ impl<'s> Builder<'_, 's> {
             },
             _ => Element::clone(&value),
         };
-        let nonzero = requirement.need == Need::NonZero;
+        let nonzero = matches!(requirement.need, Need::NonZero | Need::NonZeroArgument);
         if !self.seen.insert((nonzero, value.clone())) {
             return;
         }
         let sign = field.sign(&value);
         if nonzero {
             if sign == Sign::Zero || !sign.excludes_zero() && field.is_zero(&value) {
-                self.evaluator.report(messages::division_by_zero(self.evaluator, requirement.node));
+                self.evaluator.report(match requirement.need {
+                    Need::NonZero => messages::division_by_zero(self.evaluator, requirement.node),
+                    _ => messages::outside_domain(self.evaluator, Function::Ei, requirement.node),
+                });
             } else if !sign.excludes_zero() {
                 self.domain.push(DomainCondition::NonZero(value.clone()));
                 self.assume(&value, Relation::NonZero);
@@ -318,7 +325,7 @@ impl<'s> Builder<'_, 's> {
     fn relaxation(&mut self, inequalities: &[Link<'s>]) -> Result<(), Conflict> {
         let Some(last) = inequalities.last() else { return Ok(()) };
         let field = self.evaluator.field;
-        let constraints: Vec<Constraint> = self.constraints.drain(..).map(|(_, constraint)| constraint).collect();
+        let constraints = std::mem::take(&mut self.constraints);
         let positive = |monomial: &crate::algebra::monomial::Monomial| {
             field.sign(&Poly::monomial(monomial.clone())) == Sign::Positive
         };

@@ -1,6 +1,6 @@
 //! Messages for formulas that cannot be computed, in the author's own words.
 
-use crate::algebra::generator::{Blocked, Special};
+use crate::algebra::generator::Blocked;
 use crate::language::{Diagnostic, Function, Source, Span};
 
 use super::evaluate::Evaluator;
@@ -90,6 +90,7 @@ pub(super) fn call(
                 .remedy(format!("add `assume {text} > 0`, with a sign for each of its factors"))
         }
         Blocked::NotPositive(_) => nowhere_defined(evaluator, function, argument, environment),
+        Blocked::OutsideDomain(..) => outside_domain(evaluator, function, argument),
         _ => blocked_anyway(evaluator, blocked, node, environment),
     }
 }
@@ -108,6 +109,13 @@ pub(super) fn nowhere_defined(
         _ => format!("`{word}` needs a positive argument, and `{text}` is nowhere positive{place}"),
     };
     Diagnostic::error(argument.span, message).remedy("check the signs of the argument")
+}
+
+/// An argument at which the function has no value.
+pub(super) fn outside_domain(evaluator: &Evaluator<'_>, function: Function, argument: &Node) -> Diagnostic {
+    let text = written(evaluator.source, argument);
+    Diagnostic::error(argument.span, format!("`{}` is not defined for `{text}`", function.word()))
+        .remedy("check the argument")
 }
 
 /// Whatever else the field refuses.
@@ -129,15 +137,7 @@ fn blocked_anyway(evaluator: &Evaluator<'_>, blocked: &Blocked, node: &Node, env
         Blocked::NotPositive(_) => {
             (format!("a part of `{text}` that must be positive is not{place}"), "check the signs of its parts")
         }
-        Blocked::OutsideDomain(function, _) => {
-            let name = match function {
-                Special::Ei => "Ei",
-                Special::Erf => "erf",
-                Special::Erfi => "erfi",
-                Special::LambertW => "lambertw",
-            };
-            (format!("`{name}` is not defined for its argument in `{text}`{place}"), "check the argument")
-        }
+        Blocked::OutsideDomain(..) => (format!("`{text}` is not defined{place}"), "check its argument"),
         Blocked::UnknownSymbol => (format!("`{text}` holds a name that is not known{place}"), "declare it"),
         Blocked::ExponentTooLarge => (format!("an exponent in `{text}` is too large{place}"), "use a smaller exponent"),
     };

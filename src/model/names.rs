@@ -292,7 +292,7 @@ impl Names {
         }
         (1..tail.len()).filter(|at| tail.is_char_boundary(*at)).find_map(|at| {
             let first = self.good(tail[..at].trim_end_matches('_'))?;
-            let mut rest = self.split_goods(&tail[at..].trim_start_matches('_'), count - 1)?;
+            let mut rest = self.split_goods(tail[at..].trim_start_matches('_'), count - 1)?;
             rest.insert(0, first);
             Some(rest)
         })

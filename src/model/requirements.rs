@@ -23,6 +23,8 @@ pub(super) enum Need {
     AboveBranchPoint,
     /// Not zero, being a divisor.
     NonZero,
+    /// Not zero, being the argument of Ei.
+    NonZeroArgument,
 }
 
 /// A formula of which something is needed, under an environment of goods.
@@ -120,7 +122,7 @@ impl<'s> Survey<'s> {
             NodeKind::Call(function @ (Function::Ln | Function::Sqrt), argument) => {
                 (argument, Need::Positive(*function))
             }
-            NodeKind::Call(Function::Ei, argument) => (argument, Need::NonZero),
+            NodeKind::Call(Function::Ei, argument) => (argument, Need::NonZeroArgument),
             NodeKind::Call(Function::LambertW, argument) => (argument, Need::AboveBranchPoint),
             NodeKind::Power(base, exponent) => match literal(exponent) {
                 Some(number) if !number.is_integer() => (base, Need::Positive(Function::Sqrt)),

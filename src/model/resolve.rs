@@ -161,15 +161,15 @@ impl<'a> Resolver<'a> {
     }
 
     fn unknown_index(&self, index: &Index, span: Span) -> Diagnostic {
-        match index {
-            Index::Name(name) if !self.names.goods_named => {
-                let message = Diagnostic::error(span, format!("the index `{name}` is not bound here"));
-                match self.scope.last() {
-                    Some(bound) => message.remedy(format!("sum over it, or write `{bound}`")),
-                    None => message.remedy(format!("sum over it: `sum over {name} of (…)`")),
-                }
-            }
-            _ => unknown_good(self.names, index, span),
+        let Index::Name(name) = index else { return unknown_good(self.names, index, span) };
+        let goods = self.names.goods.iter().map(String::as_str);
+        if self.names.goods.is_empty() || crate::language::nearest(name, goods).is_some() {
+            return unknown_good(self.names, index, span);
+        }
+        let message = Diagnostic::error(span, format!("`{name}` is neither a good nor an index here"));
+        match self.scope.last() {
+            Some(bound) => message.remedy(format!("write `{bound}`, or sum over it: `sum over {name} of (…)`")),
+            None => message.remedy(format!("sum over it: `sum over {name} of (…)`")),
         }
     }
 

@@ -18,6 +18,8 @@ use super::exact::Values;
 #[derive(Clone)]
 pub(super) struct Constraint {
     pub element: Element,
+    /// The element with short sums put back, for bounds.
+    open: Element,
     pub relation: Relation,
     /// The symbols that it is built from.
     pub symbols: Vec<Var>,
@@ -25,13 +27,17 @@ pub(super) struct Constraint {
     pub linear: Option<(BTreeMap<Var, Rational>, Rational)>,
 }
 
+/// Elements with more terms are not expanded to find bounds.
+const MOST_OPENED: usize = 100;
+
 impl Constraint {
     /// The constraint that the element stands in the relation to zero.
     pub fn new(field: &Field, element: &Element, relation: Relation) -> Constraint {
         let element = field.current(element);
         let symbols = field.symbols_of(&element);
-        let linear = linear(field, &element).filter(|_| relation != Relation::NonZero);
-        Constraint { element, relation, symbols, linear }
+        let open = if element.len() <= MOST_OPENED { field.expand(&element) } else { element.clone() };
+        let linear = linear(field, &open).filter(|_| relation != Relation::NonZero);
+        Constraint { element, open, relation, symbols, linear }
     }
 
     /// All constraints that the model itself states.
@@ -67,7 +73,7 @@ impl Constraint {
 
     /// The bound on one symbol when all others have values, if the constraint is linear in it.
     pub fn bound_on(&self, field: &Field, var: Var, point: &Point) -> Option<Bound> {
-        let e = &self.element;
+        let e = &self.open;
         if self.relation == Relation::NonZero || e.degree(var) != 1 || e.low_degree(var) != 0 {
             return None;
         }
@@ -146,9 +152,9 @@ impl Range {
 
     /// Narrows the range.
     pub fn narrow(&mut self, bound: &Bound) {
-        let (side, tighter): (&mut Option<Rational>, fn(&Rational, &Rational) -> bool) =
-            if bound.is_upper { (&mut self.high, |new, old| new < old) } else { (&mut self.low, |new, old| new > old) };
-        if side.as_ref().is_none_or(|old| tighter(&bound.value, old)) {
+        let side = if bound.is_upper { &mut self.high } else { &mut self.low };
+        let tighter = |old: &Rational| if bound.is_upper { bound.value < *old } else { bound.value > *old };
+        if side.as_ref().is_none_or(tighter) {
             *side = Some(bound.value.clone());
             self.closed = !bound.strict;
         }

@@ -72,7 +72,7 @@ impl Recipe {
             return Some(Recipe { parameters: Spread::Random, prices: Level::Random, round });
         }
         let round = round - RANDOM_ROUNDS;
-        let spread = if round % 2 == 0 { Spread::Nice } else { Spread::Extreme };
+        let spread = if round.is_multiple_of(2) { Spread::Nice } else { Spread::Extreme };
         (round < EXTREME_ROUNDS).then_some(Recipe { parameters: spread, prices: Level::Extreme, round })
     }
 }
