@@ -5,6 +5,7 @@ use std::collections::BTreeMap;
 use rustc_hash::FxHashMap;
 
 use super::field::Field;
+use super::formula::Formula;
 use super::generator::{Base, Blocked, Built, Element, Kind, Role, Special};
 use super::interval::Interval;
 use super::monomial::Var;
@@ -14,6 +15,29 @@ use super::polynomial::Poly;
 /// Rational values for declared symbols.
 pub type Point = BTreeMap<Var, Rational>;
 
+/// A number, exactly: an element without symbols, of a field of its own.
+pub struct Constant {
+    field: Field,
+    element: Element,
+}
+
+impl Constant {
+    /// The number, if it is rational.
+    pub fn as_rational(&self) -> Option<Rational> {
+        self.element.as_constant()
+    }
+
+    /// The number as a formula.
+    pub fn formula(&self) -> Formula {
+        self.field.formula(&self.element)
+    }
+
+    /// An enclosure of the number.
+    pub fn enclose(&self, bits: u32) -> Option<Interval> {
+        self.field.enclose(&self.element, &Point::new(), bits)
+    }
+}
+
 impl Field {
     /// The element with elements put in for symbols; every generator is built anew, so that 1/(1 − s) at s = 1 fails
     /// and p^s at s = 2 is p².
@@ -22,10 +46,17 @@ impl Field {
         self.rebuild(&self.current(e), &mut known)
     }
 
-    /// The exact value at a point, as an element without the symbols of the point.
-    pub fn value_at(&self, e: &Element, at: &Point) -> Built {
-        let with: Vec<(Var, Element)> = at.iter().map(|(v, q)| (*v, Poly::constant(q))).collect();
-        Ok(self.reduce(&self.substitute(e, &with)?))
+    /// The exact value at a point that gives every symbol of e a value. It lives in a field of its own, so that the
+    /// constants of one point (√2, e^(1/3)) burden no other.
+    ///
+    /// # Errors
+    /// Where e is not defined at the point, or not known to be.
+    pub fn value_at(&self, e: &Element, at: &Point) -> Result<Constant, Blocked> {
+        let field = Field::new();
+        let symbol = |var: Var| at.get(&var).map(Poly::constant);
+        let element = field.import_element(self, &self.current(e), &symbol, &mut FxHashMap::default())?;
+        let element = field.reduce(&element);
+        Ok(Constant { field, element })
     }
 
     fn rebuild(&self, e: &Element, known: &mut FxHashMap<Var, Element>) -> Built {
@@ -70,14 +101,15 @@ impl Field {
     /// An element of another field, built anew in this one; `symbol` says what a declared name of the other field is
     /// here. Fails with the first name that is not known.
     pub fn import(&self, other: &Field, e: &Element, symbol: &dyn Fn(&str) -> Option<Element>) -> Built {
-        self.import_element(other, &other.current(e), symbol, &mut FxHashMap::default())
+        let by_name = |var: Var| other.name(var).and_then(|name| symbol(&name));
+        self.import_element(other, &other.current(e), &by_name, &mut FxHashMap::default())
     }
 
     fn import_element(
         &self,
         other: &Field,
         e: &Element,
-        symbol: &dyn Fn(&str) -> Option<Element>,
+        symbol: &dyn Fn(Var) -> Option<Element>,
         known: &mut FxHashMap<Var, Element>,
     ) -> Built {
         let mut parts = Vec::with_capacity(e.len());
@@ -101,12 +133,12 @@ impl Field {
         &self,
         other: &Field,
         var: Var,
-        symbol: &dyn Fn(&str) -> Option<Element>,
+        symbol: &dyn Fn(Var) -> Option<Element>,
         known: &mut FxHashMap<Var, Element>,
     ) -> Built {
         match &*other.kind(var) {
             Kind::Symbol(Role::Pi) => Ok(self.pi()),
-            Kind::Symbol(_) => other.name(var).and_then(|name| symbol(&name)).ok_or(Blocked::UnknownSymbol),
+            Kind::Symbol(_) => symbol(var).ok_or(Blocked::UnknownSymbol),
             Kind::Ln(Base::Number(n)) => self.ln(&Poly::constant(&Rational::from_integer(n.clone()))),
             Kind::Ln(Base::Var(base)) => self.ln(&self.import_element(other, &Poly::var(*base), symbol, known)?),
             Kind::Ln(Base::Sum(value)) => self.ln(&self.import_element(other, value, symbol, known)?),

@@ -3,14 +3,16 @@
 //! Every answer other than `Unknown` is a consequence of the facts: of factors with known signs, of terms with one
 //! sign, or of an identity f = Σ λₖ μₖ gₖ + (terms of one sign) with λₖ > 0 rational, μₖ positive monomials and gₖ facts.
 
+use std::cmp::Ordering;
 use std::rc::Rc;
 
 use num_traits::Signed;
 
 use super::budget;
+use super::evaluation::Point;
 use super::factor::factor;
 use super::field::{Fact, Field, Relation};
-use super::generator::{Base, Element, Kind, Special};
+use super::generator::{Base, Element, Kind, Role, Special};
 use super::monomial::{Monomial, Var};
 use super::number::Rational;
 use super::polynomial::Poly;
@@ -80,6 +82,9 @@ impl Field {
         if visible != Sign::Unknown {
             return visible;
         }
+        if let Some(sign) = self.number_sign(&e) {
+            return sign;
+        }
         if !self.has_sums(&e) {
             return self.polynomial_sign(&e);
         }
@@ -87,6 +92,23 @@ impl Field {
         let below =
             denominator.iter().fold(Sign::Positive, |s, (v, k)| s.times(self.variable_sign(*v).to_power(*k as i32)));
         self.polynomial_sign(&numerator).times(below)
+    }
+
+    /// The sign of an element without symbols, from an enclosure.
+    fn number_sign(&self, e: &Element) -> Option<Sign> {
+        if !e.vars().into_iter().all(|v| self.is_number(v)) {
+            return None;
+        }
+        [64, 192].into_iter().find_map(|bits| match self.enclose(e, &Point::new(), bits)?.sign()? {
+            Ordering::Greater => Some(Sign::Positive),
+            Ordering::Less => Some(Sign::Negative),
+            Ordering::Equal => Some(Sign::Zero),
+        })
+    }
+
+    /// Whether a variable is built from no symbol but π.
+    fn is_number(&self, var: Var) -> bool {
+        self.support(var).iter().all(|v| !matches!(*self.kind(*v), Kind::Symbol(role) if role != Role::Pi))
     }
 
     fn monomial_sign(&self, monomial: &Monomial) -> Sign {

@@ -6,12 +6,12 @@ use std::rc::Rc;
 use num_traits::{Signed, Zero};
 
 use crate::algebra::budget;
-use crate::algebra::evaluation::Point;
+use crate::algebra::evaluation::{Constant, Point};
 use crate::algebra::field::{Field, Relation};
+use crate::algebra::formula::Formula;
 use crate::algebra::generator::Element;
 use crate::algebra::interval::Interval;
 use crate::algebra::number::{Rational, rational};
-use crate::algebra::polynomial::Poly;
 
 use super::claim::{Balanced, Bounded, Equation, Identities, Label, Matrix, Semidefinite, SemidefiniteAt};
 use super::derivation::{Proved, Refuted, Rule, Statement};
@@ -30,8 +30,8 @@ pub enum Value {
     Exact(Rational),
     /// A number with logarithms, powers or roots.
     Enclosed {
-        /// The number, as an element without symbols where the field could write it so.
-        formula: Option<Element>,
+        /// The number as a formula, where the field could write it so.
+        formula: Option<Formula>,
         /// A lower bound.
         from: Rational,
         /// An upper bound.
@@ -208,10 +208,11 @@ pub fn exact_value(field: &Field, e: &Element, point: &Point) -> Option<Value> {
         }
     }
     let bounds = bounds?;
-    let formula = budget::attempt(EXACT_WORK, || field.value_at(e, point).ok()).ok().flatten();
-    if let Some(q) = formula.as_ref().and_then(Poly::as_constant) {
+    let exact = budget::attempt(EXACT_WORK, || field.value_at(e, point).ok()).ok().flatten();
+    if let Some(q) = exact.as_ref().and_then(Constant::as_rational) {
         return Some(Value::Exact(q));
     }
+    let formula = exact.map(|number| number.formula());
     Some(Value::Enclosed { formula, from: bounds.lo_rational(), to: bounds.hi_rational() })
 }
 
