@@ -1,2 +1,9 @@
 //! The command line.
-fn main() {}
+
+mod command;
+
+use std::process::ExitCode;
+
+fn main() -> ExitCode {
+    command::main()
+}

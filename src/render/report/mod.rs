@@ -1,0 +1,14 @@
+//! What a run found, as a document: the answer of one screen, and the appendix.
+
+mod conditions;
+mod derivation;
+mod preferences;
+mod recovery;
+mod system;
+mod verdicts;
+mod words;
+mod working;
+mod written;
+
+pub use derivation::derivation;
+pub use verdicts::answer;

@@ -1,0 +1,152 @@
+//! The recovery, step by step: the income variable, the equations that it makes linear, their solution, the check.
+
+use crate::algebra::generator::Element;
+use crate::proof::StepId;
+use crate::recovery::{Preferences, Recovered, Working};
+use crate::render::document::{Block, Equation, Inline};
+use crate::render::expression::Expression;
+use crate::render::notation::Notation;
+use crate::render::report::derivation::{heading, logarithm, paragraph};
+use crate::render::report::preferences;
+use crate::render::report::words::{equation, listed, text};
+use crate::render::report::working::{Scribe, sum};
+
+/// The sections on preferences and on the check back.
+pub fn sections(scribe: &Scribe<'_>, recovered: &Recovered) -> Vec<Block> {
+    let mut blocks = vec![heading("Preferences")];
+    match recovered {
+        Recovered::NotFound { reason, existence } => {
+            if *existence {
+                blocks.push(paragraph(
+                    "Since the Slutsky matrix is symmetric, preferences exist locally, around each point of the domain.",
+                ));
+            }
+            blocks.push(paragraph(format!("No closed form was found: {reason}.")));
+        }
+        Recovered::Found(found) => {
+            blocks.extend(steps(scribe.notation, &found.working));
+            blocks.extend(preferences::summary(scribe.notation, found));
+            blocks.extend(preferences::further(scribe.notation, found));
+            blocks.extend(check(scribe, found));
+        }
+    }
+    blocks
+}
+
+fn steps(notation: &Notation<'_>, working: &Working) -> Vec<Block> {
+    let mut blocks = Vec::new();
+    let mut words = vec![text("Expenditure at a given utility satisfies ")];
+    words.push(equation(
+        Expression::partial(notation.expenditure_letter(), notation.price_letter("i")),
+        Expression::from(notation.quantity_letter().at("i")),
+    ));
+    words.push(text(" with income replaced by expenditure."));
+    if !working.functions.is_empty() {
+        let functions: Vec<Vec<Inline>> =
+            working.functions.iter().map(|f| vec![Inline::math(notation.element(f))]).collect();
+        words.push(text(" As functions of income, the demands are combinations of "));
+        words.extend(listed(functions, " and "));
+        words.push(text("."));
+    }
+    let income = working.income.map_or_else(|| notation.income(), |var| notation.variable(var));
+    if let Some(coordinate) = &working.coordinate {
+        let of_income = sum(vec![
+            Expression::Product(vec![notation.element(&coordinate.scale), notation.income()]),
+            notation.element(&coordinate.shift),
+        ]);
+        words.extend([text(" In place of income, take "), equation(income.clone(), of_income), text(".")]);
+    }
+    let z = notation.element(&working.z);
+    let letter = if z == income { income } else { notation.transformed_income() };
+    if letter != z {
+        words.extend([text(" Put "), equation(letter.clone(), z), text(". Then")]);
+    } else {
+        words.push(text(" Thus"));
+    }
+    blocks.push(Block::Paragraph(words));
+    blocks.push(Block::Display(slopes(notation, working, &letter)));
+    blocks.extend(solution(notation, working, &letter));
+    blocks
+}
+
+/// The most goods for which the equations are written out.
+const MOST_GOODS: usize = 6;
+
+/// ∂z/∂p_i = a_i + b_i z + c_i z².
+fn slopes(notation: &Notation<'_>, working: &Working, z: &Expression) -> Vec<Equation> {
+    let goods = working.forms.first().map_or(0, Vec::len).min(MOST_GOODS);
+    let power = |k: usize| match k {
+        0 => None,
+        1 => Some(z.clone()),
+        _ => Some(super::working::square(z.clone())),
+    };
+    (0..goods)
+        .map(|good| {
+            let terms = working.forms.iter().enumerate().filter_map(|(k, form)| {
+                let coefficient = form.get(good).filter(|e| !e.is_zero())?;
+                Some(times(notation, coefficient, power(k)))
+            });
+            Equation::equal(Expression::partial(z.clone(), notation.price(good)), sum(terms.collect()))
+        })
+        .collect()
+}
+
+fn times(notation: &Notation<'_>, coefficient: &Element, power: Option<Expression>) -> Expression {
+    let value = notation.element(coefficient);
+    match (power, value) {
+        (None, value) => value,
+        (Some(power), value) if coefficient.is_one() => {
+            let _ = value;
+            power
+        }
+        (Some(power), Expression::Negative(inner)) => Expression::negative(Expression::Product(vec![*inner, power])),
+        (Some(power), value) => Expression::Product(vec![value, power]),
+    }
+}
+
+fn solution(notation: &Notation<'_>, working: &Working, z: &Expression) -> Vec<Block> {
+    let mut blocks = Vec::new();
+    let u = notation.utility();
+    let solved = match (&working.factor, &working.base) {
+        (Some(factor), Some(base)) => {
+            blocks.push(paragraph(
+                "These equations are linear, and their integrability conditions hold. With the constant of integration \
+                 for the utility level, they are solved by",
+            ));
+            let product = times(notation, factor, Some(u));
+            if base.is_zero() { product } else { sum(vec![notation.element(base), product]) }
+        }
+        (Some(index), None) => {
+            blocks.push(paragraph(
+                "The right-hand sides do not depend on income, and are the slopes of one function. With the logarithm of \
+                 the utility level for the constant of integration,",
+            ));
+            sum(vec![logarithm(notation.element(index)), logarithm(u)])
+        }
+        _ => return blocks,
+    };
+    blocks.push(Block::Display(vec![Equation::equal(z.clone(), solved)]));
+    blocks.push(paragraph("Solved for the utility level and for income, this gives"));
+    blocks
+}
+
+fn check(scribe: &Scribe<'_>, found: &Preferences) -> Vec<Block> {
+    let steps = found.steps.iter().flat_map(|id| identity(scribe, *id));
+    std::iter::once(heading("Check")).chain(steps).collect()
+}
+
+/// One of the identities that the preferences were put to.
+fn identity(scribe: &Scribe<'_>, id: StepId) -> Vec<Block> {
+    let Some(step) = scribe.derivation.step(id) else { return Vec::new() };
+    let notation = scribe.notation;
+    let words = match step.subject() {
+        "Roy's identity" => "Roy's identity holds:",
+        "Shephard's lemma" => "Shephard's lemma holds:",
+        _ => {
+            let inverse = equation(notation.expenditure_at_indirect_utility(), notation.income());
+            let words = text("Expenditure and indirect utility are inverse to each other: ");
+            return vec![Block::Paragraph(vec![words, inverse, text(".")])];
+        }
+    };
+    std::iter::once(paragraph(words)).chain(scribe.step(id)).collect()
+}

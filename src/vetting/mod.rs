@@ -1,0 +1,178 @@
+//! One run over a model: what was asked, what was found, and what ended before it was done.
+//!
+//! Each part of the work runs within its own limits. A part that runs out leaves what the others found as it is.
+
+pub mod appendix;
+
+use std::rc::Rc;
+use std::time::{Duration, Instant};
+
+use crate::algebra::budget::{self, Limits, Stopped};
+use crate::conditions::{self, ClaimFinding, Condition, Finding, Verdict};
+use crate::model::Model;
+use crate::proof::{Derivation, Prover};
+use crate::recovery::{self, Recovered};
+
+/// A part of the work that can be asked for by itself.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum Part {
+    /// One of the conditions.
+    Condition(Condition),
+    /// The preferences.
+    Recovery,
+    /// The author's claims.
+    Claims,
+}
+
+impl Part {
+    /// All parts, in the order in which they are worked.
+    pub const ALL: [Part; 6] = [
+        Part::Condition(Condition::Homogeneity),
+        Part::Condition(Condition::AddingUp),
+        Part::Condition(Condition::Symmetry),
+        Part::Condition(Condition::Curvature),
+        Part::Recovery,
+        Part::Claims,
+    ];
+
+    /// The word for it, as on the command line.
+    pub fn word(self) -> &'static str {
+        match self {
+            Part::Condition(Condition::Homogeneity) => "homogeneity",
+            Part::Condition(Condition::AddingUp) => "adding-up",
+            Part::Condition(Condition::Symmetry) => "symmetry",
+            Part::Condition(Condition::Curvature) => "curvature",
+            Part::Recovery => "recovery",
+            Part::Claims => "claims",
+        }
+    }
+}
+
+/// What a run may use for one model. The work is counted for each part, so that the same input ends the same way on
+/// every machine; the clock and the memory are the outer guard, over all parts together.
+#[derive(Clone, Copy, Debug)]
+pub struct Allowance {
+    /// Units of work for each part.
+    pub work: u64,
+    /// Wall-clock time for the model.
+    pub time: Duration,
+    /// Resident memory, in MiB.
+    pub memory_mib: u64,
+}
+
+impl Default for Allowance {
+    fn default() -> Allowance {
+        Allowance { work: 20_000_000_000, time: Duration::from_secs(60), memory_mib: 4096 }
+    }
+}
+
+/// What a run found.
+pub struct Vetting {
+    /// The model.
+    pub model: Rc<Model>,
+    /// The parts that were asked for.
+    pub asked: Vec<Part>,
+    /// A finding for each condition that was asked for and makes sense for the model.
+    pub findings: Vec<Finding>,
+    /// The preferences, or why there are none; `None` where they were not asked for, or the model has no demands.
+    pub recovered: Option<Recovered>,
+    /// A finding for each claim.
+    pub claims: Vec<ClaimFinding>,
+    /// The parts that ran out of their limits.
+    pub stops: Vec<(Part, Stopped)>,
+    /// Every step that established something.
+    pub derivation: Derivation,
+    /// The time that each part took.
+    pub timings: Vec<(Part, Duration)>,
+}
+
+impl Vetting {
+    /// The finding on a condition.
+    pub fn finding(&self, condition: Condition) -> Option<&Finding> {
+        self.findings.iter().find(|finding| finding.condition == condition)
+    }
+
+    /// All verdicts that were asked for, on conditions and claims.
+    pub fn verdicts(&self) -> impl Iterator<Item = Verdict> + '_ {
+        let claims = self.claims.iter().map(|claim| claim.verdict);
+        self.findings.iter().map(|finding| finding.verdict).chain(claims)
+    }
+}
+
+/// Works the parts that are asked for.
+pub fn vet(model: Rc<Model>, asked: &[Part], allowance: Allowance) -> Vetting {
+    let mut run =
+        Run { end: Instant::now().checked_add(allowance.time), allowance, stops: Vec::new(), timings: Vec::new() };
+    let mut prover = Prover::new(&model.field);
+    let mut findings = Vec::new();
+    for condition in conditions_in_order(asked, &model) {
+        let part = Part::Condition(condition);
+        let found = run.part(part, || conditions::examine(condition, &model, &mut prover, &findings));
+        findings.push(found.unwrap_or_else(|stopped| Finding::undecided(condition, stopped.describe())));
+    }
+    let mut recovered = None;
+    if asked.contains(&Part::Recovery) && !model.demands.is_empty() {
+        let found = run.part(Part::Recovery, || recover(&model, &mut prover, &findings));
+        recovered = Some(found.unwrap_or_else(|stopped| not_found(stopped.describe())));
+    }
+    let mut claims = Vec::new();
+    if asked.contains(&Part::Claims) {
+        for claim in &model.claims {
+            let found = run.part(Part::Claims, || conditions::examine_claim(&model, claim, &mut prover));
+            claims.push(found.unwrap_or_else(|stopped| ClaimFinding::undecided(stopped.describe())));
+        }
+    }
+    let derivation = prover.into_derivation();
+    let Run { stops, timings, .. } = run;
+    Vetting { asked: asked.to_vec(), findings, recovered, claims, stops, derivation, timings, model }
+}
+
+/// The preferences, unless the Slutsky matrix is known not to be symmetric.
+fn recover(model: &Model, prover: &mut Prover<'_>, findings: &[Finding]) -> Recovered {
+    let symmetry = findings.iter().find(|finding| finding.condition == Condition::Symmetry).map(|found| found.verdict);
+    match symmetry {
+        Some(Verdict::Refuted) => not_found("the Slutsky matrix is not symmetric, so there are none"),
+        Some(Verdict::Conditional) => not_found("the Slutsky matrix is symmetric only under the restrictions above"),
+        _ => match recovery::recover(model, prover) {
+            Recovered::NotFound { reason, existence } => {
+                Recovered::NotFound { reason, existence: existence && symmetry == Some(Verdict::Proven) }
+            }
+            found => found,
+        },
+    }
+}
+
+fn not_found(reason: &str) -> Recovered {
+    Recovered::NotFound { reason: reason.to_string(), existence: false }
+}
+
+fn conditions_in_order<'a>(asked: &'a [Part], model: &'a Model) -> impl Iterator<Item = Condition> + 'a {
+    Part::ALL.into_iter().filter(|part| asked.contains(part)).filter_map(|part| match part {
+        Part::Condition(condition) if conditions::applies(condition, model) => Some(condition),
+        _ => None,
+    })
+}
+
+/// The limits of a run, and the account of it.
+struct Run {
+    end: Option<Instant>,
+    allowance: Allowance,
+    stops: Vec<(Part, Stopped)>,
+    timings: Vec<(Part, Duration)>,
+}
+
+impl Run {
+    fn part<T>(&mut self, part: Part, work: impl FnOnce() -> T) -> Result<T, Stopped> {
+        let start = Instant::now();
+        let left = self.end.map_or(Duration::MAX, |end| end.saturating_duration_since(start));
+        let outcome = budget::within(Limits::new(self.allowance.work, left, self.allowance.memory_mib), work);
+        match self.timings.iter_mut().find(|(known, _)| *known == part) {
+            Some((_, total)) => *total += start.elapsed(),
+            None => self.timings.push((part, start.elapsed())),
+        }
+        if let Err(stopped) = outcome {
+            self.stops.push((part, stopped));
+        }
+        outcome
+    }
+}
