@@ -313,7 +313,7 @@ fn points_satisfy_what_is_assumed_and_give_every_name_a_value() {
         assert!(at("m") > committed);
         assert!(at("s") >= rational(1, 4) && at("s") < rational(1, 1) && at("s") != rational(1, 2));
         for quantity in &quantities {
-            assert!(model.field.value_at(quantity, point).unwrap().as_constant().unwrap() > rational(0, 1));
+            assert!(model.field.value_at(quantity, point).unwrap().as_rational().unwrap() > rational(0, 1));
         }
     }
     let again: Vec<Point> = model.points().with_positive(&quantities).take(60).collect();

@@ -83,7 +83,7 @@ fn witness(model: &Model, condition: Condition, witness: &Witness) -> Json {
     let mut out = Map::new();
     out.insert("point".into(), json!(point(&model.field, &witness.point)));
     out.insert("where".into(), json!(place(model, condition, witness.place)));
-    out.insert("value".into(), value(&model.field, &witness.value));
+    out.insert("value".into(), value(&witness.value));
     if let Some(vector) = &witness.vector {
         out.insert("vector".into(), json!(vector.iter().map(ToString::to_string).collect::<Vec<_>>()));
     }
@@ -108,11 +108,11 @@ fn point(field: &Field, at: &Point) -> Map<String, Json> {
     at.iter().filter_map(coordinate).collect()
 }
 
-fn value(field: &Field, value: &Value) -> Json {
+fn value(value: &Value) -> Json {
     match value {
         Value::Exact(value) => json!(value.to_string()),
         Value::Enclosed { formula: exact, from, to } => json!({
-            "formula": exact.as_ref().map(|e| formula(field, e)),
+            "formula": exact.as_ref().map(plain),
             "from": from.to_string(),
             "to": to.to_string(),
         }),
@@ -169,7 +169,7 @@ fn case(model: &Model, case: &Case) -> Json {
 
 fn claim(model: &Model, claim: &Claim, finding: &ClaimFinding) -> Json {
     let witness = finding.witness.as_ref().map(|witness| {
-        json!({"point": point(&model.field, &witness.point), "where": "claim", "value": value(&model.field, &witness.value)})
+        json!({"point": point(&model.field, &witness.point), "where": "claim", "value": value(&witness.value)})
     });
     json!({
         "claim": claim.text,

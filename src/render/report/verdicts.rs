@@ -151,7 +151,7 @@ pub fn failure(notation: &Notation<'_>, condition: Condition, witness: &Witness)
         out.push(Inline::math(Expression::symbol("v")));
         out.push(text(format!(" = ({}), ", numbers.join(", "))));
     }
-    out.extend(value(notation, failing(notation, condition, witness.place), &witness.value));
+    out.extend(value(failing(notation, condition, witness.place), &witness.value));
     out
 }
 
@@ -244,7 +244,7 @@ pub fn claim_lines(notation: &Notation<'_>, vetting: &Vetting) -> Vec<VerdictLin
             note.push(text(" fails at "));
             note.extend(point(notation, &witness.point));
             note.push(text(": "));
-            note.extend(value(notation, Expression::symbol("left - right"), &witness.value));
+            note.extend(value(Expression::symbol("left - right"), &witness.value));
         }
         if let Some(reason) = &finding.reason {
             note.push(text(format!(": {reason}")));

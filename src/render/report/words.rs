@@ -85,7 +85,7 @@ pub fn declared(model: &Model) -> Vec<Var> {
 }
 
 /// `left = value`; where the value is not rational, its formula if that is short, and bounds.
-pub fn value(notation: &Notation<'_>, left: impl Into<Expression>, value: &Value) -> Vec<Inline> {
+pub fn value(left: impl Into<Expression>, value: &Value) -> Vec<Inline> {
     let left = left.into();
     match value {
         Value::Exact(value) => vec![equation(left, Expression::Number(value.clone()))],
@@ -93,7 +93,8 @@ pub fn value(notation: &Notation<'_>, left: impl Into<Expression>, value: &Value
             let bounds = Interval::from_rational(from, BITS).hull(&Interval::from_rational(to, BITS));
             let (low, high) = bounds.to_decimal_bounds(DIGITS);
             let between = text(format!(" between {low} and {high}"));
-            match formula.as_ref().and_then(|formula| short(notation, formula, SHORT_VALUE)) {
+            let exact = formula.as_ref().map(Expression::from);
+            match exact.filter(|exact| plain_expression(exact).len() <= SHORT_VALUE) {
                 Some(exact) => vec![equation(left, exact), text(", which lies"), between],
                 None => vec![Inline::math(left), text(" lies"), between],
             }
