@@ -277,7 +277,7 @@ impl Field {
         if exponent.as_constant() == Some(Rational::new(1.into(), 2.into())) {
             return Formula::call(Function::Sqrt, base);
         }
-        Formula::power(base, self.formula(exponent))
+        Formula::power(base, self.formula(&self.reduce(exponent)))
     }
 
     /// A single variable as a formula.
