@@ -120,13 +120,13 @@ impl Field {
     }
 
     /// Parameters alone first, then by how many prices and functions a term holds, then by declaration.
-    fn reading_order(&self, m: &Monomial) -> (i64, Vec<(u8, usize, i32)>) {
-        let moving = m.iter().filter(|(v, _)| !self.is_parameter(*v)).map(|(_, k)| i64::from(k.abs())).sum();
+    fn reading_order(&self, m: &Monomial) -> (usize, Vec<(u8, usize, i32)>) {
+        let moving = m.iter().filter(|(v, _)| !self.is_parameter(*v)).count();
         let mut vars: Vec<(u8, usize, i32)> = m
             .iter()
             .map(|(v, k)| {
                 let (class, index) = self.place(v);
-                (class, index, -k)
+                (class, index, k)
             })
             .collect();
         vars.sort_unstable();
