@@ -201,7 +201,7 @@ pub(super) fn for_income(recipe: &Recipe, power: u32, range: &Range, dice: &mut 
 /// Numbers a little and a lot above the lower end of a range that is open upwards.
 fn beyond(range: &Range) -> Vec<Rational> {
     match (&range.low, &range.high) {
-        (Some(low), None) if low.is_positive() => [(5, 4), (2, 1), (10, 1)]
+        (Some(low), None) if low.is_positive() && is_handy(low) => [(5, 4), (2, 1), (10, 1)]
             .into_iter()
             .map(|(n, d)| low * rational(n, d))
             .filter_map(|least| simplest_between(&least, &(&least * rational(9, 8))))
@@ -210,12 +210,21 @@ fn beyond(range: &Range) -> Vec<Rational> {
     }
 }
 
+/// Whether a number is short enough to look for fractions near it: e^(10⁶) is a number of a million digits.
+fn is_handy(q: &Rational) -> bool {
+    const MOST_BITS: u64 = 2048;
+    q.numer().bits().max(q.denom().bits()) <= MOST_BITS
+}
+
 /// Simple numbers inside a range with two ends, about the share of its length that falls to one symbol.
 fn between(range: &Range, turn: usize) -> Vec<Rational> {
     const PARTS: [Fraction; 4] = [(1, 1), (1, 2), (3, 2), (1, 5)];
     let (Some(low), Some(high)) = (&range.low, &range.high) else { return Vec::new() };
     if low == high && range.closed {
         return vec![low.clone()];
+    }
+    if !is_handy(low) || !is_handy(high) {
+        return Vec::new();
     }
     let length = high - low;
     if !length.is_positive() {
