@@ -149,7 +149,10 @@ impl Field {
         }
         let by_value = |value: &Element, inverse: Element| {
             let moved = self.euler(value, scale);
-            if self.is_zero(&moved) { Poly::zero() } else { self.product(&self.as_multiple(&moved, value), &inverse) }
+            if self.is_zero(&moved) {
+                return Poly::zero();
+            }
+            self.product(&self.as_multiple(&moved, value), &inverse)
         };
         match &*self.kind(var) {
             Kind::Symbol(_) | Kind::Ln(Base::Number(_)) => Poly::zero(),
@@ -173,12 +176,15 @@ impl Field {
         }
     }
 
-    /// `e` as a multiple of the named sum with this value, where it is one.
+    /// `e` as a multiple of the named sum with this value, where it is one; else as short as it is.
     fn as_multiple(&self, e: &Element, value: &Element) -> Element {
-        match self.expand(e).div_exact(&self.expand(value)) {
-            Some(ratio) => self.product(&ratio, &self.named(value, None)),
-            None => e.clone(),
+        let expanded = self.expand(e);
+        if expanded.len() >= value.len()
+            && let Some(ratio) = expanded.div_exact(&self.expand(value))
+        {
+            return self.product(&ratio, &self.named(value, None));
         }
+        if expanded.len() < e.len() { expanded } else { e.clone() }
     }
 
     fn variable_derivative(&self, var: Var, x: Var) -> Rc<Element> {

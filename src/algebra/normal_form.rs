@@ -21,10 +21,14 @@ impl Field {
     /// All named sums with a positive power put back, highest first; exponents of roots below N. Negative powers stay.
     pub fn expand(&self, e: &Element) -> Element {
         let mut e = self.current(e);
-        while let Some((var, value, root)) = self.highest_sum(&e) {
+        loop {
+            if let Some(next) = self.put_back_plain(&e) {
+                e = next;
+                continue;
+            }
+            let Some((var, value, root)) = self.highest_sum(&e) else { return e };
             e = put_back(&e, var, &value, root as i32);
         }
-        e
     }
 
     /// The named sum of highest level that occurs to its N-th or a higher power.
