@@ -16,8 +16,10 @@ pub mod linear_solve;
 pub mod potential;
 pub mod power_log;
 pub mod proposal;
+pub mod riccati;
 pub mod search;
 pub mod span;
+pub mod symmetry_field;
 pub mod system;
 
 use crate::algebra::field::Field;

@@ -10,6 +10,7 @@ use super::check::{self, Established};
 use super::divisors::doubtful_divisors;
 use super::linear;
 use super::proposal::Proposal;
+use super::riccati;
 use super::span::{self, Span};
 use super::system::{Coordinate, System, coordinates};
 
@@ -31,18 +32,22 @@ const WORK_OF_ONE_ATTEMPT: u64 = 400_000_000;
 
 /// The first proposal that is proven, or the reason why there is none.
 pub fn search(system: &System, utility: Var, prover: &mut Prover<'_>) -> Result<Box<Preferences>, String> {
-    let all = coordinates(system);
-    for (coordinate, there) in all.iter().filter_map(|c| Some((c, in_coordinate(system, c)?))) {
-        let proposals = budget::attempt(WORK_OF_ONE_ATTEMPT, || linear_proposals(&there, utility)).unwrap_or_default();
-        for (method, proposal) in proposals {
-            let Some(proposal) = proposal.in_income(system, &there, coordinate) else { continue };
-            let proposal = proposal.turned(system.field, utility);
-            if let Some(established) = check::establish(system, &proposal, utility, prover) {
-                return Ok(Box::new(preferences(system, utility, method, proposal, established)));
+    let all: Vec<(Coordinate, System)> =
+        coordinates(system).into_iter().filter_map(|c| in_coordinate(system, &c).map(|there| (c, there))).collect();
+    let methods: [fn(&System, Var) -> Vec<(Method, Proposal)>; 2] = [linear_proposals, quadratic_proposals];
+    for method in methods {
+        for (coordinate, there) in &all {
+            let proposals = budget::attempt(WORK_OF_ONE_ATTEMPT, || method(there, utility)).unwrap_or_default();
+            for (method, proposal) in proposals {
+                let Some(proposal) = proposal.in_income(system, there, coordinate) else { continue };
+                let proposal = proposal.turned(system.field, utility);
+                if let Some(established) = check::establish(system, &proposal, utility, prover) {
+                    return Ok(Box::new(preferences(system, utility, method, proposal, established)));
+                }
             }
         }
     }
-    Err("no change of the income variable makes the system linear".to_string())
+    Err("no change of the income variable makes the system linear or quadratic".to_string())
 }
 
 fn in_coordinate<'f>(system: &System<'f>, coordinate: &Coordinate) -> Option<System<'f>> {
@@ -55,16 +60,28 @@ fn in_coordinate<'f>(system: &System<'f>, coordinate: &Coordinate) -> Option<Sys
 
 fn linear_proposals(system: &System, utility: Var) -> Vec<(Method, Proposal)> {
     let Some(span) = Span::of(system) else { return Vec::new() };
-    let mut found = Vec::new();
     for reduced in span::reductions(system, &span, 1) {
         let method = if reduced.lacks(1) { Method::Separable } else { Method::Linear };
-        if let Some(mut proposal) = linear::solve(system, &reduced, utility) {
-            proposal.working.functions = span.functions.clone();
-            found.push((method, proposal));
-            break;
+        if let Some(proposal) = linear::solve(system, &reduced, utility) {
+            return vec![(method, with_functions(proposal, &span))];
         }
     }
-    found
+    Vec::new()
+}
+
+fn quadratic_proposals(system: &System, utility: Var) -> Vec<(Method, Proposal)> {
+    let Some(span) = Span::of(system) else { return Vec::new() };
+    for reduced in span::reductions(system, &span, 2) {
+        if let Some(proposal) = riccati::solve(system, &reduced, utility) {
+            return vec![(Method::Riccati, with_functions(proposal, &span))];
+        }
+    }
+    Vec::new()
+}
+
+fn with_functions(mut proposal: Proposal, span: &Span) -> Proposal {
+    proposal.working.functions = span.functions.clone();
+    proposal
 }
 
 fn preferences(
