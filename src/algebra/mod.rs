@@ -14,6 +14,7 @@ pub mod formula;
 pub mod gcd;
 pub mod generator;
 pub mod interval;
+pub mod log_sign;
 pub mod logarithm;
 mod modular;
 pub mod monomial;

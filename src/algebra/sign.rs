@@ -174,13 +174,20 @@ impl Field {
         if stated != Sign::Unknown {
             return outside.times(stated);
         }
+        let logarithmic = self.logarithmic_sign(&split.part);
+        if logarithmic != Sign::Unknown {
+            return outside.times(logarithmic);
+        }
         let factored = factor(&split.part);
         if factored.factors.len() < 2 && factored.factors.iter().all(|(_, k)| *k == 1) {
             return Sign::Unknown;
         }
         factored.factors.iter().fold(outside.times(Sign::of(&factored.content)), |s, (part, k)| {
             let own = match self.terms_sign(part) {
-                Sign::Unknown => self.from_facts(part),
+                Sign::Unknown => match self.from_facts(part) {
+                    Sign::Unknown => self.logarithmic_sign(part),
+                    known => known,
+                },
                 known => known,
             };
             s.times(own.to_power(*k as i32))

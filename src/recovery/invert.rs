@@ -20,18 +20,23 @@ pub struct Inverse {
     pub value: Element,
     /// What is positive because it equals something positive in y.
     pub positive: Vec<Element>,
+    /// The value in summands, as long as it is what was given.
+    summands: Vec<Element>,
 }
 
-/// Solves φ(y) = Z for y where φ is built by one generator at a time, or linear over linear in one of them.
-pub fn solve(field: &Field, phi: &Element, y: Var, target: &Element) -> Option<Inverse> {
+/// Solves φ(y) = Z for y where φ is built by one generator at a time, or linear over linear in one of them. Z is given
+/// in summands, whose exponentials are kept apart.
+pub fn solve(field: &Field, phi: &Element, y: Var, target: &[Element]) -> Option<Inverse> {
     let income = Moving::new(field, &[y]);
-    let mut inverse = Inverse { value: target.clone(), positive: Vec::new() };
+    let total = Poly::sum(target.iter().map(|e| field.current(e)).collect());
+    let mut inverse = Inverse { value: total, positive: Vec::new(), summands: target.to_vec() };
     let mut phi = field.reduce(phi);
     for _ in 0..8 {
         if phi == field.current(&Poly::var(y)) {
             return Some(inverse);
         }
         phi = step(&income, &phi, &mut inverse).or_else(|| product_of_logs(&income, &phi, &mut inverse))?;
+        inverse.summands = vec![inverse.value.clone()];
     }
     None
 }
@@ -53,7 +58,11 @@ fn step(income: &Moving, phi: &Element, inverse: &mut Inverse) -> Option<Element
     let target = field.current(&inverse.value);
     let lead = &coefficient(&above, own) - &field.product(&target, &coefficient(&below, own));
     let rest = &field.product(&target, &coefficient(&below, &one)) - &coefficient(&above, &one);
-    inverse.value = field.reduce(&field.quotient(&field.current(&rest), &field.current(&lead)).ok()?);
+    let value = field.reduce(&field.quotient(&field.current(&rest), &field.current(&lead)).ok()?);
+    if !field.is_zero(&(&value - &target)) {
+        inverse.summands = vec![value.clone()];
+    }
+    inverse.value = value;
     let mut factors = own.iter();
     match (factors.next(), factors.next()) {
         (Some((var, 1)), None) => inside(income, var, inverse),
@@ -87,7 +96,11 @@ fn inside(income: &Moving, own: Var, inverse: &mut Inverse) -> Option<Element> {
     match &*field.kind(own) {
         Kind::Symbol(_) => Some(Poly::var(own)),
         Kind::Ln(base) => {
-            inverse.value = field.exp(&target).ok()?;
+            inverse.value = Poly::one();
+            for summand in std::mem::take(&mut inverse.summands) {
+                let part = field.exp(&summand).ok()?;
+                inverse.value = field.product(&field.current(&inverse.value), &part);
+            }
             Some(match base {
                 Base::Sum(value) => field.reduce(value),
                 Base::Var(var) => field.current(&Poly::var(*var)),

@@ -42,7 +42,7 @@ pub fn affine(system: &System, reduced: &Reduced, factor: &Element, base: &Eleme
     let z = field.current(&reduced.z);
     let over = &z - &field.current(base);
     let v = field.quotient(&over, factor).ok();
-    let target = &field.product(&Poly::var(utility), factor) + &field.current(base);
+    let target = [field.current(base), field.product(&Poly::var(utility), factor)];
     let solved = invert::solve(field, &reduced.z, system.income, &target);
     let rising = field.sign(&reduced.slope).times(field.sign(factor));
     let working = Working {
@@ -52,7 +52,11 @@ pub fn affine(system: &System, reduced: &Reduced, factor: &Element, base: &Eleme
         base: Some(base.clone()),
         ..Working::default()
     };
-    proposal(v, solved, rising, working)
+    let mut found = proposal(v, solved, rising, working);
+    if base.is_zero() {
+        positive_product(field, &reduced.z, utility, &mut found);
+    }
+    found
 }
 
 /// v = exp(z/κ)/exp(A/κ) for z a logarithm (κ times a combination with integer coefficients).
@@ -66,7 +70,7 @@ fn multiplicative(system: &System, reduced: &Reduced, shift: &Potential, utility
     let index = shift.scaled(field, &field.inverse(&scale).ok()?).exponential(field).ok()?;
     let v = field.quotient(&product, &index).ok();
     let target = field.product(&Poly::var(utility), &index);
-    let solved = invert::solve(field, &product, system.income, &target);
+    let solved = invert::solve(field, &product, system.income, &[target]);
     let slope = field.reduce(&field.derivative(&product, system.income));
     let rising = field.sign(&slope).times(field.sign(&index));
     let working = Working {

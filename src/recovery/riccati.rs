@@ -67,9 +67,8 @@ fn in_sight(system: &System, reduced: &Reduced) -> Vec<Element> {
         let rest = terms.get(&Monomial::one()).cloned().unwrap_or_default();
         if terms.len() <= 2
             && let Ok(zero) = field.quotient(&rest.neg().scale(&content), slope)
-            && !found.contains(&zero)
         {
-            found.push(zero);
+            found.push(field.reduce(&zero));
         }
     }
     found
@@ -134,7 +133,7 @@ fn from_particular(
     let v = &field.quotient(&field.current(&factor), &distance).ok()?.neg() - &field.current(&shift);
     let level = &Poly::var(utility) + &field.current(&shift);
     let gap = field.quotient(&factor, &level).ok()?;
-    let target = &field.current(particular) - &field.current(&gap);
+    let target = [field.current(particular), field.current(&gap).neg()];
     let solved = invert::solve(field, &reduced.z, system.income, &target);
     let (expenditure, positive) = match solved {
         Some(inverse) => (Some(inverse.value), inverse.positive),

@@ -61,7 +61,7 @@ fn in_coordinate<'f>(system: &System<'f>, coordinate: &Coordinate) -> Option<Sys
 fn linear_proposals(system: &System, utility: Var) -> Vec<(Method, Proposal)> {
     let Some(span) = Span::of(system) else { return Vec::new() };
     for reduced in span::reductions(system, &span, 1) {
-        let method = if reduced.lacks(1) { Method::Separable } else { Method::Linear };
+        let method = if reduced.lacks(1) || reduced.lacks(0) { Method::Separable } else { Method::Linear };
         if let Some(proposal) = linear::solve(system, &reduced, utility) {
             return vec![(method, with_functions(proposal, &span))];
         }

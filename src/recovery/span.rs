@@ -12,7 +12,7 @@ use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
 
 use super::fractions::Moving;
-use super::potential::potential;
+use super::potential::{Potential, potential};
 use super::system::System;
 
 /// xᵢ = Σₖ coefficients[k][i]·functions[k].
@@ -130,14 +130,31 @@ pub fn reductions(system: &System, span: &Span, degree: usize) -> Vec<Reduced> {
     let mut tried: Vec<Element> = Vec::new();
     let mut found = Vec::new();
     for candidate in slopes(&income, &span.functions) {
-        let Some((z, slope)) = coordinate(&income, &candidate) else { continue };
-        if tried.contains(&z) {
-            continue;
+        let integral = system.field.inverse(&candidate).ok().and_then(|slope| potential(&income, &[slope]));
+        let Some(integral) = integral else { continue };
+        match coordinate(&income, &integral) {
+            Some((z, slope)) if !tried.contains(&z) => {
+                tried.push(z.clone());
+                found.extend(reduce(&income, span, z, slope, degree));
+            }
+            Some(_) => {}
+            None => found.extend(exponential(&income, span, &integral)),
         }
-        tried.push(z.clone());
-        found.extend(reduce(&income, span, z, slope, degree));
     }
     found
+}
+
+/// With a single function g and z = ∫dy/g a logarithm of something of unknown sign: ζ = e^(z/κ), dζ = ζ Σ (Aᵢ/κ) dpᵢ.
+fn exponential(income: &Moving, span: &Span, integral: &Potential) -> Option<Reduced> {
+    let field = income.field;
+    let [column] = &span.coefficients[..] else { return None };
+    let (scale, _) = integral.logs.first()?;
+    let inverse = field.inverse(scale).ok()?;
+    let z = field.reduce(&integral.scaled(field, &inverse).exponential(field).ok()?);
+    let slope = field.reduce(&field.derivative(&z, *income.symbols.first()?));
+    let none = vec![Poly::zero(); column.len()];
+    let rates = column.iter().map(|e| field.reduce(&field.product(e, &inverse))).collect();
+    Some(Reduced { z, slope, coefficients: [none.clone(), rates, none] })
 }
 
 /// The candidates for g with dz/dy = 1/g.
@@ -164,11 +181,10 @@ fn slopes(income: &Moving, functions: &[Element]) -> Vec<Element> {
 }
 
 /// z = ∫ dy/g without constant factors whose sign is known, and dz/dy.
-fn coordinate(income: &Moving, g: &Element) -> Option<(Element, Element)> {
+fn coordinate(income: &Moving, integral: &Potential) -> Option<(Element, Element)> {
     let field = income.field;
     let y = *income.symbols.first()?;
-    let z = potential(income, &[field.inverse(g).ok()?])?.value(field).ok()?;
-    let z = field.reduce(&z);
+    let z = field.reduce(&integral.value(field).ok()?);
     let mut terms = income.collect(&income.clear(&z).numerator).into_iter();
     let z = match (terms.next(), terms.next()) {
         (Some((_, factor)), None) => without_known_factors(field, z, &factor),

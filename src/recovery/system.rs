@@ -119,6 +119,12 @@ pub fn coordinates(system: &System) -> Vec<Coordinate> {
             all.push(found);
         }
     }
+    if !seen.is_empty() {
+        let numeraires = system.prices.iter().filter_map(|p| field.inverse(&Poly::var(*p)).ok());
+        let more = numeraires.map(|scale| Coordinate { scale, shift: Poly::zero() });
+        let more: Vec<Coordinate> = more.filter(|c| !all.contains(c)).collect();
+        all.extend(more);
+    }
     all
 }
 
