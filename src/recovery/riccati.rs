@@ -30,7 +30,7 @@ fn particular_solution(system: &System, prices: &Moving, reduced: &Reduced) -> O
     let mut candidates = vec![Poly::zero()];
     candidates.extend(in_sight(system, reduced));
     candidates.extend(from_midpoints(prices, reduced));
-    let found = candidates.into_iter().find(|z| is_solution(prices, reduced, z));
+    let found = candidates.into_iter().map(|z| prices.field.reduce(&z)).find(|z| is_solution(prices, reduced, z));
     found.or_else(|| symmetry_field::particular_solution(prices, reduced))
 }
 
