@@ -197,10 +197,7 @@ fn is_tied(moving: &Moving, key: &Monomial, sum: Var) -> bool {
         if var == sum {
             return true;
         }
-        moving.symbols.iter().any(|symbol| {
-            let slope = moving.field.log_derivative(&Poly::var(var), *symbol);
-            moving.clear(&slope).denominator.contains_key(&sum)
-        })
+        moving.rates(var).is_some_and(|rates| rates.iter().any(|rate| rate.denominator.contains_key(&sum)))
     })
 }
 

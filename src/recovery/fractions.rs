@@ -2,6 +2,7 @@
 
 use std::cell::RefCell;
 use std::collections::BTreeMap;
+use std::rc::Rc;
 
 use num_traits::One;
 use rustc_hash::FxHashMap;
@@ -31,12 +32,35 @@ pub struct Moving<'a> {
     /// The moving symbols.
     pub symbols: Vec<Var>,
     known: RefCell<FxHashMap<Var, bool>>,
+    rates: RefCell<FxHashMap<Var, Rc<Vec<Cleared>>>>,
 }
 
 impl<'a> Moving<'a> {
     /// Computation with these moving symbols.
     pub fn new(field: &'a Field, symbols: &[Var]) -> Moving<'a> {
-        Moving { field, symbols: symbols.to_vec(), known: RefCell::default() }
+        Moving { field, symbols: symbols.to_vec(), known: RefCell::default(), rates: RefCell::default() }
+    }
+
+    /// θᵢv/v for each moving symbol i, where θᵢ = pᵢ∂/∂pᵢ; remembered until [`Moving::forget`].
+    pub fn rates(&self, var: Var) -> Option<Rc<Vec<Cleared>>> {
+        if let Some(known) = self.rates.borrow().get(&var) {
+            return Some(known.clone());
+        }
+        let mut rates = Vec::with_capacity(self.symbols.len());
+        let itself = Poly::var(var);
+        for symbol in &self.symbols {
+            let slope = self.field.log_derivative(&itself, *symbol);
+            let rate = if slope.is_zero() { slope } else { self.field.quotient(&slope, &itself).ok()? };
+            rates.push(self.clear(&rate));
+        }
+        let rates = Rc::new(rates);
+        self.rates.borrow_mut().insert(var, rates.clone());
+        Some(rates)
+    }
+
+    /// Forgets the rates: variables may have been retired since.
+    pub fn forget(&self) {
+        self.rates.borrow_mut().clear();
     }
 
     /// Whether the variable is built from a moving symbol.

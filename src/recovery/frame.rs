@@ -1,6 +1,7 @@
 //! A class of a one-form, and how the derivations θᵢ = pᵢ∂/∂pᵢ act on the variables that occur in it.
 
 use std::collections::{BTreeMap, BTreeSet};
+use std::rc::Rc;
 
 use crate::algebra::generator::{Base, Kind};
 use crate::algebra::monomial::Var;
@@ -65,7 +66,7 @@ impl<'a, 'f> Frame<'a, 'f> {
     pub fn new(moving: &'a Moving<'f>, class: &Class) -> Option<Frame<'a, 'f>> {
         let mut waiting: Vec<Var> = class.variables(moving).into_iter().collect();
         waiting.extend(class.denominator.keys());
-        let mut cleared: BTreeMap<Var, Vec<Cleared>> = BTreeMap::new();
+        let mut cleared: BTreeMap<Var, Rc<Vec<Cleared>>> = BTreeMap::new();
         let mut scale: BTreeMap<Var, u32> = class.denominator.keys().map(|v| (*v, 1)).collect();
         let mut mixing: BTreeSet<Var> = BTreeSet::new();
         while let Some(var) = waiting.pop() {
@@ -75,8 +76,8 @@ impl<'a, 'f> Frame<'a, 'f> {
             if cleared.len() > MOST_VARIABLES {
                 return None;
             }
-            let rates = rates_of(moving, var)?;
-            for rate in &rates {
+            let rates = moving.rates(var)?;
+            for rate in rates.iter() {
                 for (sum, power) in &rate.denominator {
                     let slot = scale.entry(*sum).or_insert(0);
                     *slot = (*slot).max(*power);
@@ -129,17 +130,4 @@ pub fn log_of_symbol(moving: &Moving, var: Var) -> Option<Var> {
         Kind::Ln(Base::Var(base)) if moving.symbols.contains(base) => Some(*base),
         _ => None,
     }
-}
-
-/// θᵢv/v for each i.
-fn rates_of(moving: &Moving, var: Var) -> Option<Vec<Cleared>> {
-    let field = moving.field;
-    let mut rates = Vec::with_capacity(moving.symbols.len());
-    for symbol in &moving.symbols {
-        let itself = Poly::var(var);
-        let slope = field.log_derivative(&itself, *symbol);
-        let rate = if slope.is_zero() { slope } else { field.quotient(&slope, &itself).ok()? };
-        rates.push(moving.clear(&rate));
-    }
-    Some(rates)
 }

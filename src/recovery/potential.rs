@@ -84,6 +84,7 @@ fn power_of_either_sign(field: &Field, base: &Element, exponent: &Element) -> Bu
 /// not closed or no potential is found in the class searched.
 pub fn potential(moving: &Moving, form: &[Element]) -> Option<Potential> {
     let field = moving.field;
+    moving.forget();
     let in_logs: Vec<Element> =
         moving.symbols.iter().zip(form).map(|(p, f)| field.product(&Poly::var(*p), f)).collect();
     let (numerators, denominator) = moving.over_one_denominator(&in_logs);
@@ -117,6 +118,10 @@ fn integrate(moving: &Moving, class: Class, total: &mut Potential) -> Option<()>
         return Some(());
     }
     let frame = Frame::new(moving, &class)?;
+    if let Some(whole) = power_log::integrate(&frame, &class) {
+        total.add(moving.field, whole);
+        return Some(());
+    }
     let parts = split(&frame, &class);
     if parts.len() > 1 {
         for part in parts {
@@ -124,11 +129,7 @@ fn integrate(moving: &Moving, class: Class, total: &mut Potential) -> Option<()>
         }
         return Some(());
     }
-    let part = match power_log::integrate(&frame, &class) {
-        Some(part) => part,
-        None => ansatz::integrate(&frame, &class)?,
-    };
-    total.add(moving.field, part);
+    total.add(moving.field, ansatz::integrate(&frame, &class)?);
     Some(())
 }
 

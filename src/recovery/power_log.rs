@@ -5,8 +5,6 @@
 
 use std::collections::BTreeMap;
 
-use num_traits::One;
-
 use crate::algebra::field::Field;
 use crate::algebra::generator::Element;
 use crate::algebra::monomial::{Monomial, Var};
@@ -87,9 +85,9 @@ fn by_degree(frame: &Frame, parts: &[Poly]) -> Option<Poly> {
 fn by_parts(frame: &Frame, parts: &[Poly], weights: &[Element], pivots: &mut Vec<Element>) -> Option<Poly> {
     let moving = frame.moving;
     let field = moving.field;
-    let index = (0..parts.len()).filter(|i| !weights[*i].is_zero()).min_by_key(|i| doubt(field, &weights[*i]))?;
+    let (index, certain) = surest(field, weights)?;
     let (weight, part) = (&weights[index], &parts[index]);
-    if doubt(field, weight).0 > 1 {
+    if !certain {
         pivots.push(weight.clone());
     }
     let logs = logs_of(frame, part)?;
@@ -108,13 +106,14 @@ fn by_parts(frame: &Frame, parts: &[Poly], weights: &[Element], pivots: &mut Vec
     Some(Poly::sum(total))
 }
 
-/// Numbers first, then what cannot vanish, then the rest; short before long.
-fn doubt(field: &Field, weight: &Element) -> (u8, usize) {
-    let class = match weight.as_constant() {
-        Some(q) if q.is_one() => 0,
-        Some(_) => 1,
-        None if field.sign(weight).excludes_zero() => 1,
-        None => 2,
-    };
-    (class, weight.len())
+/// How many signs are looked for.
+const SIGNS_TRIED: usize = 3;
+
+/// The weight to divide by, and whether it is known not to vanish: a number if there is one, else one of the shortest.
+fn surest(field: &Field, weights: &[Element]) -> Option<(usize, bool)> {
+    let mut order: Vec<usize> = (0..weights.len()).filter(|i| !weights[*i].is_zero()).collect();
+    order.sort_by_key(|i| (!weights[*i].is_constant(), !weights[*i].is_one(), weights[*i].len()));
+    let first = *order.first()?;
+    let certain = |i: &usize| weights[*i].is_constant() || field.sign(&weights[*i]).excludes_zero();
+    Some(order.iter().take(SIGNS_TRIED).find(|i| certain(i)).map_or((first, false), |i| (*i, true)))
 }
