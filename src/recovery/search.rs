@@ -27,6 +27,9 @@ pub enum Method {
     IntegratingFactor,
 }
 
+/// A method: its proposals for a system.
+type Propose = fn(&System, Var) -> Vec<(Method, Proposal)>;
+
 /// Units of work that one attempt may use.
 const WORK_OF_ONE_ATTEMPT: u64 = 400_000_000;
 
@@ -34,7 +37,7 @@ const WORK_OF_ONE_ATTEMPT: u64 = 400_000_000;
 pub fn search(system: &System, utility: Var, prover: &mut Prover<'_>) -> Result<Box<Preferences>, String> {
     let all: Vec<(Coordinate, System)> =
         coordinates(system).into_iter().filter_map(|c| in_coordinate(system, &c).map(|there| (c, there))).collect();
-    let methods: [fn(&System, Var) -> Vec<(Method, Proposal)>; 2] = [linear_proposals, quadratic_proposals];
+    let methods: [Propose; 2] = [linear_proposals, quadratic_proposals];
     for method in methods {
         for (coordinate, there) in &all {
             let proposals = budget::attempt(WORK_OF_ONE_ATTEMPT, || method(there, utility)).unwrap_or_default();
