@@ -5,52 +5,12 @@
 
 use std::collections::BTreeMap;
 
-use num_traits::{One, Zero};
-
 use crate::algebra::budget;
 use crate::algebra::field::Field;
 use crate::algebra::generator::{Element, Kind, Role};
 use crate::algebra::monomial::{Monomial, Var};
 use crate::algebra::number::Rational;
 use crate::algebra::polynomial::Poly;
-
-/// Σ cᵢ vᵢ + constant.
-#[derive(Clone, Debug, Default, PartialEq, Eq)]
-struct Linear {
-    terms: BTreeMap<Var, Rational>,
-    constant: Rational,
-}
-
-impl Linear {
-    /// The element as a linear form in parameters with rational coefficients, if it is one.
-    fn of(field: &Field, e: &Element) -> Option<Linear> {
-        let mut linear = Linear::default();
-        for (monomial, coefficient) in e.terms() {
-            let mut powers = monomial.iter();
-            match (powers.next(), powers.next()) {
-                (None, _) => linear.constant = coefficient,
-                (Some((var, 1)), None) if field.role(var) == Some(Role::Parameter) => {
-                    linear.terms.insert(var, coefficient);
-                }
-                _ => return None,
-            }
-        }
-        Some(linear)
-    }
-
-    /// Adds factor · other.
-    fn add(&mut self, other: &Linear, factor: &Rational) {
-        budget::spend(1 + other.terms.len() as u64);
-        self.constant += &other.constant * factor;
-        for (var, coefficient) in &other.terms {
-            let slot = self.terms.entry(*var).or_insert_with(Rational::zero);
-            *slot += coefficient * factor;
-            if slot.is_zero() {
-                self.terms.remove(var);
-            }
-        }
-    }
-}
 
 /// What a linear equation did.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -66,43 +26,65 @@ pub(super) enum Inserted {
 /// The linear equations so far, each solved for its last parameter.
 #[derive(Default)]
 pub(super) struct Elimination {
-    rows: BTreeMap<Var, Linear>,
+    rows: BTreeMap<Var, Element>,
 }
 
 impl Elimination {
-    /// Takes the equation e = 0.
+    /// Takes the equation e = 0. Linear in its length and in the lengths of the rows that bring it down.
     pub fn insert(&mut self, field: &Field, e: &Element) -> Inserted {
-        let Some(mut linear) = Linear::of(field, e) else { return Inserted::NotLinear };
-        while let Some((var, coefficient)) = linear.terms.last_key_value().map(|(v, c)| (*v, c.clone())) {
-            linear.terms.remove(&var);
+        if !is_linear(field, e) {
+            return Inserted::NotLinear;
+        }
+        let mut e = e.clone();
+        while let Some((var, coefficient)) = last_parameter(&e) {
+            budget::spend(1 + e.len() as u64);
+            let rest = &e - &Poly::term(&coefficient, Monomial::power(var, 1));
             match self.rows.get(&var) {
-                Some(row) => linear.add(row, &coefficient),
+                Some(row) => e = &rest + &row.scale(&coefficient),
                 None => {
-                    let mut row = Linear::default();
-                    row.add(&linear, &(-Rational::one() / coefficient));
-                    self.rows.insert(var, row);
+                    self.rows.insert(var, rest.scale(&-coefficient.recip()));
                     return Inserted::Consistent;
                 }
             }
         }
-        if linear.constant.is_zero() { Inserted::Consistent } else { Inserted::Contradiction }
+        if e.is_zero() { Inserted::Consistent } else { Inserted::Contradiction }
     }
 
     /// Every eliminated parameter with what stands for it, free of eliminated parameters.
     pub fn solved(self) -> Vec<(Var, Element)> {
         let mut done: Vec<(Var, Element)> = Vec::with_capacity(self.rows.len());
         for (var, row) in self.rows {
-            let mut parts = vec![Poly::constant(&row.constant)];
-            for (inner, coefficient) in &row.terms {
-                parts.push(match done.binary_search_by(|(known, _)| known.cmp(inner)) {
-                    Ok(found) => done[found].1.scale(coefficient),
-                    Err(_) => Poly::term(coefficient, Monomial::power(*inner, 1)),
-                });
-            }
-            done.push((var, Poly::sum(parts)));
+            let parts = row.terms().map(|(monomial, coefficient)| {
+                let inner = monomial.iter().next().map(|(inner, _)| inner);
+                let known = inner.and_then(|inner| done.binary_search_by(|(known, _)| known.cmp(&inner)).ok());
+                match known {
+                    Some(found) => done[found].1.scale(&coefficient),
+                    None => Poly::term(&coefficient, monomial.clone()),
+                }
+            });
+            let value = Poly::sum(parts.collect());
+            done.push((var, value));
         }
         done
     }
+}
+
+/// Whether the element is a linear form in parameters with rational coefficients.
+fn is_linear(field: &Field, e: &Element) -> bool {
+    e.raw_terms().iter().all(|(monomial, _)| {
+        let mut powers = monomial.iter();
+        match (powers.next(), powers.next()) {
+            (None, _) => true,
+            (Some((var, 1)), None) => field.role(var) == Some(Role::Parameter),
+            _ => false,
+        }
+    })
+}
+
+/// The parameter declared last in a linear form, with its coefficient.
+fn last_parameter(e: &Element) -> Option<(Var, Rational)> {
+    let parameters = e.terms().filter_map(|(monomial, coefficient)| Some((monomial.iter().next()?.0, coefficient)));
+    parameters.max_by_key(|(var, _)| *var)
 }
 
 /// Why an equation that is not linear could not be used.
