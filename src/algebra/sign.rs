@@ -23,6 +23,8 @@ pub use super::sign_rules::Sign;
 const MOST_TRIALS: u32 = 150;
 /// How many facts one identity may use.
 const MOST_FACTS: u32 = 5;
+/// The longest polynomial whose sign is looked for coefficient by coefficient.
+const MOST_TERMS: usize = 400;
 
 impl Field {
     /// Adds a fact about the domain. A product whose other factors have known signs becomes a fact about one factor.
@@ -179,19 +181,41 @@ impl Field {
             return outside.times(logarithmic);
         }
         let factored = factor(&split.part);
-        if factored.factors.len() < 2 && factored.factors.iter().all(|(_, k)| *k == 1) {
-            return Sign::Unknown;
-        }
         factored.factors.iter().fold(outside.times(Sign::of(&factored.content)), |s, (part, k)| {
             let own = match self.terms_sign(part) {
+                Sign::Unknown if *part == split.part => Sign::Unknown,
                 Sign::Unknown => match self.from_facts(part) {
                     Sign::Unknown => self.logarithmic_sign(part),
                     known => known,
                 },
                 known => known,
             };
+            let own = if own == Sign::Unknown && k % 2 != 0 { self.sign_by_parameters(part) } else { own };
             s.times(own.to_power(*k as i32))
         })
+    }
+
+    /// The sign of Σ μₖ fₖ where the μₖ are monomials of the parameters and each fₖ has a visible sign once it is factored,
+    /// as a square has.
+    fn sign_by_parameters(&self, f: &Poly) -> Sign {
+        let is_parameter = |v: Var| self.role(v) == Some(Role::Parameter);
+        let vars = f.vars();
+        if f.len() > MOST_TERMS || vars.iter().all(|v| is_parameter(*v)) || !vars.iter().any(|v| is_parameter(*v)) {
+            return Sign::Unknown;
+        }
+        let mut total = Sign::Zero;
+        for (monomial, coefficient) in f.collect(is_parameter) {
+            let factored = factor(&coefficient);
+            let own = self.monomial_sign(&monomial).times(self.monomial_sign(&factored.monomial));
+            let own = factored.factors.iter().fold(own.times(Sign::of(&factored.content)), |s, (part, k)| {
+                s.times(self.terms_sign(part).to_power(*k as i32))
+            });
+            total = total.plus(own);
+            if total == Sign::Unknown {
+                break;
+            }
+        }
+        total
     }
 
     /// The sign of a polynomial as a combination of facts.

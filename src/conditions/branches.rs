@@ -3,6 +3,7 @@
 use crate::algebra::budget;
 use crate::algebra::factor::factor;
 use crate::algebra::field::{Field, Relation};
+use crate::algebra::gcd::coprime;
 use crate::algebra::generator::{Element, Role};
 use crate::algebra::monomial::{Monomial, Var};
 use crate::algebra::number::rational;
@@ -39,6 +40,7 @@ pub(super) fn solve(model: &Model, residuals: &[Residual], holds: &dyn Fn(&Model
     let Search { leaves, mut complete, .. } = search;
     let mut branches: Vec<Node> = Vec::new();
     for leaf in leaves {
+        let leaf = leaf.without_idle_sides(&model.field);
         match confirm(model, &leaf, holds) {
             Confirmed::Yes => branches.push(leaf),
             Confirmed::Empty => {}
@@ -58,6 +60,27 @@ struct Node {
 }
 
 impl Node {
+    /// The node without the side conditions that no solution divides by: the equations hold where they fail, too.
+    fn without_idle_sides(mut self, field: &Field) -> Node {
+        let mut divisors: Vec<Element> = Vec::new();
+        for (_, value) in &self.solved {
+            let below = value.vars().into_iter().filter(|v| value.low_degree(*v) < 0);
+            divisors.extend(below.map(|v| field.expand(&Poly::var(v))));
+        }
+        let mut needed: Vec<Element> = Vec::new();
+        for side in &self.sides {
+            let factored = factor(&field.fraction(side).0);
+            let single = factored.monomial.iter().map(|(v, _)| Poly::var(v));
+            for part in single.chain(factored.factors.into_iter().map(|(part, _)| part)) {
+                if divisors.iter().any(|d| *d == part || !coprime(d, &part)) && !needed.contains(&part) {
+                    needed.push(part);
+                }
+            }
+        }
+        self.sides = needed;
+        self
+    }
+
     fn into_branch(self) -> Branch {
         let equations = self.solved.into_iter().map(|(v, value)| (Poly::var(v), value)).collect();
         Branch { equations, side_conditions: self.sides, inequalities: Vec::new() }
@@ -208,7 +231,7 @@ impl Search<'_> {
 
 /// The coefficient of v in an equation that is linear in v.
 fn linear_coefficient(e: &Element, v: Var) -> Option<Element> {
-    if e.degree(v) != 1 || e.low_degree(v) != 0 {
+    if e.degree(v) != 1 || e.low_degree(v) < 0 {
         return None;
     }
     e.coefficients(v).into_iter().find(|(k, _)| *k == 1).map(|(_, c)| c)

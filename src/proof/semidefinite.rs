@@ -51,8 +51,8 @@ impl Prover<'_> {
     }
 
     /// A matrix of at most three rows (after one is left out, where the matrix is balanced) is negative semidefinite
-    /// if the coefficients of the characteristic polynomial of minus its symmetric part are nonnegative. `None` if a
-    /// sign is not known.
+    /// if the coefficients of the characteristic polynomial of minus its symmetric part are nonnegative: each is a sum of
+    /// principal minors, whose signs are looked at one by one and together. `None` if a sign is not known.
     pub fn characteristic(
         &mut self,
         subject: &str,
@@ -63,8 +63,14 @@ impl Prover<'_> {
             return None;
         }
         let without = reduction.map(|(_, without)| without);
-        let coefficients = self.characteristic_coefficients(matrix, without)?;
-        if !coefficients.iter().all(|c| holds(self.field, c, Relation::NonNegative) || self.field.is_zero(c)) {
+        let minus = self.minus_symmetric_part(matrix, without)?;
+        let k = matrix.size - usize::from(without.is_some());
+        let is_nonnegative = |e: &Element| holds(self.field, e, Relation::NonNegative) || self.field.is_zero(e);
+        let each_size = (1..=k).all(|size| {
+            let minors = self.principal_minors(&minus, k, size);
+            minors.iter().all(is_nonnegative) || is_nonnegative(&Poly::sum(minors))
+        });
+        if !each_size {
             return None;
         }
         let premises: Vec<StepId> = reduction.iter().map(|(balance, _)| balance.step).collect();
@@ -74,12 +80,18 @@ impl Prover<'_> {
     /// The coefficients c₁, …, cₙ of det(λ + M) = λⁿ − …, that is the sums of the principal minors of −(M + Mᵀ)/2, one
     /// row and column left out if wanted. `None` for more than three rows.
     pub fn characteristic_coefficients(&mut self, matrix: &Matrix, without: Option<usize>) -> Option<Vec<Element>> {
+        let minus = self.minus_symmetric_part(matrix, without)?;
+        let k = matrix.size - usize::from(without.is_some());
+        Some((1..=k).map(|size| Poly::sum(self.principal_minors(&minus, k, size))).collect())
+    }
+
+    /// −(M + Mᵀ)/2, row by row, one row and column left out if wanted. `None` for more than three rows.
+    fn minus_symmetric_part(&mut self, matrix: &Matrix, without: Option<usize>) -> Option<Vec<Element>> {
         let kept: Vec<usize> = (0..matrix.size).filter(|i| Some(*i) != without).collect();
-        let k = kept.len();
-        if k > LARGEST {
+        if kept.len() > LARGEST {
             return None;
         }
-        let mut minus = Vec::with_capacity(k * k);
+        let mut minus = Vec::with_capacity(kept.len() * kept.len());
         for i in &kept {
             for j in &kept {
                 let (a, b) = (self.value(&matrix.entry(*i, *j)), self.value(&matrix.entry(*j, *i)));
@@ -88,17 +100,17 @@ impl Prover<'_> {
                 minus.push(self.field.current(&mean).neg());
             }
         }
-        Some((1..=k).map(|size| self.principal_sum(&minus, k, size)).collect())
+        Some(minus)
     }
 
-    /// The sum of the principal minors of the given size (at most three).
-    fn principal_sum(&self, a: &[Element], k: usize, size: usize) -> Element {
+    /// The principal minors of the given size of a matrix with k rows.
+    fn principal_minors(&self, a: &[Element], k: usize, size: usize) -> Vec<Element> {
         let minors = (0u32..1 << k).filter(|set| set.count_ones() as usize == size).map(|set| {
             let rows: Vec<usize> = (0..k).filter(|i| set & (1 << i) != 0).collect();
             self.determinant(a, k, &rows, &rows)
         });
         let minors: Vec<Element> = minors.collect();
-        Poly::sum(minors.iter().map(|m| self.field.current(m)).collect())
+        minors.iter().map(|m| self.field.current(m)).collect()
     }
 
     fn determinant(&self, a: &[Element], k: usize, rows: &[usize], columns: &[usize]) -> Element {

@@ -33,7 +33,7 @@ struct Question<'a> {
     system: &'a System,
     /// pᵢ pⱼ Sᵢⱼ, over m in shares.
     matrix: Rc<Matrix>,
-    /// Its entries.
+    /// Its entries, reduced where that was not too much work.
     entries: Vec<Element>,
     /// That its rows and columns sum to zero, if they do.
     balance: Option<Proved<Balanced>>,
@@ -51,6 +51,8 @@ pub(super) fn examine(model: &Model, system: &System, prover: &mut Prover<'_>, e
         }
         let matrix = system.scaled_matrix();
         let entries = prover.entries(&matrix);
+        let reduced = budget::attempt(RUNG_WORK, || entries.iter().map(|e| model.field.reduce(e)).collect());
+        let entries = reduced.unwrap_or(entries);
         let balance = budget::attempt(RUNG_WORK, || prover.balanced(SUBJECT, &matrix, &[])).ok().flatten();
         let question = Question { model, system, matrix, entries, balance, quantities };
         certificates::prove(&question, prover).unwrap_or_else(|| by_points(&question, prover))

@@ -17,7 +17,7 @@ use super::direction::{plain, quadratic, rising};
 use super::{Question, SUBJECT};
 
 /// The work that all points together may take.
-const WORK: u64 = 1_500_000_000;
+const WORK: u64 = 600_000_000;
 /// The work that one point may take.
 const POINT_WORK: u64 = 60_000_000;
 /// The precision at which entries are guessed from, in bits.
