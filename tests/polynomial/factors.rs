@@ -39,6 +39,13 @@ fn check_unique(a: &Poly, b: &Poly) -> Result<(), TestCaseError> {
     Ok(())
 }
 
+/// The polynomial with every variable replaced by its k-th power, plus the product of the variables.
+fn powered(p: &Poly, k: i32) -> Poly {
+    let terms = p.terms().map(|(m, c)| (m.pow(k), c));
+    let all = Monomial::from_pairs((0..3).map(|v| (Var::new(v), 1)));
+    &Poly::from_terms(terms.collect()) + &Poly::monomial(all)
+}
+
 /// A rational root of a cubic or quadratic with small integer coefficients, found by trying all candidates.
 fn has_rational_root(p: &Poly, v: Var) -> bool {
     (1..=6i64).any(|d| (-6..=6).any(|n| p.substitute(v, &Poly::constant(&rational(n, d))).is_zero()))
@@ -66,6 +73,11 @@ proptest! {
     #[test]
     fn unique_in_five_variables(a in sum_of_terms(5, 3..=6), b in sum_of_terms(5, 3..=6)) {
         check_unique(&a, &b)?;
+    }
+
+    #[test]
+    fn unique_when_no_variable_is_linear(a in sum_of_terms(3, 3..=5), b in sum_of_terms(3, 3..=5)) {
+        check_unique(&powered(&a, 2), &powered(&b, 3))?;
     }
 
     #[test]

@@ -9,8 +9,8 @@ use crate::algebra::budget;
 use crate::algebra::monomial::Monomial;
 use crate::algebra::number::{Int, Rational, binary_operator, denom, numer};
 
-/// Products formed at one time before they are sorted and combined.
-const CHUNK: usize = 1 << 20;
+/// Products formed at one time before they are sorted and combined: what the cache holds.
+const CHUNK: usize = 1 << 13;
 
 /// Sorts terms descending, adds equal monomials and drops zeros.
 pub(super) fn combine(mut terms: Vec<Term>) -> Vec<Term> {
@@ -203,15 +203,40 @@ fn multiply_long(a: &[Term], piece: &[Term]) -> Vec<Term> {
 /// Adds descending lists pairwise.
 fn sum_tree(mut parts: Vec<Vec<Term>>) -> Vec<Term> {
     while parts.len() > 1 {
-        parts = parts
-            .chunks(2)
-            .map(|pair| match pair {
-                [a, b] => merge(a, &Int::ONE, b, &Int::ONE),
-                rest => rest.concat(),
-            })
-            .collect();
+        let mut next = Vec::with_capacity(parts.len().div_ceil(2));
+        let mut rest = parts.into_iter();
+        while let Some(a) = rest.next() {
+            next.push(match rest.next() {
+                Some(b) => merge_owned(a, b),
+                None => a,
+            });
+        }
+        parts = next;
     }
     parts.pop().unwrap_or_default()
+}
+
+/// a + b for descending term lists, moving the terms.
+fn merge_owned(a: Vec<Term>, b: Vec<Term>) -> Vec<Term> {
+    let mut out = Vec::with_capacity(a.len() + b.len());
+    let (mut a, mut b) = (a.into_iter().peekable(), b.into_iter().peekable());
+    while let (Some(x), Some(y)) = (a.peek(), b.peek()) {
+        match x.0.cmp(&y.0) {
+            Ordering::Greater => out.extend(a.next()),
+            Ordering::Less => out.extend(b.next()),
+            Ordering::Equal => {
+                if let (Some((m, mut c)), Some((_, d))) = (a.next(), b.next()) {
+                    c += &d;
+                    if !c.is_zero() {
+                        out.push((m, c));
+                    }
+                }
+            }
+        }
+    }
+    out.extend(a);
+    out.extend(b);
+    out
 }
 
 binary_operator!(Poly, Add, add);
