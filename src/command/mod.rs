@@ -9,6 +9,9 @@ mod status;
 mod values;
 
 use std::process::ExitCode;
+use std::sync::mpsc;
+use std::thread::JoinHandle;
+use std::time::Duration;
 
 use clap::Parser;
 
@@ -23,10 +26,11 @@ const STACK: usize = 1 << 29;
 pub fn main() -> ExitCode {
     let arguments = Arguments::parse();
     internal::silence();
-    let worker = std::thread::Builder::new().stack_size(STACK).spawn(move || run(&arguments.command));
-    let status = match worker.map(std::thread::JoinHandle::join) {
-        Ok(Ok(status)) => status,
-        Ok(Err(_)) => internal::report("mainspring"),
+    let patience = patience(options(&arguments.command));
+    let (tell, told) = mpsc::channel();
+    let worker = std::thread::Builder::new().stack_size(STACK).spawn(move || run(&arguments.command, &tell));
+    let status = match worker {
+        Ok(worker) => wait(worker, &told, patience),
         Err(error) => {
             eprintln!("mainspring: no thread could be started: {error}");
             Status::Internal
@@ -35,31 +39,51 @@ pub fn main() -> ExitCode {
     ExitCode::from(status.code())
 }
 
-fn run(command: &Command) -> Status {
+fn options(command: &Command) -> &Options {
     let (Command::Vet(options) | Command::Derive(options) | Command::Restrict(options)) = command;
+    options
+}
+
+/// How long one model may stay silent: a step that does not look at the clock must not keep the program forever.
+fn patience(options: &Options) -> Duration {
+    Duration::from_secs(options.time + options.time / 2 + 10)
+}
+
+/// Waits for the worker, which tells of each model that it begins and of its end.
+fn wait(worker: JoinHandle<Status>, told: &mpsc::Receiver<String>, patience: Duration) -> Status {
+    let mut current = String::new();
+    loop {
+        match told.recv_timeout(patience) {
+            Ok(name) => current = name,
+            Err(mpsc::RecvTimeoutError::Disconnected) => {
+                return worker.join().unwrap_or_else(|_| internal::report("mainspring"));
+            }
+            Err(mpsc::RecvTimeoutError::Timeout) => {
+                eprintln!("{current}: the time limit was reached in the middle of a step; no result is given");
+                return Status::Undecided;
+            }
+        }
+    }
+}
+
+fn run(command: &Command, tell: &mpsc::Sender<String>) -> Status {
+    let options = options(command);
     let values = match values::read(&options.values) {
         Ok(values) => values,
-        Err(fault) => {
-            eprintln!("{fault}");
-            return Status::Usage;
-        }
+        Err(fault) => return failed(&[fault], Status::Usage),
     };
     let inputs = match input::expand(&options.models) {
         Ok(inputs) => inputs,
-        Err(faults) => {
-            faults.iter().for_each(|fault| eprintln!("{fault}"));
-            return Status::Unreadable;
-        }
+        Err(faults) => return failed(&faults, Status::Unreadable),
     };
     let mut delivery = match Delivery::new(options, &inputs) {
         Ok(delivery) => delivery,
-        Err(fault) => {
-            eprintln!("{fault}");
-            return Status::Unwritable;
-        }
+        Err(fault) => return failed(&[fault], Status::Unwritable),
     };
     let mut worst = Status::Passed;
     for model in &inputs.models {
+        // the receiver is there as long as the program is
+        let _ = tell.send(model.name());
         let (report, status) = internal::guarded(&model.name(), || reports::report(command, model, &values));
         worst = worst.and(status);
         if let Some(report) = report {
@@ -67,6 +91,11 @@ fn run(command: &Command) -> Status {
         }
     }
     worst.and(delivery.finish())
+}
+
+fn failed(faults: &[String], status: Status) -> Status {
+    faults.iter().for_each(|fault| eprintln!("{fault}"));
+    status
 }
 
 /// Takes reports to where they are wanted.

@@ -46,7 +46,7 @@ pub fn extension(form: Form) -> &'static str {
 
 /// Reads a model, works it, and makes its report; messages go to standard error.
 pub fn report(command: &Command, input: &Input, values: &[(String, Rational)]) -> (Option<Report>, Status) {
-    let (Command::Vet(options) | Command::Derive(options) | Command::Restrict(options)) = command;
+    let options = super::options(command);
     let mut clock = Clock::new(options.timings, input.name());
     let source = match input.source() {
         Ok(source) => source,
@@ -91,7 +91,7 @@ fn allowance(options: &Options) -> Allowance {
 }
 
 fn asked(command: &Command) -> Vec<Part> {
-    let (Command::Vet(options) | Command::Derive(options) | Command::Restrict(options)) = command;
+    let options = super::options(command);
     if options.only.is_empty() {
         return Part::ALL.to_vec();
     }
