@@ -16,8 +16,9 @@ use num_traits::ToPrimitive;
 pub struct Outside {
     pub goods: Vec<String>,
     pub prices: Vec<String>,
+    /// The prices of goods outside the system.
+    pub others: Vec<String>,
     pub income: Option<String>,
-    pub complete: bool,
     groups: BTreeMap<String, Vec<String>>,
     lets: BTreeMap<String, (Vec<String>, Expr)>,
     pub assumptions: Vec<Relation>,
@@ -36,8 +37,8 @@ impl Outside {
         let mut model = Outside {
             goods: Vec::new(),
             prices: Vec::new(),
+            others: Vec::new(),
             income: None,
-            complete: true,
             groups: BTreeMap::new(),
             lets: BTreeMap::new(),
             assumptions: Vec::new(),
@@ -72,15 +73,23 @@ impl Outside {
             }
             Statement::Demand(equation) => self.demands.push((equation.form, equation.target, equation.value)),
             Statement::Rest(target) => self.rest = Some(target_text(&target)),
-            Statement::Others(Others::Deflated | Others::Prices(_)) => self.complete = false,
+            Statement::Others(Others::Prices(names)) => {
+                self.others = names.into_iter().map(|each| each.name.text).collect();
+            }
             _ => {}
         }
     }
 
-    /// The quantities demanded, with their slopes in the prices (first) and income (last).
+    /// What moves: the prices, then the prices of other goods, and income last.
+    pub fn movers(&self) -> Vec<String> {
+        self.prices.iter().chain(&self.others).chain(&self.income).cloned().collect()
+    }
+
+    /// The quantities demanded, with their slopes in what moves.
     pub fn quantities(&self, values: &Values) -> Vec<Dual> {
-        let directions = self.prices.len() + 1;
-        let moving = self.prices.iter().chain(&self.income).enumerate();
+        let movers = self.movers();
+        let directions = movers.len();
+        let moving = movers.iter().enumerate();
         let at: BTreeMap<&str, Dual> =
             moving.map(|(k, name)| (name.as_str(), Dual::variable(values[name], k, directions))).collect();
         let place = Place { model: self, values, moving: &at, directions };
@@ -107,10 +116,11 @@ impl Outside {
         self.goods.iter().map(|good| found[good].clone()).collect()
     }
 
-    /// A formula in the model's names, with its slopes in the prices and income.
+    /// A formula in the model's names, with its slopes in what moves.
     pub fn formula(&self, expr: &Expr, values: &Values) -> Dual {
-        let directions = self.prices.len() + 1;
-        let moving = self.prices.iter().chain(&self.income).enumerate();
+        let movers = self.movers();
+        let directions = movers.len();
+        let moving = movers.iter().enumerate();
         let at: BTreeMap<&str, Dual> = moving
             .filter_map(|(k, name)| Some((name.as_str(), Dual::variable(*values.get(name)?, k, directions))))
             .collect();
