@@ -7,7 +7,7 @@ use num_traits::{One, Signed};
 use crate::algebra::field::{Field, Relation};
 use crate::algebra::generator::{Base, Element, Kind};
 use crate::algebra::monomial::{Monomial, Var};
-use crate::algebra::number::Rational;
+use crate::algebra::number::{Rational, rational};
 use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
 
@@ -35,7 +35,9 @@ pub fn solve(field: &Field, phi: &Element, y: Var, target: &[Element]) -> Option
         if phi == field.current(&Poly::var(y)) {
             return Some(inverse);
         }
-        phi = step(&income, &phi, &mut inverse).or_else(|| product_of_logs(&income, &phi, &mut inverse))?;
+        phi = step(&income, &phi, &mut inverse)
+            .or_else(|| quadratic(&income, &phi, &mut inverse))
+            .or_else(|| product_of_logs(&income, &phi, &mut inverse))?;
         inverse.summands = vec![inverse.value.clone()];
     }
     None
@@ -63,6 +65,45 @@ fn step(income: &Moving, phi: &Element, inverse: &mut Inverse) -> Option<Element
         inverse.summands = vec![value.clone()];
     }
     inverse.value = value;
+    let mut factors = own.iter();
+    match (factors.next(), factors.next()) {
+        (Some((var, 1)), None) => inside(income, var, inverse),
+        _ => inside_product(income, own, inverse),
+    }
+}
+
+/// One layer a·M² + b·M + c = Z: M = (−b ± √(b² − 4a(c − Z)))/(2a), with the sign of 2aM + b before the root.
+fn quadratic(income: &Moving, phi: &Element, inverse: &mut Inverse) -> Option<Element> {
+    let field = income.field;
+    let cleared = income.clear(phi);
+    if !cleared.denominator.is_empty() {
+        return None;
+    }
+    let mut terms = income.collect(&cleared.numerator);
+    let rest = terms.remove(&Monomial::one()).unwrap_or_default();
+    let [(first, at_first), (second, at_second)] = &terms.into_iter().collect::<Vec<_>>()[..] else { return None };
+    let (own, b, a) = if first.pow(2) == *second {
+        (first, at_first, at_second)
+    } else if second.pow(2) == *first {
+        (second, at_second, at_first)
+    } else {
+        return None;
+    };
+    let target = field.current(&inverse.value);
+    let doubled = field.product(a, &Poly::monomial(own.clone())).scale(&rational(2, 1));
+    let sign = field.sign(&(&field.current(&doubled) + b));
+    let outer = match sign {
+        Sign::Positive => rational(1, 1),
+        Sign::Negative => rational(-1, 1),
+        _ => return None,
+    };
+    let squares = &field.product(b, b) - &field.product(a, &(&rest - &target)).scale(&rational(4, 1));
+    let squares = field.reduce(&squares);
+    require_positive(field, inverse, &squares);
+    let facts: Vec<(Element, Relation)> = inverse.positive.iter().map(|e| (e.clone(), Relation::Positive)).collect();
+    let root = field.suppose(&facts, || field.sqrt(&squares)).ok()?.scale(&outer);
+    let above = &root - &field.current(b);
+    inverse.value = field.quotient(&above, &field.current(a).scale(&rational(2, 1))).ok()?;
     let mut factors = own.iter();
     match (factors.next(), factors.next()) {
         (Some((var, 1)), None) => inside(income, var, inverse),

@@ -41,6 +41,16 @@ pub fn solve(field: &Field, equations: Vec<Equation>, unknowns: usize) -> Option
     Some(elimination.back_substitute(unknowns))
 }
 
+/// A basis of the solutions of Σ left[k]·unknown k = 0. Right-hand sides are ignored.
+pub fn kernel(field: &Field, mut equations: Vec<Equation>, unknowns: usize) -> Vec<Vec<Element>> {
+    equations.iter_mut().for_each(|e| e.right = Poly::zero());
+    let Some(mut elimination) = Elimination::new(field, equations) else { return Vec::new() };
+    while elimination.step() == Some(true) {}
+    let held: BTreeSet<usize> = elimination.solved.iter().map(|(column, _)| *column).collect();
+    let free = (0..unknowns).filter(|k| !held.contains(k));
+    free.map(|k| elimination.values(unknowns, Some(k))).collect()
+}
+
 struct Elimination<'a> {
     field: &'a Field,
     rows: Vec<Option<Equation>>,
@@ -198,23 +208,31 @@ impl<'a> Elimination<'a> {
         self.field.reduce(e)
     }
 
-    fn back_substitute(mut self, unknowns: usize) -> Solution {
-        let mut values: Vec<Option<Element>> = vec![None; unknowns];
-        let solved = std::mem::take(&mut self.solved);
-        for (column, equation) in solved.iter().rev() {
+    fn back_substitute(self, unknowns: usize) -> Solution {
+        let held: BTreeSet<usize> = self.solved.iter().map(|(column, _)| *column).collect();
+        let free = (0..unknowns).filter(|k| !held.contains(k)).collect();
+        let values = self.values(unknowns, None);
+        Solution { values, free, pivots: self.pivots }
+    }
+
+    /// The unknowns, those that stay free zero, except that `raised` is one.
+    fn values(&self, unknowns: usize, raised: Option<usize>) -> Vec<Element> {
+        let mut values: Vec<Element> = vec![Poly::zero(); unknowns];
+        if let Some(slot) = raised.and_then(|k| values.get_mut(k)) {
+            *slot = Poly::one();
+        }
+        for (column, equation) in self.solved.iter().rev() {
             let mut total = vec![equation.right.clone()];
             for (other, entry) in &equation.left {
-                if let Some(Some(value)) = values.get(*other) {
+                if let Some(value) = values.get(*other).filter(|v| !v.is_zero()) {
                     total.push(self.times(entry, value).neg());
                 }
             }
             if let Some(slot) = values.get_mut(*column) {
-                *slot = Some(self.reduced(&Poly::sum(total)));
+                *slot = self.reduced(&Poly::sum(total));
             }
         }
-        let free = values.iter().enumerate().filter(|(_, v)| v.is_none()).map(|(k, _)| k).collect();
-        let values = values.into_iter().map(|v| v.unwrap_or_else(Poly::zero)).collect();
-        Solution { values, free, pivots: self.pivots }
+        values
     }
 }
 

@@ -6,6 +6,7 @@ use crate::algebra::monomial::Var;
 use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
 
+use super::gather::gathered;
 use super::system::{Coordinate, System};
 
 /// Preferences as a method found them.
@@ -64,6 +65,13 @@ impl Proposal {
         self.working.coordinate = Some(coordinate.clone());
         self.working.income = Some(there.income);
         Some(self)
+    }
+
+    /// The proposal with powers of one sum brought together.
+    pub fn gathered(mut self, field: &Field) -> Proposal {
+        self.indirect_utility = self.indirect_utility.map(|v| gathered(field, &v));
+        self.expenditure = self.expenditure.map(|e| gathered(field, &e));
+        self
     }
 
     /// The proposal with v turned round if it falls in income.

@@ -8,6 +8,7 @@ use crate::proof::Prover;
 use super::Preferences;
 use super::check::{self, Established};
 use super::divisors::doubtful_divisors;
+use super::integrating_factor;
 use super::linear;
 use super::proposal::Proposal;
 use super::riccati;
@@ -37,20 +38,22 @@ const WORK_OF_ONE_ATTEMPT: u64 = 400_000_000;
 pub fn search(system: &System, utility: Var, prover: &mut Prover<'_>) -> Result<Box<Preferences>, String> {
     let all: Vec<(Coordinate, System)> =
         coordinates(system).into_iter().filter_map(|c| in_coordinate(system, &c).map(|there| (c, there))).collect();
-    let methods: [Propose; 2] = [linear_proposals, quadratic_proposals];
-    for method in methods {
-        for (coordinate, there) in &all {
+    let methods: [(Propose, usize); 3] =
+        [(linear_proposals, all.len()), (quadratic_proposals, all.len()), (exact_proposals, 1)];
+    for (method, coordinates) in methods {
+        for (coordinate, there) in all.iter().take(coordinates) {
             let proposals = budget::attempt(WORK_OF_ONE_ATTEMPT, || method(there, utility)).unwrap_or_default();
             for (method, proposal) in proposals {
                 let Some(proposal) = proposal.in_income(system, there, coordinate) else { continue };
-                let proposal = proposal.turned(system.field, utility);
+                let proposal = proposal.turned(system.field, utility).gathered(system.field);
                 if let Some(established) = check::establish(system, &proposal, utility, prover) {
                     return Ok(Box::new(preferences(system, utility, method, proposal, established)));
                 }
             }
         }
     }
-    Err("no change of the income variable makes the system linear or quadratic".to_string())
+    Err("no change of the income variable makes the system linear or quadratic, and no integrating factor was found"
+        .to_string())
 }
 
 fn in_coordinate<'f>(system: &System<'f>, coordinate: &Coordinate) -> Option<System<'f>> {
@@ -80,6 +83,11 @@ fn quadratic_proposals(system: &System, utility: Var) -> Vec<(Method, Proposal)>
         }
     }
     Vec::new()
+}
+
+fn exact_proposals(system: &System, utility: Var) -> Vec<(Method, Proposal)> {
+    let found = integrating_factor::propose(system, utility);
+    found.into_iter().map(|proposal| (Method::IntegratingFactor, proposal)).collect()
 }
 
 fn with_functions(mut proposal: Proposal, span: &Span) -> Proposal {

@@ -1,0 +1,269 @@
+//! Integrating factors: Ω = D dm − Σ Nᵢ dpᵢ times Π fₖ^nₖ · exp(Σ cⱼ gⱼ).
+//!
+//! The factors fₖ are those in sight: symbols, sums below fraction bars, bases of powers, arguments of logarithms,
+//! factors of D and Nᵢ (Darboux 1878; Prelle and Singer 1983). Closedness is linear in nₖ and cⱼ.
+
+use std::collections::BTreeSet;
+
+use crate::algebra::factor::factor;
+use crate::algebra::gcd::gcd;
+use crate::algebra::generator::{Base, Built, Element, Kind};
+use crate::algebra::monomial::Var;
+use crate::algebra::number::rational;
+use crate::algebra::polynomial::Poly;
+use crate::algebra::sign::Sign;
+
+use super::fractions::Moving;
+use super::inverse_factor;
+use super::invert;
+use super::linear_solve;
+use super::potential::{Potential, potential};
+use super::proposal::{Proposal, Working};
+use super::system::System;
+
+/// Ω in θ = x ∂/∂x: components over prices, then income.
+pub struct Form<'m, 'f> {
+    /// Prices and income, in this order.
+    pub moving: &'m Moving<'f>,
+    /// −pᵢNᵢ for each price, then m·D: polynomials without a common factor.
+    pub components: Vec<Poly>,
+}
+
+impl<'m, 'f> Form<'m, 'f> {
+    /// The one-form whose leaves are the indifference surfaces in prices and income.
+    pub fn of(system: &System, moving: &'m Moving<'f>) -> Form<'m, 'f> {
+        let field = moving.field;
+        let (numerators, denominator) = moving.over_one_denominator(&system.demands);
+        let below = denominator.iter().fold(Poly::one(), |d, (sum, k)| &d * &moving.value(*sum).pow(*k));
+        let mut components: Vec<Poly> = numerators
+            .iter()
+            .zip(&system.prices)
+            .map(|(n, p)| field.expand(&(n * &field.current(&Poly::var(*p))).neg()))
+            .collect();
+        components.push(field.expand(&(&field.expand(&below) * &field.current(&Poly::var(system.income)))));
+        let common = components.iter().fold(Poly::zero(), |g, c| gcd(&g, c));
+        if !common.is_constant() {
+            let divided: Option<Vec<Poly>> = components.iter().map(|c| c.div_exact(&common)).collect();
+            components = divided.unwrap_or(components);
+        }
+        Form { moving, components }
+    }
+
+    /// The income component, m·D.
+    pub fn last(&self) -> &Poly {
+        &self.components[self.components.len() - 1]
+    }
+
+    /// θ_m ωᵢ − θᵢ ω_m.
+    fn rotation(&self, index: usize) -> Element {
+        let field = self.moving.field;
+        let (price, income) = (self.moving.symbols[index], self.moving.symbols[self.components.len() - 1]);
+        &field.log_derivative(&self.components[index], income) - &field.log_derivative(self.last(), price)
+    }
+}
+
+/// A function whose logarithm, or which itself, may enter the logarithm of the factor.
+#[derive(Clone, Debug, PartialEq)]
+enum Factor {
+    /// f to some power.
+    Power(Element),
+    /// exp of a multiple of g.
+    Exponential(Element),
+}
+
+/// The proposals by integrating factors: factors in sight first, then polynomial inverse factors.
+pub fn propose(system: &System, utility: Var) -> Vec<Proposal> {
+    let moving = Moving::new(system.field, &system.variables());
+    let form = Form::of(system, &moving);
+    let mut found: Vec<Proposal> = Vec::new();
+    if let Some((v, factor)) = from_sight(&form) {
+        found.extend(proposal(system, v, Some(factor), utility));
+    }
+    if found.is_empty() {
+        for (v, factor) in inverse_factor::integrals(&form) {
+            found.extend(proposal(system, v, factor, utility));
+        }
+    }
+    found
+}
+
+fn from_sight(form: &Form) -> Option<(Element, Element)> {
+    let factors = candidates(form);
+    let solution = exponents(form, &factors)?;
+    let multiplier = multiplier(form.moving, &factors, &solution).ok()?;
+    let v = integral(form, &multiplier)?;
+    Some((v, multiplier))
+}
+
+/// The potential of the form times the factor.
+pub fn integral(form: &Form, multiplier: &Element) -> Option<Element> {
+    let moving = form.moving;
+    let field = moving.field;
+    let slopes: Option<Vec<Element>> = form
+        .components
+        .iter()
+        .zip(&moving.symbols)
+        .map(|(c, x)| field.quotient(&field.product(multiplier, c), &Poly::var(*x)).ok())
+        .collect();
+    value_or_exponential(moving, &potential(moving, &slopes?)?)
+}
+
+/// F, or e^(F/κ) where F is a sum of logarithms with commensurable coefficients.
+fn value_or_exponential(moving: &Moving, found: &Potential) -> Option<Element> {
+    let field = moving.field;
+    let polynomial = |found: &Potential| {
+        let (scale, _) = found.logs.first()?;
+        let inverse = field.inverse(scale).ok()?;
+        found.scaled(field, &inverse).exponential(field).ok()
+    };
+    let only_logs = found.regular.vars().into_iter().all(|v| !moving.moves(v));
+    if only_logs && !found.logs.is_empty() {
+        return polynomial(found);
+    }
+    found.value(field).ok().or_else(|| polynomial(found))
+}
+
+fn candidates(form: &Form) -> Vec<Factor> {
+    let moving = form.moving;
+    let field = moving.field;
+    let mut seen: BTreeSet<Var> = BTreeSet::new();
+    let mut waiting: Vec<Var> = form.components.iter().flat_map(Poly::vars).collect();
+    waiting.extend(moving.symbols.iter().flat_map(|s| field.current(&Poly::var(*s)).vars()));
+    let mut found: Vec<Factor> = Vec::new();
+    let mut offer = |f: Factor| {
+        if !found.contains(&f) {
+            found.push(f);
+        }
+    };
+    for symbol in &moving.symbols {
+        offer(Factor::Power(Poly::var(*symbol)));
+    }
+    while let Some(var) = waiting.pop() {
+        if !moving.moves(var) || !seen.insert(var) {
+            continue;
+        }
+        match &*field.kind(var) {
+            Kind::Symbol(_) => {}
+            Kind::Exp(argument) => {
+                let argument = field.reduce(argument);
+                waiting.extend(argument.vars());
+                if moving.clear(&argument).numerator.vars().iter().all(|v| !matches!(*field.kind(*v), Kind::Ln(_))) {
+                    offer(Factor::Exponential(argument));
+                }
+            }
+            Kind::Ln(base) => {
+                offer(Factor::Power(Poly::var(var)));
+                if let Base::Sum(value) = base {
+                    waiting.extend(value.vars());
+                    offer(Factor::Power(field.named(value, None)));
+                }
+            }
+            Kind::Sum { value, root } => {
+                waiting.extend(field.expand(value).vars());
+                let _ = root;
+                offer(Factor::Power(Poly::var(var)));
+            }
+            Kind::Special(_, argument) => {
+                waiting.extend(argument.vars());
+                offer(Factor::Power(Poly::var(var)));
+            }
+        }
+    }
+    for component in &form.components {
+        for (part, _) in factor(component).factors {
+            if part.vars().into_iter().any(|v| moving.moves(v)) {
+                offer(Factor::Power(field.named(&part, None)));
+            }
+        }
+    }
+    for ratio in ratios(moving) {
+        offer(Factor::Exponential(ratio));
+    }
+    found
+}
+
+/// Quotients of two symbols: exponentials of them are the factors of equations that are linear in a price.
+fn ratios(moving: &Moving) -> Vec<Element> {
+    let field = moving.field;
+    let mut all = Vec::new();
+    for above in &moving.symbols {
+        all.push(Poly::var(*above));
+        for below in moving.symbols.iter().filter(|b| *b != above) {
+            all.extend(field.quotient(&Poly::var(*above), &Poly::var(*below)).ok());
+        }
+    }
+    all
+}
+
+/// The constants nₖ and cⱼ with d ln μ ∧ Ω + dΩ = 0.
+fn exponents(form: &Form, factors: &[Factor]) -> Option<Vec<Element>> {
+    let moving = form.moving;
+    let field = moving.field;
+    let n = form.components.len() - 1;
+    let income = *moving.symbols.last()?;
+    let rates: Option<Vec<Vec<Element>>> =
+        factors.iter().map(|f| moving.symbols.iter().map(|x| log_rate(moving, f, *x).ok()).collect()).collect();
+    let rates = rates?;
+    let mut equations = Vec::new();
+    for index in 0..n {
+        let mut row: Vec<Element> = Vec::with_capacity(factors.len() + 1);
+        for rate in &rates {
+            let forth = field.product(&rate[n], &form.components[index]);
+            let back = field.product(&rate[index], form.last());
+            row.push(&field.current(&forth) - &field.current(&back));
+        }
+        row.push(form.rotation(index).neg());
+        let (numerators, _) = moving.over_one_denominator(&row);
+        equations.extend(moving.matched(&numerators));
+    }
+    let _ = income;
+    Some(linear_solve::solve(field, equations, factors.len())?.values)
+}
+
+/// θ ln f, or θg.
+fn log_rate(moving: &Moving, factor: &Factor, x: Var) -> Built {
+    let field = moving.field;
+    match factor {
+        Factor::Power(f) => field.quotient(&field.log_derivative(f, x), f),
+        Factor::Exponential(g) => Ok(field.log_derivative(g, x)),
+    }
+}
+
+fn multiplier(moving: &Moving, factors: &[Factor], exponents: &[Element]) -> Built {
+    let field = moving.field;
+    let mut logs = Potential::default();
+    for (factor, exponent) in factors.iter().zip(exponents).filter(|(_, n)| !n.is_zero()) {
+        match factor {
+            Factor::Power(f) => logs.logs.push((exponent.clone(), f.clone())),
+            Factor::Exponential(g) => {
+                logs.regular = &field.current(&logs.regular) + &field.reduce(&field.product(exponent, g));
+            }
+        }
+    }
+    logs.exponential(field)
+}
+
+/// v as found, solved for income where that can be done.
+fn proposal(system: &System, v: Element, factor: Option<Element>, utility: Var) -> Option<Proposal> {
+    let field = system.field;
+    let slope = field.reduce(&field.derivative(&v, system.income));
+    if slope.is_zero() {
+        return None;
+    }
+    let rising = field.sign(&slope);
+    let solved = invert::solve(field, &v, system.income, &[Poly::var(utility)]);
+    let mut positive = solved.as_ref().map_or_else(Vec::new, |inverse| inverse.positive.clone());
+    match field.sign(&v) {
+        Sign::Positive => positive.push(Poly::var(utility)),
+        Sign::Negative => positive.push(Poly::var(utility).scale(&rational(-1, 1))),
+        _ => {}
+    }
+    let working = Working { z: v.clone(), integrating_factor: factor, ..Working::default() };
+    Some(Proposal {
+        indirect_utility: Some(v),
+        expenditure: solved.map(|inverse| inverse.value),
+        positive,
+        rising,
+        working,
+    })
+}
