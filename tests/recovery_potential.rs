@@ -84,6 +84,7 @@ fn exponentials() {
         "p*exp(-k*q)*ln(r)",
         "1/(1+exp(p-q))",
         "exp(sqrt(p*q))*r",
+        "exp(-r/p)*(r^3/p^3+3*r^2/p^2+6*r/p+6+q/p)",
     ] {
         comes_back(&g, "p q r", f);
     }

@@ -134,8 +134,8 @@ impl Bounds {
         let frame = ansatz.frame;
         let (target_low, target_high) = extent(targets.iter());
         let acting = Bounds::acting(ansatz);
-        let (_, scale_high) = extent(frame.scale_value.raw_terms().iter().map(|(m, _)| m));
-        let (_, factor_high) = extent(factors.iter());
+        let (scale_low, scale_high) = extent(frame.scale_value.raw_terms().iter().map(|(m, _)| m));
+        let (factor_low, factor_high) = extent(factors.iter());
         let mut bounds = Bounds { low: BTreeMap::new(), high: BTreeMap::new(), roots: Vec::new() };
         for var in frame.rates.keys() {
             if let Kind::Sum { root, .. } = &*frame.moving.field.kind(*var) {
@@ -150,6 +150,9 @@ impl Bounds {
             let grows = factor_high.exponent(*var) > scale_high.exponent(*var);
             if grows {
                 low = low.min(0);
+            }
+            if factor_low.exponent(*var) < scale_low.exponent(*var) {
+                high = high.max(0);
             }
             if !frame.is_eigen(*var) {
                 low = low.min(0);
