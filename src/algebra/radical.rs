@@ -45,19 +45,19 @@ impl Field {
     fn root_in_same_field(&self, number: &Quadratic, n: u32) -> Option<Element> {
         let norm = &number.a * &number.a - &number.b * &number.b * &number.c;
         let nu = rational_root(&norm, n)?;
-        let signs: &[i64] = if n % 2 == 0 { &[1, -1] } else { &[1] };
+        let signs: &[i64] = if n.is_multiple_of(2) { &[1, -1] } else { &[1] };
         signs.iter().find_map(|s| {
             let nu = &nu * Rational::from_integer((*s).into());
             let unknown = self.symbol("t", Role::Unknown);
             let equation = &dickson(unknown, &nu, n) - &Poly::constant(&(&number.a * Rational::from_integer(2.into())));
             factor(&equation).factors.iter().find_map(|(part, _)| {
                 let trace = linear_root(part, unknown)?;
-                self.from_trace(number, &trace, &nu)
+                self.with_trace(number, &trace, &nu)
             })
         })
     }
 
-    fn from_trace(&self, number: &Quadratic, trace: &Rational, nu: &Rational) -> Option<Element> {
+    fn with_trace(&self, number: &Quadratic, trace: &Rational, nu: &Rational) -> Option<Element> {
         let half = trace / Rational::from_integer(2.into());
         let v = rational_root(&((&half * &half - nu) / &number.c), 2)?;
         Some(&Poly::constant(&half) + &Poly::term(&v, number.root.clone()))
@@ -112,7 +112,7 @@ fn linear_root(part: &Poly, x: Var) -> Option<Rational> {
 
 /// The rational n-th root, if there is one (for odd n also of a negative number).
 pub fn rational_root(q: &Rational, n: u32) -> Option<Rational> {
-    if q.is_negative() && n % 2 == 0 {
+    if q.is_negative() && n.is_multiple_of(2) {
         return None;
     }
     let root = |k: &BigInt| -> Option<BigInt> {

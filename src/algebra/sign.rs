@@ -155,10 +155,10 @@ impl Field {
             Kind::Special(Special::Erf | Special::Erfi | Special::LambertW, argument) => self.sign(argument),
             Kind::Ln(_) => {
                 let excess = &self.expand(&self.base_of(var)) - &Poly::one();
-                let stated = self.from_facts(&Poly::var(var));
-                if stated != Sign::Unknown { stated } else { self.from_facts(&excess) }
+                let stated = self.stated_sign(&Poly::var(var));
+                if stated != Sign::Unknown { stated } else { self.stated_sign(&excess) }
             }
-            _ => self.from_facts(&Poly::var(var)),
+            _ => self.stated_sign(&Poly::var(var)),
         }
     }
 
@@ -172,7 +172,7 @@ impl Field {
         }
         let split = f.primitive();
         let outside = Sign::of(&split.content).times(self.monomial_sign(&split.monomial));
-        let stated = self.from_facts(&split.part);
+        let stated = self.stated_sign(&split.part);
         if stated != Sign::Unknown {
             return outside.times(stated);
         }
@@ -184,7 +184,7 @@ impl Field {
         factored.factors.iter().fold(outside.times(Sign::of(&factored.content)), |s, (part, k)| {
             let own = match self.terms_sign(part) {
                 Sign::Unknown if *part == split.part => Sign::Unknown,
-                Sign::Unknown => match self.from_facts(part) {
+                Sign::Unknown => match self.stated_sign(part) {
                     Sign::Unknown => self.logarithmic_sign(part),
                     known => known,
                 },
@@ -219,7 +219,7 @@ impl Field {
     }
 
     /// The sign of a polynomial as a combination of facts.
-    fn from_facts(&self, f: &Poly) -> Sign {
+    fn stated_sign(&self, f: &Poly) -> Sign {
         let facts = self.current_facts();
         let nonzero = facts.iter().any(|g| g.relation == Relation::NonZero && self.divides(f, &g.element));
         for (candidate, strict, weak) in
