@@ -4,6 +4,8 @@
 //! of [`render`] are made from what it found.
 
 #![deny(missing_docs)]
+// the documentation is for contributors too, and is built with the private items
+#![allow(rustdoc::private_intra_doc_links)]
 
 pub mod algebra;
 pub mod conditions;

@@ -147,7 +147,7 @@ impl Modulus {
 /// Interpolation through fixed distinct abscissas (Newton's divided differences), used for many sets of values.
 pub(crate) struct Interpolation {
     at: Vec<u64>,
-    /// 1 / (at[k] − at[k − order]) by order (from 1), then k (from order).
+    /// `1 / (at[k] − at[k − order])` by order (from 1), then k (from order).
     gaps: Vec<Vec<u64>>,
 }
 

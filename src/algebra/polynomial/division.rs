@@ -105,7 +105,7 @@ fn quotient_bound(n: &Poly, d: &Poly) -> Option<Monomial> {
     bound.is_polynomial().then_some(bound)
 }
 
-/// A product q[i]·d[j] waiting in the heap.
+/// A product `q[i]·d[j]` waiting in the heap.
 struct Waiting {
     monomial: Monomial,
     i: usize,
