@@ -230,7 +230,7 @@ impl Names {
         nearest(name, known).map(|near| self.written(near))
     }
 
-    /// `p_1` where the family p[i] is declared.
+    /// `p_1` where the family `p[i]` is declared.
     fn as_member(&self, name: &str) -> Option<String> {
         let (base, index) = split_off_index(name)?;
         let Some(Meaning::Family(FamilyId(id))) = self.meaning(base) else { return None };

@@ -13,7 +13,7 @@ use crate::algebra::generator::Element;
 use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
 
-/// Σ left[k]·unknown k = right, with coefficients that are constants of the field.
+/// Σ `left[k]`·unknown k = right, with coefficients that are constants of the field.
 #[derive(Clone, Debug, Default)]
 pub struct Equation {
     /// The coefficients by the number of the unknown; none is zero.
@@ -41,7 +41,7 @@ pub fn solve(field: &Field, equations: Vec<Equation>, unknowns: usize) -> Option
     Some(elimination.back_substitute(unknowns))
 }
 
-/// A basis of the solutions of Σ left[k]·unknown k = 0. Right-hand sides are ignored.
+/// A basis of the solutions of Σ `left[k]`·unknown k = 0. Right-hand sides are ignored.
 pub fn kernel(field: &Field, mut equations: Vec<Equation>, unknowns: usize) -> Vec<Vec<Element>> {
     equations.iter_mut().for_each(|e| e.right = Poly::zero());
     let Some(mut elimination) = Elimination::new(field, equations) else { return Vec::new() };

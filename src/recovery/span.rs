@@ -15,7 +15,7 @@ use super::fractions::Moving;
 use super::potential::{Potential, potential};
 use super::system::System;
 
-/// xᵢ = Σₖ coefficients[k][i]·functions[k].
+/// xᵢ = Σₖ `coefficients[k][i]`·`functions[k]`.
 pub struct Span {
     /// gₖ: functions of income alone, independent over the constants.
     pub functions: Vec<Element>,
