@@ -381,3 +381,25 @@ fn sixty_four_goods_are_read() {
     assert_eq!(model.abbreviations[0].0, "lnP");
     assert_eq!(shown(&model, &model.abbreviations[0].1), "lnP");
 }
+
+#[test]
+fn abbreviations_may_stand_in_any_order_and_in_long_chains() {
+    let link = |k: usize| format!("let c{k} = c{} + a/2^2\n", k + 1);
+    let forward: String = (0..3000).map(link).collect();
+    let chain = model(&format!("parameters a\n{forward}let c3000 = a\nclaim c0 = 751*a"));
+    assert!(equal(&chain, &chain.claims[0].left, &chain.claims[0].right));
+    let circle = mistake(&format!("parameters a\n{forward}let c3000 = c0\nclaim c0 = 751*a"));
+    assert_eq!(circle, "`c0` is defined by way of itself");
+    let assumed = mistake(&format!("parameters a\n{forward}let c3000 = a\nassume c0 > 0\nclaim a > 0"));
+    assert_eq!(assumed, "formulas refer to each other too deeply here");
+    let demands: String = (1..300).map(|k| format!("outlay[{k}] = p[{0}]*x[{0}]/2\n", k + 1)).collect();
+    let goods = model(&format!("goods 1..300\nprices p[i]\nincome m\nquantities x[i]\n{demands}outlay[300] = m/2"));
+    assert_eq!(shown(&goods, &goods.demands[298].share), "1/4");
+}
+
+#[test]
+fn formulas_may_be_nested_as_deeply_as_the_reader_allows() {
+    let nested = format!("{}a{}", "(1 + 1*(2 - (".repeat(60), ")))".repeat(60));
+    let deep = model(&format!("parameters a\nclaim {nested} = {nested}"));
+    assert!(equal(&deep, &deep.claims[0].left, &deep.claims[0].right));
+}

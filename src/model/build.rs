@@ -12,6 +12,7 @@ use crate::language::{self, Diagnostic, Source, Span};
 use super::evaluate::{Evaluator, Failed};
 use super::ground::{Conflict, Ground, establish};
 use super::names::{AbbreviationId, FamilyId, Names};
+use super::order::Item;
 use super::resolve::tuples;
 use super::script::{Covered, Defined, Script, Stated, plain_text, script};
 use super::symbols::Symbols;
@@ -29,7 +30,9 @@ pub(super) fn build(text: Rc<Text>, values: &[Value<'_>]) -> Result<Model, Vec<D
         Ok(ground) => ground,
         Err(conflict) => return Err(vec![contradiction(&text, &script, values, conflict)]),
     };
-    evaluator.naming.set(true);
+    if !evaluator.naming.replace(true) {
+        evaluator.forget();
+    }
     let content = content(&evaluator);
     let mistakes = evaluator.take_mistakes();
     let Some(content) = content.filter(|_| mistakes.is_empty()) else { return Err(mistakes) };
@@ -51,6 +54,14 @@ struct Content {
 }
 
 fn content(evaluator: &Evaluator<'_>) -> Option<Content> {
+    for item in &evaluator.script.order {
+        match item {
+            Item::Abbreviation(id) => evaluator.compute_abbreviation(*id),
+            Item::Demand(good) => {
+                let _ = evaluator.demand(*good, None);
+            }
+        }
+    }
     let abbreviations = abbreviations(evaluator);
     let goods = 0..evaluator.script.defined.len();
     let demands: Vec<Result<Demand, Failed>> =

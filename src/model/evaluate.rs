@@ -17,7 +17,7 @@ use crate::language::{Diagnostic, Function, Source};
 
 use super::messages;
 use super::names::{AbbreviationId, FamilyId};
-use super::resolve::{Node, NodeKind, OverNode, Slot};
+use super::resolve::{Node, NodeKind, OverNode, Slot, tuples};
 use super::script::{Defined, Script};
 use super::symbols::Symbols;
 use super::system::{Demand, Form};
@@ -41,7 +41,9 @@ enum Memo<T> {
 /// A logarithm that comes out as a longer sum than this is kept as one.
 const LONG_SUM: usize = 16;
 /// Formulas nested more deeply than this, through each other, are refused.
-const MOST_FRAMES: u32 = 1500;
+const MOST_FRAMES: u32 = 1000;
+/// What a step from one formula into another counts for.
+const FRAMES_OF_REFERENCE: u32 = 3;
 
 /// Computes formulas in a field.
 pub(super) struct Evaluator<'s> {
@@ -291,6 +293,7 @@ impl<'s> Evaluator<'s> {
             Memo::Open => {}
         }
         let node = &self.script.abbreviations[id.0];
+        self.frames.set(self.frames.get() + FRAMES_OF_REFERENCE);
         let result = self.compute(node, &mut goods.to_vec()).map(|value| {
             if !self.naming.get() {
                 return value;
@@ -300,10 +303,21 @@ impl<'s> Evaluator<'s> {
             self.shorten(Some(&name), &value);
             Rc::new(value)
         });
+        self.frames.set(self.frames.get() - FRAMES_OF_REFERENCE);
         if let Some(slot) = self.abbreviations.borrow_mut()[id.0].get_mut(place) {
             *slot = Memo::Closed(result.clone());
         }
         result
+    }
+
+    /// Computes all members of an abbreviation; what is wrong with them is reported.
+    pub fn compute_abbreviation(&self, id: AbbreviationId) {
+        let names = &self.script.declarations.names;
+        for goods in tuples(self.goods(), names.abbreviations[id.0].arity) {
+            if self.abbreviation(id, &goods, None).is_err() {
+                return;
+            }
+        }
     }
 
     /// The memo of an abbreviation; an open one is busy from now on.
@@ -342,7 +356,9 @@ impl<'s> Evaluator<'s> {
             }
             Memo::Open => {}
         }
+        self.frames.set(self.frames.get() + FRAMES_OF_REFERENCE);
         let result = self.define(good).map(Rc::new);
+        self.frames.set(self.frames.get() - FRAMES_OF_REFERENCE);
         self.demands.borrow_mut()[good] = Memo::Closed(result.clone());
         result
     }

@@ -17,6 +17,7 @@ use super::equations::{self, Elimination, Inserted, Solved, Unusable};
 use super::evaluate::{Evaluator, Failed};
 use super::feasibility::{self, Constraint};
 use super::messages;
+use super::order::Item;
 use super::requirements::{Need, Requirement, Survey};
 use super::resolve::{Node, tuples};
 use super::script::Stated;
@@ -47,6 +48,8 @@ struct Link<'s> {
 enum Turn<'a, 's> {
     Relation(&'a Link<'s>),
     Need(&'a Requirement<'s>),
+    /// Abbreviations and referred quantities of this depth.
+    Items(u32),
     /// The waiting equations up to this depth.
     Equations(u32),
 }
@@ -159,6 +162,7 @@ impl<'s> Builder<'_, 's> {
         'rounds: loop {
             for turn in &turns {
                 match turn {
+                    Turn::Items(depth) => self.compute_items(*depth),
                     Turn::Relation(link) => self.inequality(link)?,
                     Turn::Need(requirement) => self.need(requirement),
                     Turn::Equations(depth) if self.solve(&mut equations, *depth)? => {
@@ -172,6 +176,21 @@ impl<'s> Builder<'_, 's> {
         }
     }
 
+    /// Computes what formulas refer to, in an order in which no reference is deep.
+    fn compute_items(&self, depth: u32) {
+        let script = self.evaluator.script;
+        let quantities = script.declarations.names.quantities_are_used();
+        for item in script.order.iter().filter(|item| self.survey.item_depth(**item) == depth) {
+            match item {
+                Item::Abbreviation(id) => self.evaluator.compute_abbreviation(*id),
+                Item::Demand(good) if quantities => {
+                    let _ = self.evaluator.demand(*good, None);
+                }
+                Item::Demand(_) => {}
+            }
+        }
+    }
+
     /// At each depth relations come first, then equations, then needs, those of logarithms before those of divisors.
     fn turns<'b>(&self, inequalities: &'b [Link<'s>], requirements: &'b [Requirement<'s>]) -> Vec<Turn<'b, 's>> {
         type Order = (u32, u8, Option<Need>);
@@ -179,12 +198,15 @@ impl<'s> Builder<'_, 's> {
         for link in inequalities {
             turns.push(((self.survey.stated_depth(self.stated(link)), 0, None), Turn::Relation(link)));
         }
-        turns.extend(requirements.iter().map(|r| ((r.depth, 2, Some(r.need)), Turn::Need(r))));
+        turns.extend(requirements.iter().map(|r| ((r.depth, 3, Some(r.need)), Turn::Need(r))));
         let mut depths: Vec<u32> = turns.iter().map(|((depth, _, _), _)| *depth).collect();
         depths.push(u32::MAX);
         depths.sort_unstable();
         depths.dedup();
-        turns.extend(depths.into_iter().map(|depth| ((depth, 1, None), Turn::Equations(depth))));
+        for depth in depths {
+            turns.push(((depth, 1, None), Turn::Items(depth)));
+            turns.push(((depth, 2, None), Turn::Equations(depth)));
+        }
         turns.sort_by_key(|(order, _)| *order);
         turns.into_iter().map(|(_, turn)| turn).collect()
     }

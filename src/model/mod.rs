@@ -9,6 +9,7 @@ mod feasibility;
 mod ground;
 mod messages;
 mod names;
+mod order;
 mod outline;
 pub mod points;
 mod requirements;

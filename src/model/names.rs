@@ -298,6 +298,11 @@ impl Names {
         })
     }
 
+    /// Whether a formula mentions a quantity.
+    pub fn quantities_are_used(&self) -> bool {
+        self.families.iter().any(|family| family.role == Role::Quantity && family.used.get())
+    }
+
     /// The declared names that no formula mentions, with the statement word and the place; prices, income and
     /// quantities have their use by being declared.
     pub fn unused(&self) -> Vec<(String, Span)> {

@@ -1,15 +1,14 @@
 //! What the formulas of a file need in order to be defined: positive arguments of logarithms and bases of fractional
 //! powers, divisors that are not zero. Found by looking, without computing; the innermost come first.
 
-use std::cell::RefCell;
-
 use num_traits::{One, Signed, Zero};
 
 use crate::algebra::budget;
 use crate::algebra::generator::Role;
 use crate::language::{Function, Rational};
 
-use super::names::{AbbreviationId, FamilyId};
+use super::names::FamilyId;
+use super::order::Item;
 use super::resolve::{Node, NodeKind, Slot, tuples};
 use super::script::{Defined, Script, Stated};
 use super::system::Form;
@@ -39,20 +38,40 @@ pub(super) struct Requirement<'s> {
 /// Looks at the formulas of a script.
 pub(super) struct Survey<'s> {
     script: &'s Script,
-    abbreviation_depths: RefCell<Vec<Option<u32>>>,
-    demand_depths: RefCell<Vec<Option<u32>>>,
-    abbreviation_signs: RefCell<Vec<Option<bool>>>,
+    abbreviation_depths: Vec<u32>,
+    demand_depths: Vec<u32>,
+    /// Whether the abbreviation is positive by the way it is built.
+    abbreviation_signs: Vec<bool>,
 }
 
 impl<'s> Survey<'s> {
     /// A survey of the script.
     pub fn new(script: &'s Script) -> Survey<'s> {
         let abbreviations = script.abbreviations.len();
-        Survey {
+        let mut survey = Survey {
             script,
-            abbreviation_depths: RefCell::new(vec![None; abbreviations]),
-            demand_depths: RefCell::new(vec![None; script.defined.len()]),
-            abbreviation_signs: RefCell::new(vec![None; abbreviations]),
+            abbreviation_depths: vec![0; abbreviations],
+            demand_depths: vec![0; script.defined.len()],
+            abbreviation_signs: vec![false; abbreviations],
+        };
+        for item in &script.order {
+            match item {
+                Item::Abbreviation(id) => {
+                    let node = &script.abbreviations[id.0];
+                    survey.abbreviation_depths[id.0] = survey.depth(node);
+                    survey.abbreviation_signs[id.0] = survey.is_plainly_positive(node);
+                }
+                Item::Demand(good) => survey.demand_depths[*good] = survey.defined_depth(*good),
+            }
+        }
+        survey
+    }
+
+    /// How deep functions are nested in what an item stands for.
+    pub fn item_depth(&self, item: Item) -> u32 {
+        match item {
+            Item::Abbreviation(id) => self.abbreviation_depths[id.0],
+            Item::Demand(good) => self.demand_depths[good],
         }
     }
 
@@ -161,7 +180,7 @@ impl<'s> Survey<'s> {
                 let role = self.script.declarations.names.families[id.0].role;
                 role.is_positive() && !self.is_demanded(*id)
             }
-            NodeKind::Abbreviation(id, _) => self.is_abbreviation_positive(*id),
+            NodeKind::Abbreviation(id, _) => self.abbreviation_signs[id.0],
             NodeKind::Negative(_) | NodeKind::Faulty => false,
             NodeKind::Sum(terms) => terms.iter().all(|term| self.is_plainly_positive(term)),
             NodeKind::Product(factors) => factors.iter().all(|(factor, _)| self.is_plainly_positive(factor)),
@@ -177,18 +196,6 @@ impl<'s> Survey<'s> {
         over.members.len() > usize::from(over.except.is_some())
     }
 
-    fn is_abbreviation_positive(&self, id: AbbreviationId) -> bool {
-        let known = self.abbreviation_signs.borrow()[id.0];
-        if let Some(known) = known {
-            return known;
-        }
-        // one that goes in a circle is not positive by itself
-        self.abbreviation_signs.borrow_mut()[id.0] = Some(false);
-        let positive = self.is_plainly_positive(&self.script.abbreviations[id.0]);
-        self.abbreviation_signs.borrow_mut()[id.0] = Some(positive);
-        positive
-    }
-
     /// Whether a symbol is the name of a quantity that the file's own demands give.
     fn is_demanded(&self, id: FamilyId) -> bool {
         let role = self.script.declarations.names.families[id.0].role;
@@ -201,7 +208,7 @@ impl<'s> Survey<'s> {
             NodeKind::Number(_) | NodeKind::Pi | NodeKind::Faulty => 0,
             NodeKind::Symbol(id, slots) if self.is_demanded(*id) => self.quantity_depth(*id, slots),
             NodeKind::Symbol(..) => 0,
-            NodeKind::Abbreviation(id, _) => self.abbreviation_depth(*id),
+            NodeKind::Abbreviation(id, _) => self.abbreviation_depths[id.0],
             NodeKind::Negative(inner) => self.depth(inner),
             NodeKind::Sum(terms) => terms.iter().map(|term| self.depth(term)).max().unwrap_or(0),
             NodeKind::Product(factors) => factors.iter().map(|(factor, _)| self.depth(factor)).max().unwrap_or(0),
@@ -219,16 +226,6 @@ impl<'s> Survey<'s> {
         stated.sides.iter().map(|side| self.depth(side)).max().unwrap_or(0)
     }
 
-    fn abbreviation_depth(&self, id: AbbreviationId) -> u32 {
-        let known = self.abbreviation_depths.borrow()[id.0];
-        known.unwrap_or_else(|| {
-            self.abbreviation_depths.borrow_mut()[id.0] = Some(0);
-            let depth = self.depth(&self.script.abbreviations[id.0]);
-            self.abbreviation_depths.borrow_mut()[id.0] = Some(depth);
-            depth
-        })
-    }
-
     fn quantity_depth(&self, id: FamilyId, slots: &[Slot]) -> u32 {
         let own = self.script.declarations.names.families[id.0].good;
         let good = own.or(match slots {
@@ -236,28 +233,19 @@ impl<'s> Survey<'s> {
             _ => None,
         });
         match good {
-            Some(good) => self.demand_depth(good),
-            None => (0..self.script.defined.len()).map(|good| self.demand_depth(good)).max().unwrap_or(0),
+            Some(good) => self.demand_depths.get(good).copied().unwrap_or(0),
+            None => self.demand_depths.iter().copied().max().unwrap_or(0),
         }
     }
 
-    fn demand_depth(&self, good: usize) -> u32 {
-        let known = self.demand_depths.borrow().get(good).copied().unwrap_or(Some(0));
-        known.unwrap_or_else(|| {
-            self.demand_depths.borrow_mut()[good] = Some(0);
-            let depth = match &self.script.defined[good] {
-                Defined::By(place, _) => {
-                    let definition = &self.script.definitions[*place];
-                    self.depth(&definition.node) + u32::from(definition.form == Form::LogDemand)
-                }
-                Defined::Rest => {
-                    let others = (0..self.script.defined.len()).filter(|other| *other != good);
-                    others.map(|other| self.demand_depth(other)).max().unwrap_or(0)
-                }
-            };
-            self.demand_depths.borrow_mut()[good] = Some(depth);
-            depth
-        })
+    fn defined_depth(&self, good: usize) -> u32 {
+        match &self.script.defined[good] {
+            Defined::By(place, _) => {
+                let definition = &self.script.definitions[*place];
+                self.depth(&definition.node) + u32::from(definition.form == Form::LogDemand)
+            }
+            Defined::Rest => self.demand_depths.iter().copied().max().unwrap_or(0),
+        }
     }
 }
 

@@ -6,6 +6,7 @@ use crate::language::{
 
 use super::declarations::{self, Declarations, unknown_good};
 use super::names::Names;
+use super::order::{Item, computing_order};
 use super::outline::{Outline, Placed};
 use super::resolve::{Node, Resolver, free_indices};
 use super::system::Form;
@@ -55,6 +56,8 @@ pub(super) struct Script {
     pub assumed: Vec<Stated>,
     pub claims: Vec<Stated>,
     pub covered: Covered,
+    /// The order in which abbreviations and demands are computed.
+    pub order: Vec<Item>,
 }
 
 /// Looks up everything. Of a tree from which statements may be missing (it is not `whole`), only mistakes that no
@@ -84,7 +87,10 @@ pub(super) fn script(source: &Source, tree: &language::Model, whole: bool) -> Re
         return Err(mistakes);
     }
     let title = outline.title.map(|title| title.content.to_string());
-    Ok(Script { title, declarations, abbreviations, definitions, defined, assumed, claims, covered })
+    let order = Vec::new();
+    let script = Script { title, declarations, abbreviations, definitions, defined, assumed, claims, covered, order };
+    let order = computing_order(&script)?;
+    Ok(Script { order, ..script })
 }
 
 struct Writer<'a> {
