@@ -189,6 +189,16 @@ fn the_domain_is_what_the_formulas_need() {
 }
 
 #[test]
+fn an_assumed_sign_of_a_product_serves_its_logarithm() {
+    let product = model("parameters a, b\nassume a*b > 0\nclaim ln(a*b) = ln(b*a)\nclaim ln(a/b) > 0");
+    assert!(product.domain.is_empty());
+    let square = model("parameters x\nclaim ln(x^2) = 2*ln(x)");
+    assert_eq!(square.domain, [DomainCondition::Positive(parameter(&square, "x"))]);
+    let unknown = "parameters x\nclaim sqrt(x^2) = x";
+    assert_eq!(mistake(unknown), "`sqrt` needs a positive argument, and `x^2` cannot be shown to be positive");
+}
+
+#[test]
 fn a_symbolic_power_needs_a_base_of_known_sign() {
     let file = |assumption: &str| {
         format!(

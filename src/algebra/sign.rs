@@ -75,7 +75,7 @@ impl Field {
     pub fn sign(&self, e: &Element) -> Sign {
         let e = self.current(e);
         if let Some((coefficient, monomial)) = e.as_monomial() {
-            return Sign::of(&coefficient).times(self.monomial_sign(monomial));
+            return Sign::of(&coefficient).times(self.product_sign(monomial));
         }
         if e.is_zero() {
             return Sign::Zero;
@@ -111,6 +111,22 @@ impl Field {
     /// Whether a variable is built from no symbol but π.
     fn is_number(&self, var: Var) -> bool {
         self.support(var).iter().all(|v| !matches!(*self.kind(*v), Kind::Symbol(role) if role != Role::Pi))
+    }
+
+    /// The sign of a product: by its factors, or by a fact about the product of those whose own signs are unknown.
+    fn product_sign(&self, monomial: &Monomial) -> Sign {
+        let by_factors = self.monomial_sign(monomial);
+        let open = |(v, k): (Var, i32)| k % 2 != 0 && !matches!(self.variable_sign(v), Sign::Positive | Sign::Negative);
+        let decided = !matches!(by_factors, Sign::Unknown | Sign::NonZero);
+        if decided || monomial.iter().filter(|power| open(*power)).count() < 2 {
+            return by_factors;
+        }
+        let odd = Monomial::from_pairs(monomial.iter().filter(|power| open(*power)).map(|(v, _)| (v, 1)));
+        let settled = Monomial::from_pairs(monomial.iter().filter(|power| !open(*power)));
+        match self.stated_sign(&Poly::monomial(odd)).times(self.monomial_sign(&settled)) {
+            Sign::Unknown => by_factors,
+            stated => stated,
+        }
     }
 
     fn monomial_sign(&self, monomial: &Monomial) -> Sign {
@@ -221,7 +237,7 @@ impl Field {
     /// The sign of a polynomial as a combination of facts.
     fn stated_sign(&self, f: &Poly) -> Sign {
         let facts = self.current_facts();
-        let nonzero = facts.iter().any(|g| g.relation == Relation::NonZero && self.divides(f, &g.element));
+        let nonzero = facts.iter().any(|g| g.relation != Relation::NonNegative && self.divides(f, &g.element));
         for (candidate, strict, weak) in
             [(f.clone(), Sign::Positive, Sign::NonNegative), (f.neg(), Sign::Negative, Sign::NonPositive)]
         {

@@ -19,7 +19,7 @@ use super::feasibility::{self, Constraint};
 use super::messages;
 use super::order::Item;
 use super::requirements::{Need, Requirement, Survey};
-use super::resolve::{Node, tuples};
+use super::resolve::{Node, NodeKind, tuples};
 use super::script::Stated;
 use super::system::{Assumption, DomainCondition};
 
@@ -193,19 +193,21 @@ impl<'s> Builder<'_, 's> {
 
     /// At each depth relations come first, then equations, then needs, those of logarithms before those of divisors.
     fn turns<'b>(&self, inequalities: &'b [Link<'s>], requirements: &'b [Requirement<'s>]) -> Vec<Turn<'b, 's>> {
-        type Order = (u32, u8, Option<Need>);
+        type Order = (u32, u8, Option<Need>, bool);
         let mut turns: Vec<(Order, Turn<'b, 's>)> = Vec::new();
         for link in inequalities {
-            turns.push(((self.survey.stated_depth(self.stated(link)), 0, None), Turn::Relation(link)));
+            turns.push(((self.survey.stated_depth(self.stated(link)), 0, None, false), Turn::Relation(link)));
         }
-        turns.extend(requirements.iter().map(|r| ((r.depth, 3, Some(r.need)), Turn::Need(r))));
-        let mut depths: Vec<u32> = turns.iter().map(|((depth, _, _), _)| *depth).collect();
+        // a condition on a single name may make others superfluous
+        let compound = |r: &Requirement<'s>| !matches!(r.node.kind, NodeKind::Symbol(..) | NodeKind::Abbreviation(..));
+        turns.extend(requirements.iter().map(|r| ((r.depth, 3, Some(r.need), compound(r)), Turn::Need(r))));
+        let mut depths: Vec<u32> = turns.iter().map(|(order, _)| order.0).collect();
         depths.push(u32::MAX);
         depths.sort_unstable();
         depths.dedup();
         for depth in depths {
-            turns.push(((depth, 1, None), Turn::Items(depth)));
-            turns.push(((depth, 2, None), Turn::Equations(depth)));
+            turns.push(((depth, 1, None, false), Turn::Items(depth)));
+            turns.push(((depth, 2, None, false), Turn::Equations(depth)));
         }
         turns.sort_by_key(|(order, _)| *order);
         turns.into_iter().map(|(_, turn)| turn).collect()
