@@ -204,7 +204,8 @@ impl Field {
         Some(Poly::sum(parts).scale(&e.denominator().to_rational().recip()))
     }
 
-    fn is_of_parameters(&self, var: Var) -> bool {
+    /// Whether a variable is built from parameters alone.
+    pub(super) fn is_of_parameters(&self, var: Var) -> bool {
         self.support(var).iter().all(|v| match &*self.kind(*v) {
             Kind::Symbol(role) => !role.is_positive(),
             Kind::Sum { root, .. } => *root == 1,

@@ -19,7 +19,7 @@ impl Field {
     /// The element as a formula: the author's abbreviations where they still stand, common factors in front, powers of
     /// one base together, terms in the order of declaration.
     pub fn formula(&self, e: &Element) -> Formula {
-        let e = self.folded(&self.current(e));
+        let e = self.folded(&self.parted(&self.current(e)));
         if e.len() < 2 {
             return self.terms_formula(&e);
         }
@@ -31,6 +31,21 @@ impl Field {
         }
         let (above, below) = self.single_term(&outside);
         Formula::quotient(Formula::product(vec![above, inside]), below)
+    }
+
+    /// The element with the coefficient of each function of prices reduced by itself, where that is shorter:
+    /// (f − t f + g)/((1 − t)(1 − s)) with g/(1 − t) apart from f/(1 − s).
+    fn parted(&self, e: &Element) -> Element {
+        let divided =
+            |v: Var| e.low_degree(v) < 0 && matches!(*self.kind(v), Kind::Sum { .. }) && self.is_of_parameters(v);
+        if e.len() < 2 || e.len() > MOST_FACTORED || !e.vars().into_iter().any(divided) {
+            return e.clone();
+        }
+        let parameter = |v: Var| self.is_parameter(v) || self.is_of_parameters(v);
+        let groups = e.collect(|v| !parameter(v));
+        let reduced = groups.into_iter().map(|(outside, inside)| &self.reduce(&inside) * &Poly::monomial(outside));
+        let parted = Poly::sum(reduced.collect());
+        if parted.len() < e.len() { parted } else { e.clone() }
     }
 
     /// A sum without a common factor; as a product where it is one and not too long to look.

@@ -88,6 +88,8 @@ fn recover_nested(model: &Model, prover: &mut Prover<'_>, depth: u32) -> Recover
     match search::search(&system, model.utility, prover) {
         Err(reason) => Recovered::NotFound { reason, existence: true },
         Ok(mut found) => {
+            // what the assumptions exclude anyway needs no mention
+            found.conditions.retain(|e| !model.field.sign(e).excludes_zero());
             found.cases = cases::cases(model, &found.conditions, depth);
             Recovered::Found(found)
         }
