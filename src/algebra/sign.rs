@@ -291,18 +291,22 @@ impl Field {
         // a multiple by a positive monomial keeps what is of unknown sign: a fact without it cannot help
         let unsettled = monomial.vars().into_iter().find(|v| !self.variable_sign(*v).excludes_zero());
         let helps = |g: &&Rc<Fact>| g.relation != Relation::NonZero && unsettled.is_none_or(|v| g.element.contains(v));
+        // the shortest rest first: where f is a fact, the first step ends it
+        let mut rests: Vec<(Poly, bool)> = Vec::new();
         for fact in facts.iter().filter(helps) {
-            for step in self.steps(f, &monomial, &fact.element) {
-                if *trials == 0 {
-                    return Sign::Unknown;
-                }
-                *trials -= 1;
-                budget::spend(1 + f.len() as u64);
-                let strict = strict || fact.relation == Relation::Positive;
-                let found = self.combination(&(f - &step), facts, deep - 1, strict, trials);
-                if found != Sign::Unknown {
-                    return found;
-                }
+            let strict = strict || fact.relation == Relation::Positive;
+            rests.extend(self.steps(f, &monomial, &fact.element).into_iter().map(|step| (f - &step, strict)));
+        }
+        budget::spend(1 + rests.iter().map(|(rest, _)| rest.len() as u64).sum::<u64>());
+        rests.sort_by_key(|(rest, _)| rest.len());
+        for (rest, strict) in rests {
+            if *trials == 0 {
+                return Sign::Unknown;
+            }
+            *trials -= 1;
+            let found = self.combination(&rest, facts, deep - 1, strict, trials);
+            if found != Sign::Unknown {
+                return found;
             }
         }
         Sign::Unknown
