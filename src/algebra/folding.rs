@@ -69,9 +69,6 @@ fn fold_group(c: &Poly, symbol: Var, value: &Poly) -> Poly {
 
 /// Replaces monomials whose powers of the value's variables are one multiple of those in the value.
 fn fold_monomial(e: &Element, symbol: Var, value: &Monomial) -> Element {
-    if value.len() < 2 {
-        return e.clone();
-    }
     let terms = e.terms().map(|(m, c)| {
         let mut ratios = value.iter().map(|(v, k)| (m.exponent(v), k));
         let multiple = ratios.next().filter(|(own, k)| *own != 0 && own % k == 0).map(|(own, k)| own / k);

@@ -23,6 +23,7 @@ pub mod number;
 pub mod polynomial;
 pub mod radical;
 pub mod readable;
+pub mod reading_order;
 pub mod relation;
 pub mod retirement;
 pub mod sign;

@@ -124,50 +124,47 @@ impl Field {
         }
     }
 
+    /// A sum in reading order, the terms of one function of prices and income together: a p + (1 − a) q.
     pub(super) fn sum_formula(&self, e: &Poly) -> Formula {
         if e.len() < 2 {
             return self.terms_formula(e);
         }
-        let mut terms: Vec<(Monomial, Rational)> = e.terms().map(|(m, c)| (m.clone(), c)).collect();
-        let plus = terms.iter().any(|(_, c)| c.is_positive());
-        terms.sort_by_cached_key(|(m, c)| (m.is_one() && c.is_negative() && plus, self.reading_order(m)));
-        Formula::sum(terms.into_iter().map(|(m, c)| self.terms_formula(&Poly::term(&c, m))).collect())
-    }
-
-    /// Parameters alone first, then by how many prices and functions a term holds, then by declaration.
-    fn reading_order(&self, m: &Monomial) -> (usize, Vec<(u8, usize, i32)>) {
-        let moving = m.iter().filter(|(v, _)| !self.is_parameter(*v)).count();
-        let mut vars: Vec<(u8, usize, i32)> = m
-            .iter()
-            .map(|(v, k)| {
-                let (class, index) = self.place(v);
-                (class, index, k)
-            })
-            .collect();
-        vars.sort_unstable();
-        (moving, vars)
-    }
-
-    /// Where a variable stands in the order of reading: functions of one symbol go with it.
-    fn place(&self, var: Var) -> (u8, usize) {
-        let of_base = |log: Var, class: u8| match &*self.kind(log) {
-            Kind::Ln(Base::Var(base)) => (class, base.index()),
-            _ => (class + 2, log.index()),
-        };
-        match &*self.kind(var) {
-            Kind::Symbol(_) if self.is_parameter(var) => (0, var.index()),
-            Kind::Symbol(_) => (1, var.index()),
-            Kind::Exp(argument) => match self.single_log(argument) {
-                Some((log, _)) => of_base(log, 1),
-                None => (4, var.index()),
-            },
-            Kind::Ln(_) => of_base(var, 2),
-            _ => (4, var.index()),
+        let mut groups = Vec::new();
+        for (outside, inside) in e.collect(|v| !self.is_parameter(v) && !self.is_of_parameters(v)) {
+            if inside.len() == 1 || outside.is_one() {
+                groups.extend(inside.terms().map(|(m, c)| Poly::term(&c, m.mul(&outside))));
+            } else {
+                groups.push(inside.mul_monomial(&outside));
+            }
         }
+        let plus = groups.iter().any(|group| group.raw_terms().iter().any(|(_, c)| c.signum() > 0));
+        groups.sort_by_cached_key(|group| {
+            let late = plus && group.as_constant().is_some_and(|c| c.is_negative());
+            (late, group.leading().map(|(m, _)| self.reading_order(m)))
+        });
+        let whole = groups.len() == 1;
+        Formula::sum(groups.iter().map(|g| if whole { self.plain_sum(g) } else { self.group_formula(g) }).collect())
     }
 
-    fn is_parameter(&self, var: Var) -> bool {
-        matches!(self.role(var), Some(super::generator::Role::Parameter | super::generator::Role::Unknown))
+    /// Terms that share a function of prices and income: that function times the sum of their coefficients.
+    fn group_formula(&self, group: &Poly) -> Formula {
+        if group.len() < 2 {
+            return self.terms_formula(group);
+        }
+        let Some((outside, coefficient)) =
+            group.collect(|v| !self.is_parameter(v) && !self.is_of_parameters(v)).into_iter().next()
+        else {
+            return self.plain_sum(group);
+        };
+        let (above, below) = self.single_term(&Poly::monomial(outside));
+        Formula::quotient(Formula::product(vec![self.formula(&coefficient), above]), below)
+    }
+
+    /// A sum term by term.
+    fn plain_sum(&self, e: &Poly) -> Formula {
+        let mut terms: Vec<(Monomial, Rational)> = e.terms().map(|(m, c)| (m.clone(), c)).collect();
+        terms.sort_by_cached_key(|(m, _)| self.reading_order(m));
+        Formula::sum(terms.into_iter().map(|(m, c)| self.terms_formula(&Poly::term(&c, m))).collect())
     }
 
     /// Numerator and denominator of a single term.
@@ -232,7 +229,7 @@ impl Field {
     }
 
     /// exp(e·ln b) with a single logarithm: the logarithm and e.
-    fn single_log(&self, argument: &Element) -> Option<(Var, Element)> {
+    pub(super) fn single_log(&self, argument: &Element) -> Option<(Var, Element)> {
         let argument = self.current(argument);
         let mut found = None;
         for var in argument.vars() {
@@ -270,14 +267,6 @@ impl Field {
                 Kind::Ln(Base::Sum(value)) => (3, log.index(), self.value_formula(value)),
                 _ => (3, log.index(), self.variable_formula(*log)),
             },
-        }
-    }
-
-    fn class(&self, var: Var) -> u8 {
-        match self.role(var) {
-            Some(super::generator::Role::Parameter | super::generator::Role::Unknown | super::generator::Role::Pi) => 1,
-            Some(_) => 2,
-            None => 3,
         }
     }
 

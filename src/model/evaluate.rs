@@ -10,7 +10,7 @@ use rustc_hash::FxHashMap;
 
 use crate::algebra::budget;
 use crate::algebra::field::Field;
-use crate::algebra::generator::{Blocked, Built, Element, Role, Special};
+use crate::algebra::generator::{Blocked, Built, Element, Kind, Role, Special};
 use crate::algebra::monomial::Var;
 use crate::algebra::polynomial::Poly;
 use crate::language::{Diagnostic, Function, Source};
@@ -103,12 +103,13 @@ impl<'s> Evaluator<'s> {
     fn shorten(&self, name: Option<&str>, element: &Element) {
         let Some(name) = name else { return };
         match element.as_var() {
-            Some(var) => self.field.shorthand(var, element),
-            None if element.as_monomial().is_some_and(|(_, m)| m.len() > 1) => {
+            Some(var) if matches!(*self.field.kind(var), Kind::Sum { .. }) => self.field.shorthand(var, element),
+            Some(var) if matches!(*self.field.kind(var), Kind::Symbol(_)) => {}
+            _ if element.as_monomial().is_some_and(|(c, _)| num_traits::One::is_one(&c)) => {
                 let symbol = self.field.symbol(name, Role::Unknown);
                 self.field.shorthand(symbol, element);
             }
-            None => {}
+            _ => {}
         }
     }
 
