@@ -68,6 +68,7 @@ fn rational_functions_and_roots() {
         "sqrt(p + sqrt(p*q + r^2))",
         "p*ln(1+r/p)*(p+q)/(p*q + r*sqrt(p*q))",
         "(p+q)/(p^2+3*p*q+q^2)*ln(p)",
+        "(p+2*q)/(a*q + b*q + 3*q^a)",
     ] {
         comes_back(&g, "p q r", f);
     }

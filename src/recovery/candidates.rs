@@ -142,8 +142,13 @@ impl Bounds {
                 bounds.roots.push((*var, *root as i32));
                 continue;
             }
-            let reach = acting.iter().map(|(low, _)| low.exponent(*var)).max().unwrap_or(0);
-            let least = acting.iter().map(|(_, high)| high.exponent(*var)).min().unwrap_or(0);
+            // at first as if nothing cancelled in what multiplies a candidate
+            let (reach, least) = if stage == 0 {
+                let reach = acting.iter().map(|(low, _)| low.exponent(*var)).max();
+                (reach.unwrap_or(0), acting.iter().map(|(_, high)| high.exponent(*var)).min().unwrap_or(0))
+            } else {
+                (factor_high.exponent(*var), factor_low.exponent(*var))
+            };
             let mut low = target_low.exponent(*var) - reach;
             let mut high = target_high.exponent(*var) - least;
             // a rate that itself moves with the variable (of e^(kp), say) reaches down to the power zero
