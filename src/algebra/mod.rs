@@ -28,3 +28,4 @@ pub mod relation;
 pub mod retirement;
 pub mod sign;
 pub mod sign_rules;
+pub mod square_sign;

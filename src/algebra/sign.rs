@@ -192,16 +192,16 @@ impl Field {
         if stated != Sign::Unknown {
             return outside.times(stated);
         }
-        let logarithmic = self.logarithmic_sign(&split.part);
-        if logarithmic != Sign::Unknown {
-            return outside.times(logarithmic);
+        let grouped = self.sign_of_groups(&split.part);
+        if grouped != Sign::Unknown {
+            return outside.times(grouped);
         }
         let factored = factor(&split.part);
         factored.factors.iter().fold(outside.times(Sign::of(&factored.content)), |s, (part, k)| {
             let own = match self.terms_sign(part) {
                 Sign::Unknown if *part == split.part => Sign::Unknown,
                 Sign::Unknown => match self.stated_sign(part) {
-                    Sign::Unknown => self.logarithmic_sign(part),
+                    Sign::Unknown => self.sign_of_groups(part),
                     known => known,
                 },
                 known => known,
@@ -232,6 +232,17 @@ impl Field {
             }
         }
         total
+    }
+
+    /// The sign from logarithms taken together, or from squares.
+    fn sign_of_groups(&self, f: &Poly) -> Sign {
+        match self.logarithmic_sign(f) {
+            Sign::Unknown => match self.square_sign(f) {
+                Sign::Unknown => self.square_sign(&f.neg()).negated(),
+                known => known,
+            },
+            known => known,
+        }
     }
 
     /// The sign of a polynomial as a combination of facts.

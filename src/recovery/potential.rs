@@ -39,7 +39,7 @@ impl Potential {
     /// F as an element. A base of unknown sign enters as ln(base²)/2; fails where it is not known to be non-zero.
     pub fn value(&self, field: &Field) -> Built {
         let mut total = field.current(&self.regular);
-        for (coefficient, base) in &self.logs {
+        for (coefficient, base) in &self.settled(field) {
             let log = match field.sign(base) {
                 Sign::Positive => field.ln(base)?,
                 Sign::Negative => field.ln(&base.neg())?,
@@ -50,10 +50,23 @@ impl Potential {
         Ok(total)
     }
 
+    /// The logarithms, those of unknown sign that share a coefficient taken together: the product may have a known sign.
+    fn settled(&self, field: &Field) -> Vec<(Element, Element)> {
+        let (mut settled, unknown): (Vec<_>, Vec<_>) =
+            self.logs.iter().cloned().partition(|(_, base)| field.sign(base).excludes_zero());
+        for (coefficient, base) in unknown {
+            match settled.iter_mut().find(|(c, _)| *c == coefficient) {
+                Some((_, product)) => *product = field.reduce(&field.product(product, &base)),
+                None => settled.push((coefficient, base)),
+            }
+        }
+        settled
+    }
+
     /// exp(F) up to a constant factor, the bases as powers: an integer power needs no sign.
     pub fn exponential(&self, field: &Field) -> Built {
         let mut total = field.exp(&self.regular)?;
-        for (coefficient, base) in &self.logs {
+        for (coefficient, base) in &self.settled(field) {
             let part = power_of_either_sign(field, base, coefficient)?;
             total = field.product(&field.current(&total), &part);
         }
