@@ -18,6 +18,7 @@ use super::fractions::Moving;
 use super::frame::{Class, Frame};
 use super::linear_solve::{self, Equation};
 use super::potential::Potential;
+use super::special_integrals::{self, SpecialIntegral};
 
 /// The ansatz for one class: the denominator D, the numerators over P·D, and the poles whose logarithms may occur.
 pub struct Ansatz<'f, 'a, 'm> {
@@ -31,6 +32,8 @@ pub struct Ansatz<'f, 'a, 'm> {
     pub slopes: Vec<Poly>,
     /// What may stand under a new logarithm.
     pub logs: Vec<LogBase>,
+    /// Integrals that are special functions.
+    pub specials: Vec<SpecialIntegral>,
 }
 
 /// What may stand under a new logarithm.
@@ -50,17 +53,19 @@ const MOST_UNKNOWNS: usize = 1500;
 /// The potential of a class, if the ansatz has a solution.
 pub fn integrate(frame: &Frame, class: &Class) -> Option<Potential> {
     let ansatz = Ansatz::new(frame, class)?;
-    let mut tried = BTreeSet::new();
-    for stage in 0..STAGES {
-        let monomials = candidates::monomials(&ansatz, stage, MOST_UNKNOWNS);
-        if !tried.insert(monomials.len()) {
-            continue;
-        }
-        if let Some(found) = ansatz.solve(&monomials) {
-            return Some(found);
-        }
+    if let Some(found) = ansatz.search() {
+        return Some(found);
     }
-    None
+    if special_integrals::candidates(frame, &grading_key(frame, class)).is_empty() {
+        return None;
+    }
+    // their making may have retired variables
+    frame.moving.forget();
+    let class = class.current(frame.moving);
+    let frame = Frame::new(frame.moving, &class)?;
+    let mut ansatz = Ansatz::new(&frame, &class)?;
+    ansatz.specials = special_integrals::candidates(&frame, &grading_key(&frame, &class));
+    ansatz.search()
 }
 
 impl<'f, 'a, 'm> Ansatz<'f, 'a, 'm> {
@@ -82,7 +87,16 @@ impl<'f, 'a, 'm> Ansatz<'f, 'a, 'm> {
         let targets = class.numerators.iter().map(|n| moving.field.expand(&(n * &factor))).collect();
         let slopes = slopes(frame, &denominator);
         let logs = if key.is_one() { log_candidates(frame, class) } else { Vec::new() };
-        Some(Ansatz { frame, denominator, targets, slopes, logs })
+        Some(Ansatz { frame, denominator, targets, slopes, logs, specials: Vec::new() })
+    }
+
+    /// Tries growing sets of monomials.
+    fn search(&self) -> Option<Potential> {
+        let mut tried = BTreeSet::new();
+        (0..STAGES).find_map(|stage| {
+            let monomials = candidates::monomials(self, stage, MOST_UNKNOWNS);
+            if tried.insert(monomials.len()) { self.solve(&monomials) } else { None }
+        })
     }
 
     /// P·D·θᵢ(ν/D) for each i.
@@ -126,6 +140,10 @@ impl<'f, 'a, 'm> Ansatz<'f, 'a, 'm> {
         let moving = self.frame.moving;
         let mut columns: Vec<Vec<Poly>> = monomials.iter().map(|m| self.image(m)).collect();
         columns.extend(self.logs.iter().map(|base| self.log_image(*base)));
+        let below = self.denominator_value();
+        for special in &self.specials {
+            columns.push(special.image.iter().map(|e| moving.field.expand(&(e * &below))).collect());
+        }
         let equations = self.equations(&columns);
         let solution = linear_solve::solve(moving.field, equations, columns.len())?;
         let mut terms = Vec::new();
@@ -142,7 +160,11 @@ impl<'f, 'a, 'm> Ansatz<'f, 'a, 'm> {
                 logs.push((value.clone(), moving.field.current(&Poly::var(var))));
             }
         }
-        let regular = self.over_denominator(&Poly::sum(terms));
+        let mut regular = self.over_denominator(&Poly::sum(terms));
+        for (special, value) in self.specials.iter().zip(&solution.values[monomials.len() + self.logs.len()..]) {
+            let part = moving.field.product(value, &moving.field.current(&special.value));
+            regular = &moving.field.current(&regular) + &part;
+        }
         Some(Potential { regular, logs, pivots: solution.pivots })
     }
 

@@ -39,6 +39,12 @@ impl Class {
         self
     }
 
+    /// The class in variables that are still in use.
+    pub fn current(&self, moving: &Moving) -> Class {
+        let numerators = self.numerators.iter().map(|n| moving.field.expand(n)).collect();
+        Class { numerators, denominator: self.denominator.clone() }
+    }
+
     /// The moving variables of the numerators.
     pub fn variables(&self, moving: &Moving) -> BTreeSet<Var> {
         self.numerators.iter().flat_map(Poly::vars).filter(|v| moving.moves(*v)).collect()

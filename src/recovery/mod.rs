@@ -22,6 +22,7 @@ pub mod proposal;
 pub mod riccati;
 pub mod search;
 pub mod span;
+pub mod special_integrals;
 pub mod symmetry_field;
 pub mod system;
 

@@ -1,6 +1,6 @@
 //! What a method proposes before anything is proven.
 
-use crate::algebra::field::Field;
+use crate::algebra::field::{Field, Relation};
 use crate::algebra::generator::Element;
 use crate::algebra::monomial::Var;
 use crate::algebra::polynomial::Poly;
@@ -67,6 +67,17 @@ impl Proposal {
         Some(self)
     }
 
+    /// The proposal with the sign of ∂v/∂m looked for where quantities are positive, if it is not known yet.
+    pub fn with_orientation(mut self, system: &System) -> Proposal {
+        let field = system.field;
+        if let (Sign::Unknown | Sign::NonZero, Some(v)) = (self.rising, &self.indirect_utility) {
+            let slope = field.derivative(v, system.income);
+            let quantities: Vec<_> = system.demands.iter().map(|x| (x.clone(), Relation::Positive)).collect();
+            self.rising = field.suppose(&quantities, || field.sign(&slope));
+        }
+        self
+    }
+
     /// The proposal with powers of one sum brought together.
     pub fn gathered(mut self, field: &Field) -> Proposal {
         self.indirect_utility = self.indirect_utility.map(|v| gathered(field, &v));
@@ -83,8 +94,7 @@ impl Proposal {
         let turn = |e: &Element| field.substitute(e, &negative).ok();
         self.indirect_utility = self.indirect_utility.map(|v| v.neg());
         self.positive = self.positive.iter().filter_map(turn).collect();
-        let facts: Vec<_> =
-            self.positive.iter().map(|e| (e.clone(), crate::algebra::field::Relation::Positive)).collect();
+        let facts: Vec<_> = self.positive.iter().map(|e| (e.clone(), Relation::Positive)).collect();
         self.expenditure = self.expenditure.and_then(|e| field.suppose(&facts, || turn(&e)));
         self.rising = Sign::Positive;
         self
