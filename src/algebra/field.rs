@@ -315,7 +315,7 @@ impl Field {
     }
 
     /// N for a named sum R with Rᴺ = value, 1 for other variables.
-    pub(super) fn root_index(&self, var: Var) -> u32 {
+    pub fn root_index(&self, var: Var) -> u32 {
         match &*self.kind(var) {
             Kind::Sum { root, .. } => *root,
             _ => 1,

@@ -109,6 +109,11 @@ impl Field {
         for (var, power) in denominator.iter_mut() {
             let Kind::Sum { value, .. } = &*self.kind(*var) else { continue };
             let value = self.expand(value);
+            if let Some(number) = value.as_constant().filter(|q| *q != Rational::from_integer(0.into())) {
+                // the root of a number: no denominator is left
+                *numerator = numerator.scale(&num_traits::Pow::pow(number.recip(), *power));
+                *power = 0;
+            }
             if value.len() < 2 {
                 continue;
             }

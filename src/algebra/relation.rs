@@ -65,7 +65,7 @@ pub fn over_one_denominator(field: &Field, elements: &[Element]) -> Vec<Poly> {
         .map(|(numerator, denominator)| {
             let missing = common.iter().filter_map(|(var, exponent)| {
                 let has = denominator.iter().find(|(v, _)| v == var).map_or(0, |(_, k)| *k);
-                (exponent > &has).then(|| (*var, (exponent - has) as i32))
+                (exponent > &has).then(|| (*var, ((exponent - has) * field.root_index(*var)) as i32))
             });
             let factor = Poly::term(&Rational::from_integer(1.into()), Monomial::from_pairs(missing));
             field.expand(&(&numerator * &factor))

@@ -23,7 +23,6 @@ pub mod riccati;
 pub mod search;
 pub mod span;
 pub mod special_integrals;
-pub mod symmetry_field;
 pub mod system;
 
 use crate::algebra::field::Field;

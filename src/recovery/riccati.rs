@@ -15,7 +15,6 @@ use super::invert;
 use super::potential::potential;
 use super::proposal::{Proposal, Working};
 use super::span::Reduced;
-use super::symmetry_field;
 use super::system::System;
 
 /// The preferences of a quadratic system, in the coordinate of the system; `None` where no particular solution or no
@@ -30,8 +29,7 @@ fn particular_solution(system: &System, prices: &Moving, reduced: &Reduced) -> O
     let mut candidates = vec![Poly::zero()];
     candidates.extend(in_sight(system, reduced));
     candidates.extend(from_midpoints(prices, reduced));
-    let found = candidates.into_iter().map(|z| prices.field.reduce(&z)).find(|z| is_solution(prices, reduced, z));
-    found.or_else(|| symmetry_field::particular_solution(prices, reduced))
+    candidates.into_iter().map(|z| prices.field.reduce(&z)).find(|z| is_solution(prices, reduced, z))
 }
 
 /// Whether dz₀ = a + b z₀ + c z₀².
