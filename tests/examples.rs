@@ -57,7 +57,7 @@ fn appendices() {
 
 #[test]
 fn data() {
-    for name in ["three-staples", "lopsided-shares", "glass-and-clay", "lemmas", "river-power"] {
+    for name in ["three-staples", "money-illusion", "glass-and-clay", "lemmas", "river-power", "open-air-theatre"] {
         let model = Path::new(env!("CARGO_MANIFEST_DIR")).join(format!("examples/{name}.demand"));
         snapshot(&format!("json-{name}"), &mainspring(&["vet", "--as", "json"], &model).0);
     }

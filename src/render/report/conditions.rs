@@ -3,12 +3,12 @@
 use crate::conditions::{Condition, Coordinates, Finding, Verdict};
 use crate::proof::{Rule, Statement};
 use crate::render::document::{Block, Equation, Inline, Relation};
-use crate::render::expression::{Expression, Mark};
+use crate::render::expression::{Expression, Mark, Object};
 use crate::render::notation::Notation;
 use crate::render::report::derivation::{coordinates, heading, logarithm, paragraph};
 use crate::render::report::verdicts;
 use crate::render::report::words::{equation, text};
-use crate::render::report::working::Scribe;
+use crate::render::report::working::{Scribe, square};
 
 /// The section on one condition.
 pub fn section(scribe: &Scribe<'_>, finding: &Finding) -> Vec<Block> {
@@ -21,6 +21,9 @@ pub fn section(scribe: &Scribe<'_>, finding: &Finding) -> Vec<Block> {
     blocks.extend(opening(scribe, finding));
     for id in &finding.steps {
         blocks.extend(reason(scribe, *id));
+        if scribe.derivation.step(*id).is_some_and(|step| *step.rule() == Rule::Laplacian) {
+            blocks.push(Block::Display(vec![sum_of_squares(scribe.notation)]));
+        }
         blocks.extend(scribe.step(*id));
     }
     blocks.push(Block::Paragraph(conclusion(scribe.notation, finding)));
@@ -134,8 +137,20 @@ fn curvature_opening(notation: &Notation<'_>) -> Vec<Block> {
 
 /// vᵀ S v.
 pub fn quadratic_form(notation: &Notation<'_>) -> Expression {
-    let transposed = crate::render::expression::Object::new("v").marked(Mark::Transpose);
+    let transposed = Object::new("v").marked(Mark::Transpose);
     Expression::Product(vec![transposed.into(), notation.slutsky().into(), Expression::symbol("v")])
+}
+
+/// vᵀSv = −½ Σᵢ Σⱼ pᵢ pⱼ Sᵢⱼ (vᵢ/pᵢ − vⱼ/pⱼ)².
+fn sum_of_squares(notation: &Notation<'_>) -> Equation {
+    let v = |index: &str| Expression::from(Object::new("v").at(index));
+    let ratio = |index: &str| Expression::Quotient(Box::new(v(index)), Box::new(notation.price_letter(index)));
+    let gap = Expression::Sum(vec![ratio("i"), Expression::negative(ratio("j"))]);
+    let entry = Expression::from(notation.slutsky().at("i").at("j"));
+    let term = Expression::Product(vec![notation.price_letter("i"), notation.price_letter("j"), entry, square(gap)]);
+    let sum = Expression::total("i", Expression::total("j", term));
+    let half = Expression::Number(num_rational::Ratio::new(1.into(), 2.into()));
+    Equation::equal(quadratic_form(notation), Expression::negative(Expression::Product(vec![half, sum])))
 }
 
 /// Why a step of the curvature ladder settles the matter.
@@ -147,7 +162,7 @@ fn reason(scribe: &Scribe<'_>, id: crate::proof::StepId) -> Option<Block> {
         }
         (Statement::Semidefinite(_), Rule::Laplacian) => {
             "Its off-diagonal entries are nonnegative and its rows and columns sum to zero; so its quadratic form is minus \
-             a sum of squares with nonnegative weights, one for each pair of goods."
+             a sum of squares with nonnegative weights:"
         }
         (Statement::Semidefinite(_), Rule::Characteristic { without: Some(_) }) => {
             "One row and column may be left out, since rows and columns sum to zero; the coefficients of the \

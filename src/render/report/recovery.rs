@@ -61,7 +61,7 @@ fn steps(notation: &Notation<'_>, working: &Working) -> Vec<Block> {
     if letter != z {
         words.extend([text(" Put "), equation(letter.clone(), z), text(". Then")]);
     } else {
-        words.push(text(" Thus"));
+        words.extend([text(" Thus, with "), Inline::math(letter.clone()), text(" for expenditure,")]);
     }
     blocks.push(Block::Paragraph(words));
     blocks.push(Block::Display(slopes(notation, working, &letter)));
@@ -143,9 +143,9 @@ fn identity(scribe: &Scribe<'_>, id: StepId) -> Vec<Block> {
         "Roy's identity" => "Roy's identity holds:",
         "Shephard's lemma" => "Shephard's lemma holds:",
         _ => {
-            let inverse = equation(notation.expenditure_at_indirect_utility(), notation.income());
-            let words = text("Expenditure and indirect utility are inverse to each other: ");
-            return vec![Block::Paragraph(vec![words, inverse, text(".")])];
+            let inverse = Equation::equal(notation.expenditure_at_indirect_utility(), notation.income());
+            let words = paragraph("Expenditure and indirect utility are inverse to each other:");
+            return vec![words, Block::Display(vec![inverse])];
         }
     };
     std::iter::once(paragraph(words)).chain(scribe.step(id)).collect()

@@ -112,7 +112,7 @@ impl Scribe<'_> {
     /// An element, by its name where it is one of the demands.
     fn element(&self, e: &Element) -> Expression {
         let demands = &self.notation.model().demands;
-        match demands.iter().position(|demand| e.len() > 1 && demand.quantity == *e) {
+        match demands.iter().position(|demand| !e.is_constant() && demand.quantity == *e) {
             Some(good) => self.notation.quantity(good),
             None => self.notation.element(e),
         }
