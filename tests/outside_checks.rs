@@ -105,13 +105,12 @@ fn largest_eigenvalue(matrix: &[Vec<f64>]) -> f64 {
 }
 
 fn rotate(a: &mut [Vec<f64>], i: usize, j: usize, c: f64, s: f64) {
-    let n = a.len();
     for row in a.iter_mut() {
         (row[i], row[j]) = (c * row[i] - s * row[j], s * row[i] + c * row[j]);
     }
-    for k in 0..n {
-        (a[i][k], a[j][k]) = (c * a[i][k] - s * a[j][k], s * a[i][k] + c * a[j][k]);
-    }
+    let (above, below) = (a[i].clone(), a[j].clone());
+    a[i] = above.iter().zip(&below).map(|(x, y)| c * x - s * y).collect();
+    a[j] = above.iter().zip(&below).map(|(x, y)| s * x + c * y).collect();
 }
 
 #[test]
@@ -150,11 +149,11 @@ fn formula(model_text: &str, utility: &str, formula: &str) -> Expr {
     let text = format!("{declared}claim {formula} = {utility}\n");
     let source = Source::new("formula", text);
     let tree = language::read(&source).unwrap_or_else(|faults| panic!("{}", faults[0].render(&source)));
-    let claims = tree.statements.into_iter().filter_map(|located| match located.statement {
+    let mut claims = tree.statements.into_iter().filter_map(|located| match located.statement {
         Statement::Claim(Claim::Relation(relation)) => Some(relation.first),
         _ => None,
     });
-    claims.last().unwrap()
+    claims.next_back().unwrap()
 }
 
 /// Income along the compensated path: de/dt = Σ x_i(p(t), e) dp_i/dt, by the classical Runge–Kutta method.

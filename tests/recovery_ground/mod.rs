@@ -39,12 +39,6 @@ impl Ground {
         var
     }
 
-    pub fn assume(&self, text: &str) {
-        let relation = if text.contains("!=") { Relation::NonZero } else { Relation::Positive };
-        let (left, right) = text.split_once(if text.contains("!=") { "!=" } else { ">" }).expect("a relation");
-        self.field.assume(&(&self.read(left) - &self.read(right)), relation);
-    }
-
     pub fn var(&self, name: &str) -> Var {
         self.vars.iter().find(|(n, _)| n == name).map(|(_, v)| *v).unwrap_or_else(|| panic!("{name} is not declared"))
     }
