@@ -46,7 +46,7 @@ fn options(command: &Command) -> &Options {
 
 /// How long one model may stay silent: a step that does not look at the clock must not keep the program forever.
 fn patience(options: &Options) -> Duration {
-    Duration::from_secs(options.time + options.time / 2 + 10)
+    Duration::from_secs(3 * options.time + 30)
 }
 
 /// Waits for the worker, which tells of each model that it begins and of its end.
