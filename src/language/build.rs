@@ -38,7 +38,15 @@ impl Reader<'_> {
             Rule::utility => Statement::Utility(self.single(parts.next()?)?),
             Rule::others => Statement::Others(self.others(parts)),
             Rule::assume => Statement::Assume(parts.filter_map(|part| self.relation(part)).collect()),
-            Rule::claim => Statement::Claim(Claim::Relation(self.relation(parts.next()?)?)),
+            Rule::claim => Statement::Claim(self.claim(parts)?),
+            Rule::given => {
+                let kind = preferences(parts.next()?.as_str());
+                Statement::Given { kind, value: self.builder.expression(parts.next()?, 0) }
+            }
+            Rule::inverse => {
+                let target = self.target(parts.next()?)?;
+                Statement::Inverse { target, value: self.builder.expression(parts.next()?, 0) }
+            }
             Rule::abbreviation => {
                 let name = self.declared(parts.next()?)?;
                 Statement::Let { name, value: self.builder.expression(parts.next()?, 0) }
@@ -171,6 +179,58 @@ impl Reader<'_> {
         Some(Relation { first, rest, span })
     }
 
+    fn claim<'a>(&mut self, mut parts: impl Iterator<Item = Pair<'a, Rule>>) -> Option<Claim> {
+        let first = parts.next()?;
+        if first.as_rule() == Rule::relation {
+            return Some(Claim::Relation(self.relation(first)?));
+        }
+        let start = self.builder.span(&first);
+        let function = self.claimed(first)?;
+        let value = self.builder.expression(parts.next()?, 0);
+        let span = start.join(value.span);
+        Some(Claim::Function { function, value, span })
+    }
+
+    fn claimed(&mut self, pair: Pair<Rule>) -> Option<Claimed> {
+        let mut parts = pair.into_inner();
+        let head = parts.next()?;
+        if head.as_rule() == Rule::preferences {
+            return Some(Claimed::Preferences(preferences(head.as_str())));
+        }
+        let tail = parts.next()?;
+        if head.as_rule() == Rule::claimed_of_good {
+            let target = self.target(tail)?;
+            return Some(match leading_word(head.as_str()) {
+                "hicksian" => Claimed::Hicksian(target),
+                "inverse" => Claimed::Inverse(target),
+                _ => Claimed::Demand(form(head.as_str()), target),
+            });
+        }
+        let mut of = tail.into_inner().filter(|part| matches!(part.as_rule(), Rule::index | Rule::mover));
+        let good = self.builder.index(of.next()?)?;
+        let mover = self.mover(of.next()?)?;
+        Some(match leading_word(head.as_str()) {
+            "slutsky" => Claimed::Slutsky(good, mover),
+            "compensated" => Claimed::CompensatedElasticity(good, mover),
+            _ => Claimed::Elasticity(good, mover),
+        })
+    }
+
+    fn mover(&mut self, pair: Pair<Rule>) -> Option<Mover> {
+        let span = self.builder.span(&pair);
+        let mut parts = pair.into_inner();
+        let head = parts.next()?;
+        if head.as_rule() == Rule::good_number {
+            return match head.as_str().parse() {
+                Ok(number) => Some(Mover::Number(number, span)),
+                Err(_) => self.refuse(span, "this number is too large", "write the number of a good"),
+            };
+        }
+        let name = self.builder.name(&head);
+        let indices = parts.next().map(|part| self.builder.indices(part)).unwrap_or_default();
+        Some(Mover::Named(Reference { name, indices, span }))
+    }
+
     fn target(&mut self, pair: Pair<Rule>) -> Option<Target> {
         let part = pair.into_inner().next()?;
         if part.as_rule() == Rule::good {
@@ -195,6 +255,14 @@ fn form(words: &str) -> Form {
         "outlay" => Form::Outlay,
         "log" => Form::LogDemand,
         _ => Form::Demand,
+    }
+}
+
+fn preferences(words: &str) -> Preferences {
+    match leading_word(words) {
+        "utility" => Preferences::Utility,
+        "indirect" => Preferences::IndirectUtility,
+        _ => Preferences::Expenditure,
     }
 }
 

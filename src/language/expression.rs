@@ -306,7 +306,8 @@ impl Builder {
         indices.filter_map(|part| self.index(part)).collect()
     }
 
-    fn index(&mut self, pair: Pair<Rule>) -> Option<(Index, Span)> {
+    /// An index between square brackets.
+    pub fn index(&mut self, pair: Pair<Rule>) -> Option<(Index, Span)> {
         let span = self.span(&pair);
         let part = pair.into_inner().next()?;
         if part.as_rule() == Rule::index_name {

@@ -38,8 +38,13 @@ pub const KEYWORDS: [Keyword; 20] = [
     keyword("rest", Some(Rule::rest), "rest GOOD or rest[2]", false),
     keyword("others", Some(Rule::others), "others NAME, … or others deflated", true),
     keyword("claim", Some(Rule::claim), "claim FORMULA = FORMULA or claim FORMULA > FORMULA", false),
-    keyword("inverse", None, "inverse GOOD = FORMULA", false),
-    keyword("given", None, "given expenditure = FORMULA", false),
+    keyword("inverse", Some(Rule::inverse), "inverse GOOD = FORMULA or inverse[i] = FORMULA", false),
+    keyword(
+        "given",
+        Some(Rule::given),
+        "given utility = FORMULA, given indirect utility = FORMULA or given expenditure = FORMULA",
+        false,
+    ),
     keyword("scenario", None, "scenario \"NAME\": PRICE from 1 to 2", false),
 ];
 

@@ -282,11 +282,59 @@ pub enum Others {
     Deflated,
 }
 
+/// A function that stands for the preferences.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum Preferences {
+    /// U(x).
+    Utility,
+    /// v(p, m).
+    IndirectUtility,
+    /// e(p, u).
+    Expenditure,
+}
+
+/// What a demand responds to.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum Mover {
+    /// `income`, a price, or a good (for its price), by name.
+    Named(Reference),
+    /// A good by its number, for its price.
+    Number(u32, Span),
+}
+
+/// A function of the theory, on the left of a claim.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Claimed {
+    /// `claim expenditure`
+    Preferences(Preferences),
+    /// `claim demand bread`, `claim share[i]`
+    Demand(Form, Target),
+    /// `claim hicksian bread`
+    Hicksian(Target),
+    /// `claim inverse bread`
+    Inverse(Target),
+    /// `claim slutsky[bread, fish]`
+    Slutsky((Index, Span), Mover),
+    /// `claim elasticity[bread, p_f]`
+    Elasticity((Index, Span), Mover),
+    /// `claim compensated elasticity[bread, p_f]`
+    CompensatedElasticity((Index, Span), Mover),
+}
+
 /// What a `claim` states.
 #[derive(Clone, Debug, PartialEq)]
 pub enum Claim {
     /// An identity or an inequality between the model's names.
     Relation(Relation),
+    /// A function of the theory is this formula.
+    Function {
+        /// The function.
+        function: Claimed,
+        /// What it is claimed to be.
+        value: Expr,
+        /// The whole of it.
+        span: Span,
+    },
 }
 
 /// One statement of a model file.
@@ -328,6 +376,20 @@ pub enum Statement {
     Rest(Target),
     /// `others …`
     Others(Others),
+    /// `inverse bread = …`, `inverse[i] = …`
+    Inverse {
+        /// The good or goods.
+        target: Target,
+        /// p/m for them.
+        value: Expr,
+    },
+    /// `given expenditure = …`
+    Given {
+        /// Which function is given.
+        kind: Preferences,
+        /// What it is.
+        value: Expr,
+    },
     /// `claim …`
     Claim(Claim),
 }

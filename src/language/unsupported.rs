@@ -2,7 +2,7 @@
 
 use super::diagnostic::Diagnostic;
 use super::letters::leading_word;
-use super::place::{leading_number, leading_token};
+use super::place::leading_number;
 use super::syntax::Span;
 
 /// The refusal of a statement, where its form is one that this version does not read.
@@ -10,8 +10,6 @@ pub fn refusal(text: &str, offset: usize) -> Option<Diagnostic> {
     let keyword = leading_word(text);
     let rest = text[keyword.len()..].trim_start();
     let (subject, remedy) = match keyword {
-        "given" => (format!("stating preferences (`{}`) is", given(rest)), DEMANDS_ONLY),
-        "inverse" => ("inverse demand (`inverse GOOD = …`) is".to_string(), DEMANDS_ONLY),
         "scenario" => ("a price change to be measured (`scenario \"…\": …`) is".to_string(), TAKE_OUT),
         "goods" => {
             let range = symbolic_range(rest)?;
@@ -30,9 +28,8 @@ pub fn latex_formula(span: Span) -> Diagnostic {
     Diagnostic::error(span, message).remedy("write the formula in the model file's own signs: a_b * m / p_b")
 }
 
-const DEMANDS_ONLY: &str = "write the system with `demand`, `share`, `outlay` or `log demand`";
 const TAKE_OUT: &str = "take the statement out, or put `#` before its lines";
-const PLAIN_CLAIMS: &str = "claims may be identities and inequalities between the model's names: claim a + b = 1";
+const PLAIN_CLAIMS: &str = "claims may be identities and inequalities, and formulas for the functions of the theory: claim expenditure = …";
 
 /// What comes before `=` or `:`, at most the first line.
 fn form_span(text: &str, offset: usize) -> Span {
@@ -55,53 +52,22 @@ fn words(text: &str) -> Vec<&str> {
     }
 }
 
-fn given(rest: &str) -> &'static str {
-    match words(rest)[..] {
-        ["utility", ..] => "given utility = …",
-        ["indirect", "utility", ..] => "given indirect utility = …",
-        ["expenditure", ..] => "given expenditure = …",
-        _ => "given …",
-    }
-}
-
 fn symbolic_range(rest: &str) -> Option<String> {
     let first = leading_number(rest);
     let last = leading_word(rest[first.len()..].trim_start().strip_prefix("..")?.trim_start());
     if first.is_empty() || last.is_empty() { None } else { Some(format!("goods {first}..{last}")) }
 }
 
-const COMPARISONS: [&str; 6] = ["=", "!=", "<", "<=", ">", ">="];
-
-/// The form of a claim that is neither an identity nor an inequality.
+/// The form of a claim about the system as a whole.
 fn claim(rest: &str) -> Option<String> {
-    let words = words(rest);
-    let after = |count: usize| {
-        let mut tail = rest;
-        for word in words.iter().take(count) {
-            tail = tail.trim_start().get(word.len()..).unwrap_or("");
-        }
-        leading_token(tail.trim_start())
-    };
-    Some(match words[..] {
-        ["demand" | "hicksian" | "share" | "outlay" | "inverse", _] if COMPARISONS.contains(&after(2)) => {
-            format!("claim {} GOOD = …", words[0])
-        }
-        ["demand" | "hicksian" | "share" | "outlay" | "inverse"] if after(1) == "[" => {
-            format!("claim {}[…] = …", words[0])
-        }
-        ["expenditure" | "utility"] if COMPARISONS.contains(&after(1)) => format!("claim {} = …", words[0]),
-        ["indirect", "utility", ..] => "claim indirect utility = …".to_string(),
-        ["slutsky" | "elasticity"] if after(1) == "[" => format!("claim {}[…] = …", words[0]),
-        ["compensated", "elasticity", ..] => "claim compensated elasticity[…] = …".to_string(),
-        ["separable", _] => "claim separable GROUP".to_string(),
-        _ => {
-            let condition = rest.split_whitespace().next()?;
-            let tail = rest.get(condition.len()..)?.trim_start();
-            match self::words(tail)[..] {
-                [link @ ("iff" | "if"), ..] => format!("claim {condition} {link} …"),
-                ["only", "if", ..] => format!("claim {condition} only if …"),
-                _ => return None,
-            }
-        }
-    })
+    if let ["separable", _] = words(rest)[..] {
+        return Some("claim separable GROUP".to_string());
+    }
+    let condition = rest.split_whitespace().next()?;
+    let tail = rest.get(condition.len()..)?.trim_start();
+    match words(tail)[..] {
+        [link @ ("iff" | "if"), ..] => Some(format!("claim {condition} {link} …")),
+        ["only", "if", ..] => Some(format!("claim {condition} only if …")),
+        _ => None,
+    }
 }

@@ -16,7 +16,8 @@ use super::order::Item;
 use super::resolve::tuples;
 use super::script::{Covered, Defined, Script, Stated, plain_text, script};
 use super::symbols::Symbols;
-use super::system::{Claim, Coverage, Demand, Good, Parameter, Value};
+use super::given::{self, Derived};
+use super::system::{Claim, Coverage, Demand, Given, Good, InverseDemand, Parameter, Statement, Value};
 use super::{Model, Text};
 
 /// Builds the model of a text with values put in for parameters.
@@ -51,6 +52,8 @@ struct Content {
     abbreviations: Vec<(String, Element)>,
     demands: Vec<Demand>,
     claims: Vec<Claim>,
+    given: Option<Given>,
+    inverse: Vec<InverseDemand>,
 }
 
 fn content(evaluator: &Evaluator<'_>) -> Option<Content> {
@@ -68,7 +71,19 @@ fn content(evaluator: &Evaluator<'_>) -> Option<Content> {
         goods.map(|good| evaluator.demand(good, None).map(|demand| Demand::clone(&demand))).collect();
     let claims = claims(evaluator);
     let demands = demands.into_iter().collect::<Result<Vec<Demand>, Failed>>();
-    Some(Content { abbreviations: abbreviations.ok()?, demands: demands.ok()?, claims: claims.ok()? })
+    let (given, inverse) = (given::given(evaluator), given::inverse_demands(evaluator));
+    let (mut demands, given, mut inverse) = (demands.ok()?, given.ok()?, inverse.ok()?);
+    let mut claims = claims.ok()?;
+    if let Some(given) = &given {
+        claims.extend(given::against(evaluator, &demands, given.span));
+        let derived = given::derive(evaluator, given);
+        match derived.ok()? {
+            Derived::Demands(of_given) if demands.is_empty() => demands = of_given,
+            Derived::Inverse(of_given) => inverse = of_given,
+            _ => {}
+        }
+    }
+    Some(Content { abbreviations: abbreviations.ok()?, demands, claims, given, inverse })
 }
 
 /// Puts values in for parameters.
@@ -148,27 +163,42 @@ fn claims(evaluator: &Evaluator<'_>) -> Result<Vec<Claim>, Failed> {
     let mut outcome = Ok(());
     for stated in &script.claims {
         for mut environment in tuples(goods, stated.free.len()) {
-            for (index, sign) in stated.signs.iter().enumerate() {
-                let left = evaluator.compute(&stated.sides[index], &mut environment);
-                let right = evaluator.compute(&stated.sides[index + 1], &mut environment);
-                let (Ok(left), Ok(right)) = (left, right) else {
-                    outcome = Err(Failed);
-                    continue;
-                };
-                let text = claim_text(evaluator, stated, index, &environment);
-                let (left, right) = (Element::clone(&left), Element::clone(&right));
-                all.push(Claim { text, left, relation: *sign, right, span: stated.span });
+            match instances(evaluator, stated, &mut environment) {
+                Ok(claims) => all.extend(claims),
+                Err(failed) => outcome = Err(failed),
             }
         }
     }
     outcome.map(|()| all)
 }
 
+/// The claims that a stated one makes under an environment: one for each link of a chain.
+fn instances(evaluator: &Evaluator<'_>, stated: &Stated, environment: &mut Vec<usize>) -> Result<Vec<Claim>, Failed> {
+    if let (Some(wanted), [side]) = (stated.function, stated.sides.as_slice()) {
+        let value = match wanted.is_of_quantities() {
+            true => evaluator.in_quantities(|| evaluator.compute(side, environment))?,
+            false => evaluator.compute(side, environment)?,
+        };
+        let statement = Statement::Function { function: wanted.function(environment), value: Element::clone(&value) };
+        let text = claim_text(evaluator, stated, 0, environment);
+        return Ok(vec![Claim { text, statement, span: stated.span }]);
+    }
+    let sides: Vec<_> = stated.sides.iter().map(|side| evaluator.compute(side, environment)).collect();
+    let sides = sides.into_iter().collect::<Result<Vec<_>, Failed>>()?;
+    let links = stated.signs.iter().zip(sides.windows(2)).enumerate();
+    let claim = |(index, (sign, pair)): (usize, (&crate::language::Comparison, &[std::rc::Rc<Element>]))| {
+        let (left, right) = (Element::clone(pair.first()?), Element::clone(pair.last()?));
+        let text = claim_text(evaluator, stated, index, environment);
+        Some(Claim { text, statement: Statement::Relation { left, relation: *sign, right }, span: stated.span })
+    };
+    Ok(links.filter_map(claim).collect())
+}
+
 /// One link of a chain as it was written, with the values of its free indices.
 fn claim_text(evaluator: &Evaluator<'_>, stated: &Stated, link: usize, environment: &[usize]) -> String {
     let side = |at: usize| plain_text(evaluator.source.slice(stated.sides[at].span));
     let mut text = match stated.signs.as_slice() {
-        [_] => stated.text.clone(),
+        [] | [_] => stated.text.clone(),
         signs => format!("{} {} {}", side(link), signs[link].sign(), side(link + 1)),
     };
     if !stated.free.is_empty() {
@@ -228,7 +258,12 @@ fn assemble(
         all.into_iter().for_each(|e| *e = fresh(e));
     }
     content.abbreviations.iter_mut().for_each(|(_, e)| *e = fresh(e));
-    content.claims.iter_mut().for_each(|c| (c.left, c.right) = (fresh(&c.left), fresh(&c.right)));
+    content.claims.iter_mut().for_each(|claim| match &mut claim.statement {
+        Statement::Relation { left, right, .. } => (*left, *right) = (fresh(left), fresh(right)),
+        Statement::Function { value, .. } => *value = fresh(value),
+    });
+    content.given.iter_mut().for_each(|given| given.value = fresh(&given.value));
+    content.inverse.iter_mut().for_each(|i| (i.formula, i.share) = (fresh(&i.formula), fresh(&i.share)));
     let mut warnings = text.tree.warnings.clone();
     warnings.extend(names.unused().into_iter().map(|(name, span)| {
         Diagnostic::warning(span, format!("`{name}` is declared and never used")).remedy("use it, or drop it")
@@ -254,6 +289,8 @@ fn assemble(
         },
         demands: content.demands,
         rest: script.defined.iter().position(|defined| *defined == Defined::Rest),
+        inverse: content.inverse,
+        given: content.given,
         claims: content.claims,
         domain: ground.domain,
         warnings,

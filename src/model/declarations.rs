@@ -3,7 +3,7 @@
 use std::cell::Cell;
 
 use crate::algebra::generator::Role;
-use crate::language::{Declared, Diagnostic, Goods, Index, Name, Others, Source, Span, nearest};
+use crate::language::{Declared, Diagnostic, Goods, Index, Name, Others, Preferences, Source, Span, nearest};
 
 use super::names::{FamilyId, Group, Meaning, Names};
 use super::outline::{Outline, Placed};
@@ -49,6 +49,7 @@ pub(super) fn declare(source: &Source, outline: &Outline<'_>, mistakes: &mut Vec
         reader.declarations.names.add_abbreviation(declared, source, reader.mistakes);
     }
     reader.groups(outline);
+    reader.implied_utility(outline);
     let declarations = reader.declarations;
     declarations.names.check_lookalikes(mistakes);
     declarations
@@ -109,6 +110,18 @@ impl Reader<'_> {
                 self.family(declared, Role::Parameter, None);
             }
         }
+    }
+
+    /// Formulas for e and Hicksian demand speak of the utility level, declared or not.
+    fn implied_utility(&mut self, outline: &Outline<'_>) {
+        let spoken_of = outline.given.is_some() || outline.claims_functions();
+        if self.declarations.utility.is_some() || !spoken_of {
+            return;
+        }
+        let text = utility_default(&self.declarations.names).to_string();
+        let name = Name { text, span: Span::default() };
+        let declared = Declared { name, indices: Vec::new(), latex: None, span: Span::default() };
+        self.declarations.utility = Some(self.family(&declared, Role::Utility, None));
     }
 
     fn family(&mut self, declared: &Declared, role: Role, good: Option<usize>) -> FamilyId {
@@ -216,21 +229,29 @@ pub(super) fn listed(all: &[String]) -> String {
     format!("{}{more}", shown.join(", "))
 }
 
-/// Statements that demands need and that are not there.
+/// Statements that demands, preferences and inverse demands need and that are not there.
 pub(super) fn missing(outline: &Outline<'_>, mistakes: &mut Vec<Diagnostic>) {
-    let first = outline.equations.first().map(|e| e.span).or(outline.rest.map(|r| r.span));
-    let Some(span) = first else {
-        return;
-    };
-    let at = Span::new(span.start, span.start);
-    let needed = [
-        (outline.goods.is_some(), "a demand, but no goods", "goods bread, fish` or `goods 1..4"),
-        (outline.prices.is_some(), "demands, but no prices", "prices p_b, p_f` or `prices p[i]"),
-        (outline.income.is_some(), "demands, but no income", "income m"),
+    let demands = outline.equations.first().map(|e| e.span).or(outline.rest.map(|r| r.span));
+    let given = outline.given.map(|given| given.span);
+    let of_utility = outline.given.is_some_and(|given| given.content.0 == Preferences::Utility);
+    let inverse = outline.inverse.first().map(|i| i.span);
+    let goods = (outline.goods.is_some(), "goods", "goods bread, fish` or `goods 1..4");
+    let prices = (outline.prices.is_some(), "prices", "prices p_b, p_f` or `prices p[i]");
+    let income = (outline.income.is_some(), "income", "income m");
+    let quantities = (outline.quantities.is_some(), "quantities", "quantities x_b, x_f` or `quantities x[i]");
+    let cases = [
+        (demands, "demands", vec![goods, prices, income]),
+        (given.filter(|_| !of_utility), "preferences", vec![goods, prices, income]),
+        (given.filter(|_| of_utility), "a direct utility", vec![goods, prices, income, quantities]),
+        (inverse, "inverse demands", vec![goods, quantities]),
     ];
-    for (there, message, remedy) in needed {
-        if !there {
-            mistakes.push(Diagnostic::error(at, format!("the file has {message}")).remedy(format!("add `{remedy}`")));
+    for (span, what, needed) in cases {
+        let Some(span) = span else { continue };
+        let at = Span::new(span.start, span.start);
+        for (_, other, remedy) in needed.into_iter().filter(|(there, _, _)| !there) {
+            let what = if what == "demands" && other == "goods" { "a demand" } else { what };
+            let message = format!("the file has {what}, but no {other}");
+            mistakes.push(Diagnostic::error(at, message).remedy(format!("add `{remedy}`")));
         }
     }
 }

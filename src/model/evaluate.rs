@@ -53,6 +53,8 @@ pub(super) struct Evaluator<'s> {
     pub source: &'s Source,
     /// Abbreviations that are sums are given the author's names.
     pub naming: Cell<bool>,
+    /// Quantities stand for themselves, not for what is demanded.
+    plain_quantities: Cell<bool>,
     /// What stands for a symbol that a value or an assumed equation replaces.
     replaced: RefCell<FxHashMap<Var, Rc<Element>>>,
     abbreviations: RefCell<Vec<Vec<Memo<Rc<Element>>>>>,
@@ -72,6 +74,7 @@ impl<'s> Evaluator<'s> {
             symbols,
             source,
             naming: Cell::new(false),
+            plain_quantities: Cell::new(false),
             replaced: RefCell::default(),
             abbreviations: RefCell::new(vec![Vec::new(); script.abbreviations.len()]),
             demands: RefCell::new(vec![Memo::Open; script.defined.len()]),
@@ -88,6 +91,19 @@ impl<'s> Evaluator<'s> {
         self.demands.borrow_mut().iter_mut().for_each(|memo| *memo = Memo::Open);
         self.calls.borrow_mut().clear();
         self.powers.borrow_mut().clear();
+    }
+
+    /// Computes with quantities as variables of their own, as in a direct utility function.
+    pub fn in_quantities<T>(&self, work: impl FnOnce() -> T) -> T {
+        if self.script.defined.is_empty() {
+            return work();
+        }
+        self.forget();
+        self.plain_quantities.set(true);
+        let done = work();
+        self.plain_quantities.set(false);
+        self.forget();
+        done
     }
 
     /// From now on the symbol is written as the element; a sum keeps the symbol's name.
@@ -177,7 +193,7 @@ impl<'s> Evaluator<'s> {
     fn symbol(&self, id: FamilyId, slots: &[Slot], node: &Node, environment: &[usize]) -> Computed {
         let family = &self.script.declarations.names.families[id.0];
         let place = slots.iter().fold(0, |at, slot| at * self.goods() + slot.good(environment));
-        if family.role == Role::Quantity && !self.script.defined.is_empty() {
+        if family.role == Role::Quantity && !self.script.defined.is_empty() && !self.plain_quantities.get() {
             let good = family.good.unwrap_or(place);
             return self.demand(good, Some(node)).map(|demand| Rc::new(demand.quantity.clone()));
         }

@@ -2,10 +2,12 @@
 //! of one field in which the assumptions are known.
 
 mod build;
+mod claimed;
 mod declarations;
 mod equations;
 mod evaluate;
 mod feasibility;
+mod given;
 mod ground;
 mod messages;
 mod names;
@@ -27,7 +29,10 @@ use crate::algebra::monomial::Var;
 use crate::language::{self, Diagnostic, Source};
 
 pub use points::PointSearch;
-pub use system::{Assumption, Claim, Coverage, Demand, DomainCondition, Form, Good, Parameter, Value};
+pub use system::{
+    Assumption, Claim, Coverage, Demand, DomainCondition, Form, Function, Given, Good, InverseDemand, Parameter, Statement,
+    Value,
+};
 
 /// A model file with its meaning.
 pub struct Model {
@@ -57,8 +62,12 @@ pub struct Model {
     pub abbreviations: Vec<(String, Element)>,
     /// Which goods of the budget the system covers.
     pub coverage: Coverage,
-    /// The demands, one for each good; empty in a file of lemmas.
+    /// The demands, one for each good: those of the file, or those of a given indirect utility; else empty.
     pub demands: Vec<Demand>,
+    /// The inverse demands, one for each good: those of the file, or those of a given direct utility; else empty.
+    pub inverse: Vec<InverseDemand>,
+    /// The preferences that the author starts from.
+    pub given: Option<Given>,
     /// The good that takes what is left of income.
     pub rest: Option<usize>,
     /// The claims, in the order of the file.

@@ -1,7 +1,8 @@
 //! The statements of a file, sorted by what they say; the ones that may stand only once do.
 
 use crate::language::{
-    self, Claim, Declared, Diagnostic, Equation, Expr, Goods, Index, Located, Name, Others, Relation, Source, Span,
+    self, Claim, Declared, Diagnostic, Equation, Expr, Goods, Index, Located, Name, Others, Preferences, Relation,
+    Source, Span,
     Statement, Target,
 };
 
@@ -28,7 +29,9 @@ pub(super) struct Outline<'t> {
     pub assumed: Vec<&'t Relation>,
     pub abbreviations: Vec<(&'t Declared, &'t Expr)>,
     pub equations: Vec<Placed<&'t Equation>>,
-    pub claims: Vec<&'t Relation>,
+    pub inverse: Vec<Placed<(&'t Target, &'t Expr)>>,
+    pub given: Option<Placed<(Preferences, &'t Expr)>>,
+    pub claims: Vec<&'t Claim>,
 }
 
 impl<'t> Outline<'t> {
@@ -58,8 +61,15 @@ impl<'t> Outline<'t> {
             Statement::Assume(relations) => self.assumed.extend(relations),
             Statement::Let { name, value } => self.abbreviations.push((name, value)),
             Statement::Demand(equation) => self.equations.push(Placed { content: equation, span }),
-            Statement::Claim(Claim::Relation(relation)) => self.claims.push(relation),
+            Statement::Inverse { target, value } => self.inverse.push(Placed { content: (target, value), span }),
+            Statement::Given { kind, value } => once.put(&mut self.given, Placed { content: (*kind, value), span }),
+            Statement::Claim(claim) => self.claims.push(claim),
         }
+    }
+
+    /// Whether the file claims something about a function of the theory.
+    pub fn claims_functions(&self) -> bool {
+        self.claims.iter().any(|claim| matches!(claim, Claim::Function { .. }))
     }
 
     /// Whether the file defines demands.

@@ -87,6 +87,12 @@ impl<'s> Survey<'s> {
                 self.walk(&self.script.definitions[*place].node, &mut environment.clone(), &mut found);
             }
         }
+        for (place, environment) in &self.script.inverse {
+            self.walk(&self.script.inverse_nodes[*place], &mut environment.clone(), &mut found);
+        }
+        if let Some((_, node, _)) = &self.script.given {
+            self.walk(node, &mut Vec::new(), &mut found);
+        }
         for stated in self.script.assumed.iter().chain(&self.script.claims) {
             stated.sides.iter().for_each(|side| self.search(side, stated.free.len(), &mut found));
         }

@@ -147,7 +147,8 @@ impl<'a> Resolver<'a> {
         Vec::new()
     }
 
-    fn slot(&mut self, index: &Index, span: Span) -> Option<Slot> {
+    /// What an index stands for.
+    pub fn slot(&mut self, index: &Index, span: Span) -> Option<Slot> {
         if let Index::Name(name) = index
             && let Some(place) = self.scope.iter().rposition(|bound| bound == name)
         {

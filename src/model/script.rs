@@ -1,9 +1,11 @@
 //! The statements of a model with all names looked up, before any of it is computed.
 
 use crate::language::{
-    self, Comparison, Declared, Diagnostic, Equation, Expr, Index, Name, Others, Relation, Source, Span, Target,
+    self, Comparison, Declared, Diagnostic, Equation, Expr, Index, Name, Others, Preferences, Relation, Source, Span,
+    Target,
 };
 
+use super::claimed::Wanted;
 use super::declarations::{self, Declarations, unknown_good};
 use super::names::Names;
 use super::order::{Item, computing_order};
@@ -18,6 +20,8 @@ pub(super) struct Stated {
     /// The sides, one more than the signs.
     pub sides: Vec<Node>,
     pub signs: Vec<Comparison>,
+    /// The function of the theory that the only side is claimed to be.
+    pub function: Option<Wanted>,
     pub span: Span,
 }
 
@@ -55,6 +59,11 @@ pub(super) struct Script {
     pub defined: Vec<Defined>,
     pub assumed: Vec<Stated>,
     pub claims: Vec<Stated>,
+    /// The inverse demand for each good, with the good for its free index; empty where there are none.
+    pub inverse: Vec<(usize, Vec<usize>)>,
+    /// The right-hand sides of inverse demands.
+    pub inverse_nodes: Vec<Node>,
+    pub given: Option<(Preferences, Node, Span)>,
     pub covered: Covered,
     /// The order in which abbreviations and demands are computed.
     pub order: Vec<Item>,
@@ -75,8 +84,10 @@ pub(super) fn script(source: &Source, tree: &language::Model, whole: bool) -> Re
     let mut writer = Writer { source, declarations: &declarations, mistakes: &mut mistakes };
     let abbreviations = outline.abbreviations.iter().map(|(name, value)| writer.abbreviation(name, value)).collect();
     let assumed = outline.assumed.iter().map(|relation| writer.stated(relation)).collect();
-    let claims = outline.claims.iter().map(|relation| writer.stated(relation)).collect();
+    let claims = outline.claims.iter().map(|claim| writer.claim(claim)).collect();
     let (definitions, defined) = writer.demands(&outline, whole);
+    let (inverse_nodes, inverse) = writer.inverse_demands(&outline, whole);
+    let given = outline.given.map(|given| (given.content.0, writer.resolve(&[], given.content.1), given.span));
     let covered = writer.covered(&outline);
     if whole {
         writer.something_to_do(&outline);
@@ -87,24 +98,36 @@ pub(super) fn script(source: &Source, tree: &language::Model, whole: bool) -> Re
         return Err(mistakes);
     }
     let title = outline.title.map(|title| title.content.to_string());
-    let order = Vec::new();
-    let script = Script { title, declarations, abbreviations, definitions, defined, assumed, claims, covered, order };
+    let script = Script {
+        title,
+        declarations,
+        abbreviations,
+        definitions,
+        defined,
+        assumed,
+        claims,
+        inverse,
+        inverse_nodes,
+        given,
+        covered,
+        order: Vec::new(),
+    };
     let order = computing_order(&script)?;
     Ok(Script { order, ..script })
 }
 
-struct Writer<'a> {
-    source: &'a Source,
-    declarations: &'a Declarations,
-    mistakes: &'a mut Vec<Diagnostic>,
+pub(super) struct Writer<'a> {
+    pub source: &'a Source,
+    pub declarations: &'a Declarations,
+    pub mistakes: &'a mut Vec<Diagnostic>,
 }
 
 impl Writer<'_> {
-    fn names(&self) -> &Names {
+    pub fn names(&self) -> &Names {
         &self.declarations.names
     }
 
-    fn resolve(&mut self, free: &[Name], expr: &Expr) -> Node {
+    pub fn resolve(&mut self, free: &[Name], expr: &Expr) -> Node {
         Resolver::new(&self.declarations.names, free, self.mistakes).resolve(expr)
     }
 
@@ -112,7 +135,7 @@ impl Writer<'_> {
         self.resolve(&declared.indices, value)
     }
 
-    fn stated(&mut self, relation: &Relation) -> Stated {
+    pub fn stated(&mut self, relation: &Relation) -> Stated {
         let exprs: Vec<&Expr> =
             std::iter::once(&relation.first).chain(relation.rest.iter().map(|(_, side)| side)).collect();
         let free = free_indices(&exprs, self.names());
@@ -120,11 +143,12 @@ impl Writer<'_> {
         let mut resolver = Resolver::new(&self.declarations.names, &free, self.mistakes);
         let sides = exprs.into_iter().map(|expr| resolver.resolve(expr)).collect();
         let signs = relation.rest.iter().map(|(sign, _)| *sign).collect();
-        Stated { text: plain_text(self.source.slice(relation.span)), free, sides, signs, span: relation.span }
+        let text = plain_text(self.source.slice(relation.span));
+        Stated { text, free, sides, signs, function: None, span: relation.span }
     }
 
     /// A free index that looks like the name of a good is more likely a slip of the pen.
-    fn doubt_indices(&mut self, free: &[Name]) {
+    pub fn doubt_indices(&mut self, free: &[Name]) {
         for index in free.iter().filter(|index| index.text.chars().count() > 2) {
             let goods = self.names().goods.iter().map(String::as_str);
             if let Some(near) = language::nearest(&index.text, goods).filter(|_| self.names().goods_named) {
@@ -156,14 +180,15 @@ impl Writer<'_> {
             }
         }
         if whole && outline.has_demands() {
-            self.undefined(outline, &slots);
+            let spans: Vec<Span> = outline.equations.iter().map(|e| e.span).collect();
+            self.undefined(outline, &slots, &spans);
         }
         let defined = slots.into_iter().flatten().map(|(defined, _)| defined).collect();
         (definitions, defined)
     }
 
     /// The goods that a statement defines, and its free index.
-    fn targets(&mut self, target: &Target, many: bool) -> (Vec<Name>, Vec<usize>) {
+    pub fn targets(&mut self, target: &Target, many: bool) -> (Vec<Name>, Vec<usize>) {
         let (index, span, bracketed) = match target {
             Target::Good(name) => (Index::Name(name.text.clone()), name.span, false),
             Target::Indexed(index, span) => (index.clone(), *span, true),
@@ -209,7 +234,7 @@ impl Writer<'_> {
         if self.names().goods_named { format!("demand {name}") } else { format!("demand[{name}]") }
     }
 
-    fn define(&mut self, slots: &mut [Option<(Defined, Span)>], good: usize, defined: Defined, span: Span) {
+    pub fn define(&mut self, slots: &mut [Option<(Defined, Span)>], good: usize, defined: Defined, span: Span) {
         let Some(slot) = slots.get_mut(good) else { return };
         match slot {
             None => *slot = Some((defined, span)),
@@ -224,7 +249,7 @@ impl Writer<'_> {
         }
     }
 
-    fn undefined(&mut self, outline: &Outline<'_>, slots: &[Option<(Defined, Span)>]) {
+    pub fn undefined(&mut self, outline: &Outline<'_>, slots: &[Option<(Defined, Span)>], spans: &[Span]) {
         let missing: Vec<String> = self
             .names()
             .goods
@@ -234,7 +259,7 @@ impl Writer<'_> {
             .map(|(good, _)| good.clone())
             .collect();
         let Some(goods) = outline.goods.filter(|_| !missing.is_empty()) else { return };
-        if self.mistakes.iter().any(|m| outline.equations.iter().any(|e| e.span.meets(m.span))) {
+        if self.mistakes.iter().any(|m| spans.iter().any(|span| span.meets(m.span))) {
             // a definition that could not be read may be the missing one
             return;
         }
@@ -263,14 +288,16 @@ impl Writer<'_> {
     }
 
     fn something_to_do(&mut self, outline: &Outline<'_>) {
-        if !outline.has_demands() && outline.claims.is_empty() && self.mistakes.is_empty() {
+        let system = outline.has_demands() || outline.given.is_some() || !outline.inverse.is_empty();
+        if !system && outline.claims.is_empty() && self.mistakes.is_empty() {
             let message = Diagnostic::error(Span::new(0, 0), "the file states no demand and no claim");
             self.mistakes.push(message.remedy("add `demand GOOD = …` for each good, or `claim … = …`"));
         }
+        self.claims_have_an_object(outline, system);
     }
 }
 
-fn whole_target(target: &Target) -> Span {
+pub(super) fn whole_target(target: &Target) -> Span {
     match target {
         Target::Good(name) => name.span,
         Target::Indexed(_, span) => *span,

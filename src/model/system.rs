@@ -3,7 +3,7 @@
 use crate::algebra::field::Field;
 use crate::algebra::generator::Element;
 use crate::algebra::monomial::Var;
-use crate::language::{Comparison, Span};
+use crate::language::{Comparison, Preferences, Span};
 
 use crate::language::Form as WrittenForm;
 
@@ -94,19 +94,87 @@ pub struct Demand {
     pub share: Element,
 }
 
-/// A stated identity or inequality; each link of a chain and each value of free indices is one of its own.
+/// Preferences that the author starts from.
 #[derive(Clone, Debug)]
-pub struct Claim {
-    /// The relation as it was written (one link of a chain); values of free indices are added behind it.
-    pub text: String,
-    /// The left side.
-    pub left: Element,
-    /// The sign between the sides.
-    pub relation: Comparison,
-    /// The right side.
-    pub right: Element,
+pub struct Given {
+    /// Which function is given.
+    pub kind: Preferences,
+    /// The function: of quantities; of prices and income; or of prices and the utility level.
+    pub value: Element,
     /// Where it is written.
     pub span: Span,
+}
+
+/// The inverse demand for a good, as a function of quantities.
+#[derive(Clone, Debug)]
+pub struct InverseDemand {
+    /// π = p/m.
+    pub formula: Element,
+    /// x π.
+    pub share: Element,
+}
+
+/// A function of the theory; goods are positions.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Function {
+    /// U(x), v(p, m) or e(p, u).
+    Preferences(Preferences),
+    /// Marshallian demand in one of its forms.
+    Demand(WrittenForm, usize),
+    /// Hicksian demand.
+    Hicksian(usize),
+    /// Normalised inverse demand.
+    Inverse(usize),
+    /// S_ij.
+    Slutsky(usize, usize),
+    /// ∂ln x_i/∂ln p_j.
+    PriceElasticity(usize, usize),
+    /// ∂ln x_i/∂ln m.
+    IncomeElasticity(usize),
+    /// p_j S_ij / x_i.
+    CompensatedElasticity(usize, usize),
+}
+
+/// What a claim states.
+#[derive(Clone, Debug)]
+pub enum Statement {
+    /// An identity or an inequality; each link of a chain is one of its own.
+    Relation {
+        /// The left side.
+        left: Element,
+        /// The sign between the sides.
+        relation: Comparison,
+        /// The right side.
+        right: Element,
+    },
+    /// A function of the theory is this element.
+    Function {
+        /// The function.
+        function: Function,
+        /// What it is claimed to be.
+        value: Element,
+    },
+}
+
+/// A claim of the author; each value of free indices is one of its own.
+#[derive(Clone, Debug)]
+pub struct Claim {
+    /// The claim as it was written (one link of a chain); values of free indices are added behind it.
+    pub text: String,
+    /// What it states.
+    pub statement: Statement,
+    /// Where it is written.
+    pub span: Span,
+}
+
+impl Claim {
+    /// The two sides of an identity or inequality.
+    pub fn sides(&self) -> Option<(&Element, &Element)> {
+        match &self.statement {
+            Statement::Relation { left, right, .. } => Some((left, right)),
+            Statement::Function { .. } => None,
+        }
+    }
 }
 
 /// What the author's own formulas need in order to be defined.
