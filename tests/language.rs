@@ -167,7 +167,62 @@ fn statement_text(statement: &Statement) -> String {
         Statement::Rest(target) => format!("rest{}", target_text(target)),
         Statement::Others(Others::Prices(names)) => format!("others {}", list(names)),
         Statement::Others(Others::Deflated) => "others are deflated".to_string(),
+        Statement::Given { kind, value } => format!("given {kind:?} = {}", shape(value)),
+        Statement::Inverse { target, value } => format!("inverse{} = {}", target_text(target), shape(value)),
         Statement::Claim(Claim::Relation(relation)) => format!("claim {}", relation_text(relation)),
+        Statement::Claim(Claim::Function { function, value, .. }) => {
+            format!("claim {} = {}", function_text(function), shape(value))
+        }
+    }
+}
+
+fn mover_text(mover: &Mover) -> String {
+    match mover {
+        Mover::Number(number, _) => number.to_string(),
+        Mover::Named(reference) => {
+            let indices = reference.indices.iter().map(|(index, _)| format!("[{}]", index_text(index)));
+            format!("{}{}", reference.name.text, indices.collect::<String>())
+        }
+    }
+}
+
+fn function_text(function: &Claimed) -> String {
+    let of = |good: &Index, mover: &Mover| format!("[{}, {}]", index_text(good), mover_text(mover));
+    match function {
+        Claimed::Preferences(kind) => format!("{kind:?}"),
+        Claimed::Demand(form, target) => format!("{form:?}{}", target_text(target)),
+        Claimed::Hicksian(target) => format!("Hicksian{}", target_text(target)),
+        Claimed::Inverse(target) => format!("Inverse{}", target_text(target)),
+        Claimed::Slutsky((good, _), mover) => format!("Slutsky{}", of(good, mover)),
+        Claimed::Elasticity((good, _), mover) => format!("Elasticity{}", of(good, mover)),
+        Claimed::CompensatedElasticity((good, _), mover) => format!("CompensatedElasticity{}", of(good, mover)),
+    }
+}
+
+#[test]
+fn functions_of_the_theory() {
+    for (text, read_as) in [
+        ("given utility = x^a", "given Utility = (x ^ a)"),
+        ("given indirect  utility = v", "given IndirectUtility = v"),
+        ("given expenditure = e", "given Expenditure = e"),
+        ("inverse bread = a", "inverse bread = a"),
+        ("inverse[i] = a[i]", "inverse[i] = a[i]"),
+        ("claim demand bread = a", "claim Demand bread = a"),
+        ("claim log demand[i] = a", "claim LogDemand[i] = a"),
+        ("claim share[1] = a", "claim Share[1] = a"),
+        ("claim hicksian bread = a", "claim Hicksian bread = a"),
+        ("claim inverse[2] = a", "claim Inverse[2] = a"),
+        ("claim expenditure = u", "claim Expenditure = u"),
+        ("claim indirect utility = m", "claim IndirectUtility = m"),
+        ("claim utility = x", "claim Utility = x"),
+        ("claim slutsky[bread, fish] = 0", "claim Slutsky[bread, fish] = 0"),
+        ("claim elasticity[1, p[2]] = a", "claim Elasticity[1, p[2]] = a"),
+        ("claim elasticity[bread, income] = 1", "claim Elasticity[bread, income] = 1"),
+        ("claim compensated elasticity[i, 2] = a", "claim CompensatedElasticity[i, 2] = a"),
+        ("claim expenditure_of_all = u", "claim expenditure_of_all = u"),
+        ("claim demand = 3", "claim demand = 3"),
+    ] {
+        assert_eq!(statement_text(&model(text)[0]), read_as);
     }
 }
 

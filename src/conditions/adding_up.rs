@@ -6,29 +6,25 @@ use crate::proof::{Equation, Expression, Factor, Label, Prover};
 
 use super::finding::{Condition, Finding, Verdict};
 use super::settlement::{Family, settle};
-use super::slutsky::{Coordinates, System, scaled};
+use super::slutsky::{Compensation, Coordinates, System, scaled};
 
 /// Σ wᵢ = 1, or Σ yᵢ = m.
 const FAMILY: Family = Family { condition: Condition::AddingUp, equations, in_quantities };
 
 fn equations(system: &System) -> Vec<Equation> {
     let left = system.functions.iter().fold(Expression::zero(), |sum, f| sum.plus(1, vec![Factor::Function(*f)]));
-    let right = match system.coordinates {
-        Coordinates::Shares => Expression::integer(1),
-        Coordinates::Outlays => Expression::element(Poly::var(system.income)),
-    };
-    vec![Equation { label: Label::Whole, left, right }]
+    vec![Equation { label: Label::Whole, left, right: system.whole() }]
 }
 
 /// The difference of the sides becomes Σ pᵢ xᵢ − m.
 fn in_quantities(system: &System, equation: &Equation) -> Equation {
-    match system.coordinates {
-        Coordinates::Outlays => equation.clone(),
-        Coordinates::Shares => {
-            let income = Poly::var(system.income);
+    match (system.coordinates, &system.compensation) {
+        (Coordinates::Shares, Compensation::Income(income)) => {
+            let income = Poly::var(*income);
             let (left, right) = (scaled(&equation.left, &income), scaled(&equation.right, &income));
             Equation { label: equation.label, left, right }
         }
+        _ => equation.clone(),
     }
 }
 

@@ -39,9 +39,10 @@ pub(super) fn normalised(e: &Poly) -> Poly {
     split.part.mul_term(&rational(1, 1), &simple)
 }
 
-/// Whether a variable changes with prices, income or quantities.
+/// Whether a variable changes with prices, income, quantities or the utility level.
 pub(super) fn moves(field: &Field, v: Var) -> bool {
-    field.symbols_of(&Poly::var(v)).into_iter().any(|s| field.role(s).is_some_and(Role::is_positive))
+    let moves = |role: Role| role.is_positive() || role == Role::Utility;
+    field.symbols_of(&Poly::var(v)).into_iter().any(|s| field.role(s).is_some_and(moves))
 }
 
 /// Whether the monomials are independent functions whatever the parameters are. One positive function by itself is;

@@ -143,6 +143,8 @@ pub struct ClaimFinding {
     pub verdict: Verdict,
     /// The point at which the claim fails.
     pub witness: Option<Witness>,
+    /// For a claim about a function of the theory: what the function is, in its own arguments, where that is known.
+    pub correct: Option<Element>,
     /// The steps that establish the verdict.
     pub steps: Vec<StepId>,
     /// Where nothing could be shown: what is left, and why.
@@ -150,9 +152,14 @@ pub struct ClaimFinding {
 }
 
 impl ClaimFinding {
+    /// A finding that a step establishes.
+    pub fn settled(verdict: Verdict, witness: Option<Witness>, step: StepId) -> ClaimFinding {
+        ClaimFinding { verdict, witness, correct: None, steps: vec![step], reason: None }
+    }
+
     /// Nothing could be shown.
     pub fn undecided(reason: &str) -> ClaimFinding {
         let reason = Some(reason.to_string());
-        ClaimFinding { verdict: Verdict::Undecided, witness: None, steps: Vec::new(), reason }
+        ClaimFinding { verdict: Verdict::Undecided, witness: None, correct: None, steps: Vec::new(), reason }
     }
 }

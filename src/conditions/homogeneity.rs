@@ -7,15 +7,19 @@ use crate::proof::{Equation, Expression, Factor, Label};
 
 use super::finding::Condition;
 use super::settlement::Family;
-use super::slutsky::{Coordinates, System, scaled};
+use super::slutsky::{Compensation, Coordinates, System, scaled};
 
 /// By Euler's theorem: Σⱼ θⱼ wᵢ + θₘ wᵢ = 0 for shares, Σⱼ θⱼ yᵢ + θₘ yᵢ = yᵢ for outlays; the prices of goods outside the
 /// system count among the pⱼ.
 pub(super) const FAMILY: Family = Family { condition: Condition::Homogeneity, equations, in_quantities };
 
 fn equations(system: &System) -> Vec<Equation> {
-    let movers = system.prices.iter().chain(&system.others).chain(std::iter::once(&system.income));
-    let movers = Rc::new(movers.copied().collect());
+    // Hicksian demands are homogeneous in prices alone
+    let income = match system.compensation {
+        Compensation::Income(income) => Some(income),
+        Compensation::Scale | Compensation::Kept(_) => None,
+    };
+    let movers = Rc::new(system.prices.iter().chain(&system.others).copied().chain(income).collect());
     (0..system.size()).map(|i| equation(system, i, &movers)).collect()
 }
 

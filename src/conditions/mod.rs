@@ -6,7 +6,7 @@
 
 mod adding_up;
 mod branches;
-mod claims;
+pub mod claims;
 mod coefficients;
 mod curvature;
 mod finding;
@@ -16,19 +16,26 @@ mod slutsky;
 mod symmetry;
 mod witness;
 
+use crate::algebra::generator::Element;
+use crate::language::Preferences;
 use crate::model::{Coverage, Model};
 use crate::proof::Prover;
 
+pub use claims::chart::{Chart, Charts};
 pub use claims::examine_claim;
 pub use finding::{Branch, ClaimFinding, Condition, Finding, Verdict, Witness};
-pub use slutsky::{Coordinates, System};
+pub use slutsky::{Compensation, Coordinates, System};
 
-/// Whether a condition is asked of a model: adding-up only of complete systems, homogeneity not of deflated ones.
+/// Whether a condition is asked of a model: adding-up only of complete systems, homogeneity neither of deflated ones
+/// nor of inverse demands, which are normalised.
 pub fn applies(condition: Condition, model: &Model) -> bool {
+    let inverse = model.demands.is_empty() && !model.inverse.is_empty();
+    let hicksian = model.given.as_ref().is_some_and(|given| given.kind == Preferences::Expenditure);
+    let marshallian = !model.demands.is_empty() && model.income.is_some();
     match condition {
-        _ if model.demands.is_empty() || model.income.is_none() => false,
+        _ if !marshallian && !inverse && !hicksian => false,
         Condition::AddingUp => model.coverage == Coverage::Complete,
-        Condition::Homogeneity => model.coverage != Coverage::Deflated,
+        Condition::Homogeneity => model.coverage != Coverage::Deflated && !inverse,
         Condition::Symmetry | Condition::Curvature => true,
     }
 }
@@ -47,4 +54,12 @@ pub fn examine(condition: Condition, model: &Model, prover: &mut Prover<'_>, ear
         Condition::Symmetry => settlement::settle(model, &system, prover, &symmetry::FAMILY),
         Condition::Curvature => curvature::examine(model, &system, prover, earlier),
     }
+}
+
+/// Examines whether a direct utility is quasi-concave where it rises: whether the Antonelli matrix of its inverse
+/// demands is negative semidefinite. `None` where quantities have no names.
+pub fn examine_utility(model: &Model, utility: &Element, prover: &mut Prover<'_>) -> Option<Finding> {
+    let system = System::of_utility(model, utility, prover)?;
+    system.prepare(prover);
+    Some(curvature::examine(model, &system, prover, &[]))
 }

@@ -2,6 +2,9 @@
 //!
 //! With shares wᵢ and θ = p ∂/∂p (θₘ = m ∂/∂m), pᵢ pⱼ Sᵢⱼ / m = Tᵢⱼ + wᵢ wⱼ − δᵢⱼ wᵢ where Tᵢⱼ = θⱼ wᵢ + wⱼ θₘ wᵢ; with outlays
 //! yᵢ = pᵢ xᵢ, pᵢ pⱼ Sᵢⱼ = Tᵢⱼ − δᵢⱼ yᵢ where Tᵢⱼ = θⱼ yᵢ + yⱼ ∂yᵢ/∂m. In both, S is symmetric exactly when T is.
+//!
+//! Two relatives have the same form. For inverse demands πᵢ with shares wᵢ = xᵢ πᵢ and θ = x ∂/∂x, the Antonelli matrix is
+//! xᵢ xⱼ Aᵢⱼ = Tᵢⱼ + wᵢ wⱼ − δᵢⱼ wᵢ where Tᵢⱼ = θⱼ wᵢ − wⱼ Σₖ θₖ wᵢ. For Hicksian demands, yᵢ = pᵢ hᵢ(p, u) and Tᵢⱼ = θⱼ yᵢ.
 
 use std::rc::Rc;
 
@@ -9,7 +12,8 @@ use crate::algebra::generator::Element;
 use crate::algebra::monomial::{Monomial, Var};
 use crate::algebra::number::rational;
 use crate::algebra::polynomial::Poly;
-use crate::model::{Coverage, Form, Model};
+use crate::language::Preferences;
+use crate::model::{Coverage, Form, Model, inverse_shares};
 use crate::proof::{Expression, Factor, FunctionId, Matrix, Prover};
 
 /// What the demands are written in.
@@ -21,6 +25,17 @@ pub enum Coordinates {
     Outlays,
 }
 
+/// What stands in for the change of income that keeps utility.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Compensation {
+    /// Income itself: Marshallian demands.
+    Income(Var),
+    /// All quantities in proportion: inverse demands.
+    Scale,
+    /// Nothing: Hicksian demands, with the expenditure function.
+    Kept(Element),
+}
+
 /// The demands of a model as functions of a derivation.
 #[derive(Clone, Debug)]
 pub struct System {
@@ -28,19 +43,25 @@ pub struct System {
     pub coordinates: Coordinates,
     /// A function for each good.
     pub functions: Vec<FunctionId>,
-    /// The prices of the goods.
+    /// The prices of the goods; of inverse demands, their quantities.
     pub prices: Vec<Var>,
-    /// Income.
-    pub income: Var,
+    /// How utility is kept.
+    pub compensation: Compensation,
     /// The prices of goods outside the system.
     pub others: Vec<Var>,
+    /// What else must be positive where the system is a consumer's.
+    pub positive: Vec<Element>,
 }
 
 impl System {
-    /// The demands of a model, in shares where most are written so. `None` without demands or income.
+    /// The demands of a model, in shares where most are written so; else its inverse demands, or the Hicksian demands of
+    /// its expenditure function. `None` where it has none of them.
     pub fn of(model: &Model, prover: &mut Prover<'_>) -> Option<System> {
+        if model.demands.is_empty() {
+            return System::inverse(model, prover).or_else(|| System::hicksian(model, prover));
+        }
         let income = model.income?;
-        if model.demands.is_empty() || model.demands.len() != model.prices.len() {
+        if model.demands.len() != model.prices.len() {
             return None;
         }
         let shares = model.demands.iter().filter(|d| d.form == Form::Share).count();
@@ -54,13 +75,88 @@ impl System {
             Coverage::Others(others) => others.clone(),
             Coverage::Complete | Coverage::Deflated => Vec::new(),
         };
-        Some(System { coordinates, functions, prices: model.prices.clone(), income, others })
+        let (prices, compensation) = (model.prices.clone(), Compensation::Income(income));
+        Some(System { coordinates, functions, prices, compensation, others, positive: Vec::new() })
+    }
+
+    fn inverse(model: &Model, prover: &mut Prover<'_>) -> Option<System> {
+        let given = model.given.as_ref().filter(|given| given.kind == Preferences::Utility);
+        if let Some(given) = given {
+            return System::of_utility(model, &given.value, prover);
+        }
+        if model.inverse.is_empty() {
+            return None;
+        }
+        System::of_inverse(model, model.inverse.iter().map(|i| i.share.clone()).collect(), Vec::new(), prover)
+    }
+
+    /// The inverse demands of a direct utility. `None` where quantities have no names, or utility does not change.
+    pub(super) fn of_utility(model: &Model, utility: &Element, prover: &mut Prover<'_>) -> Option<System> {
+        let quantities: Vec<Var> = model.quantities.iter().copied().collect::<Option<_>>()?;
+        let field = prover.field();
+        // a utility that falls has the same shares: they alone do not tell
+        let slopes = quantities.iter().map(|x| field.reduce(&field.log_derivative(utility, *x))).collect();
+        System::of_inverse(model, inverse_shares(field, utility, &quantities)?, slopes, prover)
+    }
+
+    fn of_inverse(
+        model: &Model,
+        shares: Vec<Element>,
+        positive: Vec<Element>,
+        prover: &mut Prover<'_>,
+    ) -> Option<System> {
+        let quantities: Vec<Var> = model.quantities.iter().copied().collect::<Option<_>>()?;
+        let functions = shares.iter().zip(&model.goods);
+        let functions = functions.map(|(share, good)| prover.define(&format!("share {}", good.name), share)).collect();
+        Some(System {
+            coordinates: Coordinates::Shares,
+            functions,
+            prices: quantities,
+            compensation: Compensation::Scale,
+            others: Vec::new(),
+            positive,
+        })
+    }
+
+    fn hicksian(model: &Model, prover: &mut Prover<'_>) -> Option<System> {
+        let e = &model.given.as_ref().filter(|given| given.kind == Preferences::Expenditure)?.value;
+        let field = prover.field();
+        let outlays = model.prices.iter().zip(&model.goods);
+        let outlays = outlays.map(|(price, good)| {
+            let outlay = field.log_derivative(e, *price);
+            prover.define(&format!("outlay {}", good.name), &outlay)
+        });
+        Some(System {
+            coordinates: Coordinates::Outlays,
+            functions: outlays.collect(),
+            prices: model.prices.clone(),
+            compensation: Compensation::Kept(e.clone()),
+            others: Vec::new(),
+            positive: vec![e.clone()],
+        })
+    }
+
+    /// The movers whose slopes the compensated slopes are made of.
+    fn movers(&self) -> Vec<Var> {
+        let mut movers = self.prices.clone();
+        if let Compensation::Income(income) = self.compensation {
+            movers.push(income);
+        }
+        movers
+    }
+
+    /// What all functions sum to where the budget is spent.
+    pub(super) fn whole(&self) -> Expression {
+        match (self.coordinates, &self.compensation) {
+            (Coordinates::Shares, _) | (_, Compensation::Scale) => Expression::integer(1),
+            (Coordinates::Outlays, Compensation::Income(income)) => Expression::element(Poly::var(*income)),
+            (Coordinates::Outlays, Compensation::Kept(e)) => Expression::element(e.clone()),
+        }
     }
 
     /// Has the prover differentiate every function in one pass.
     pub(super) fn prepare(&self, prover: &mut Prover<'_>) {
-        let mut movers = self.prices.clone();
-        movers.push(self.income);
+        let movers = self.movers();
         self.functions.iter().for_each(|f| prover.prepare(*f, &movers));
     }
 
@@ -74,18 +170,16 @@ impl System {
         Factor::LogSlope(self.functions[i], self.prices[j])
     }
 
-    /// The income slope that goes with the coordinates: θₘ wᵢ or ∂yᵢ/∂m.
-    fn income_slope(&self, i: usize) -> Factor {
-        match self.coordinates {
-            Coordinates::Shares => Factor::LogSlope(self.functions[i], self.income),
-            Coordinates::Outlays => Factor::Slope(self.functions[i], self.income),
-        }
-    }
-
     /// Tᵢⱼ: the slope that is symmetric exactly when the Slutsky matrix is.
     pub fn compensated_slope(&self, i: usize, j: usize) -> Expression {
-        Expression::from(self.price_slope(i, j))
-            .plus(1, vec![Factor::Function(self.functions[j]), self.income_slope(i)])
+        let (f, weight) = (self.functions[i], Factor::Function(self.functions[j]));
+        let slope = Expression::from(self.price_slope(i, j));
+        match (&self.compensation, self.coordinates) {
+            (Compensation::Income(m), Coordinates::Shares) => slope.plus(1, vec![weight, Factor::LogSlope(f, *m)]),
+            (Compensation::Income(m), Coordinates::Outlays) => slope.plus(1, vec![weight, Factor::Slope(f, *m)]),
+            (Compensation::Scale, _) => slope.plus(-1, vec![weight, Factor::Euler(f, Rc::new(self.prices.clone()))]),
+            (Compensation::Kept(_), _) => slope,
+        }
     }
 
     /// pᵢ pⱼ Sᵢⱼ (outlays) or pᵢ pⱼ Sᵢⱼ/m (shares).
@@ -111,8 +205,8 @@ impl System {
     /// What a scaled entry is multiplied by to give Sᵢⱼ.
     pub(super) fn scale(&self, i: usize, j: usize) -> Element {
         let mut powers = vec![(self.prices[i], -1), (self.prices[j], -1)];
-        if self.coordinates == Coordinates::Shares {
-            powers.push((self.income, 1));
+        if let (Coordinates::Shares, Compensation::Income(income)) = (self.coordinates, &self.compensation) {
+            powers.push((*income, 1));
         }
         Poly::term(&rational(1, 1), Monomial::from_pairs(powers))
     }
@@ -127,8 +221,8 @@ impl System {
     /// What a function is multiplied by to give the quantity.
     pub(super) fn quantity_scale(&self, i: usize) -> Element {
         let mut powers = vec![(self.prices[i], -1)];
-        if self.coordinates == Coordinates::Shares {
-            powers.push((self.income, 1));
+        if let (Coordinates::Shares, Compensation::Income(income)) = (self.coordinates, &self.compensation) {
+            powers.push((*income, 1));
         }
         Poly::term(&rational(1, 1), Monomial::from_pairs(powers))
     }

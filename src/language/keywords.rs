@@ -37,7 +37,12 @@ pub const KEYWORDS: [Keyword; 20] = [
     keyword("log", Some(Rule::demand), "log demand GOOD = FORMULA or log demand[i] = FORMULA", false),
     keyword("rest", Some(Rule::rest), "rest GOOD or rest[2]", false),
     keyword("others", Some(Rule::others), "others NAME, … or others deflated", true),
-    keyword("claim", Some(Rule::claim), "claim FORMULA = FORMULA or claim FORMULA > FORMULA", false),
+    keyword(
+        "claim",
+        Some(Rule::claim),
+        "claim FORMULA = FORMULA, claim FORMULA > FORMULA or claim hicksian GOOD = FORMULA",
+        false,
+    ),
     keyword("inverse", Some(Rule::inverse), "inverse GOOD = FORMULA or inverse[i] = FORMULA", false),
     keyword(
         "given",

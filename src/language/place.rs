@@ -139,7 +139,10 @@ impl<'a> Place<'a> {
 }
 
 /// What the rules read, in words, in the order in which it is told; what may stand in a place and need not is left out.
-const PHRASES: [(&[Rule], &str); 22] = [
+const PHRASES: [(&[Rule], &str); 25] = [
+    (&[Rule::preferences], "`utility`, `indirect utility`, `expenditure`"),
+    (&[Rule::of_response], "`[`"),
+    (&[Rule::mover], "a price or `income`"),
     (&[Rule::good, Rule::member], "the name of a good"),
     (&[Rule::target], "a good"),
     (&[Rule::good_number], "a number"),

@@ -29,7 +29,8 @@ pub fn latex_formula(span: Span) -> Diagnostic {
 }
 
 const TAKE_OUT: &str = "take the statement out, or put `#` before its lines";
-const PLAIN_CLAIMS: &str = "claims may be identities and inequalities, and formulas for the functions of the theory: claim expenditure = …";
+const PLAIN_CLAIMS: &str =
+    "claims may be identities and inequalities, and formulas for the functions of the theory: claim expenditure = …";
 
 /// What comes before `=` or `:`, at most the first line.
 fn form_span(text: &str, offset: usize) -> Span {

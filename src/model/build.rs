@@ -10,13 +10,13 @@ use crate::algebra::monomial::Var;
 use crate::language::{self, Diagnostic, Source, Span};
 
 use super::evaluate::{Evaluator, Failed};
+use super::given::{self, Derived};
 use super::ground::{Conflict, Ground, establish};
 use super::names::{AbbreviationId, FamilyId, Names};
 use super::order::Item;
 use super::resolve::tuples;
 use super::script::{Covered, Defined, Script, Stated, plain_text, script};
 use super::symbols::Symbols;
-use super::given::{self, Derived};
 use super::system::{Claim, Coverage, Demand, Given, Good, InverseDemand, Parameter, Statement, Value};
 use super::{Model, Text};
 
@@ -75,6 +75,7 @@ fn content(evaluator: &Evaluator<'_>) -> Option<Content> {
     let (mut demands, given, mut inverse) = (demands.ok()?, given.ok()?, inverse.ok()?);
     let mut claims = claims.ok()?;
     if let Some(given) = &given {
+        claims.extend(given::monotone(evaluator, given));
         claims.extend(given::against(evaluator, &demands, given.span));
         let derived = given::derive(evaluator, given);
         match derived.ok()? {

@@ -160,7 +160,9 @@ impl Writer<'_> {
 
     fn moved(&mut self, free: &[Name], mover: &Mover) -> Option<Moved> {
         let reference = match mover {
-            Mover::Number(number, span) => return Some(Moved::Price(self.slot(free, &Index::Number(*number), *span)?)),
+            Mover::Number(number, span) => {
+                return Some(Moved::Price(self.slot(free, &Index::Number(*number), *span)?));
+            }
             Mover::Named(reference) => reference,
         };
         let text = &reference.name.text;
@@ -229,7 +231,8 @@ impl Writer<'_> {
             Claim::Relation(_) => None,
         });
         if let (Some(span), false, true) = (first, system, self.mistakes.is_empty()) {
-            let message = "a claim about the consumer's functions, but no demands and no preferences to hold it against";
+            let message =
+                "a claim about the consumer's functions, but no demands and no preferences to hold it against";
             let remedy = "add `demand GOOD = …` for each good, or `given utility = …`";
             self.mistakes.push(Diagnostic::error(span, message).remedy(remedy));
         }

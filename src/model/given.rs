@@ -3,10 +3,11 @@
 //!
 //! Roy: p_i x_i / m = −θᵢv / θₘv with θ = y ∂/∂y. A direct utility has the inverse demands x_i π_i = θᵢU / Σₖ θₖU.
 
+use crate::algebra::field::Field;
 use crate::algebra::generator::{Element, Role};
 use crate::algebra::monomial::Var;
 use crate::algebra::polynomial::Poly;
-use crate::language::{Diagnostic, Form as WrittenForm, Preferences, Span};
+use crate::language::{Comparison, Diagnostic, Form as WrittenForm, Preferences, Span};
 
 use super::evaluate::{Evaluator, Failed};
 use super::resolve::Node;
@@ -87,6 +88,32 @@ pub(super) fn against(evaluator: &Evaluator<'_>, demands: &[Demand], span: Span)
     demands.iter().zip(goods).enumerate().map(claim).collect()
 }
 
+/// What makes given preferences those of a consumer and is not asked by a condition: U rises in every quantity, v in
+/// income, e in the utility level.
+pub(super) fn monotone(evaluator: &Evaluator<'_>, given: &Given) -> Vec<Claim> {
+    let (symbols, field) = (evaluator.symbols, evaluator.field);
+    let movers: Vec<Var> = match given.kind {
+        Preferences::Utility => symbols.quantities().iter().copied().flatten().collect(),
+        Preferences::IndirectUtility => symbols.income().into_iter().collect(),
+        Preferences::Expenditure => vec![symbols.utility()],
+    };
+    let what = match given.kind {
+        Preferences::Utility => "utility",
+        Preferences::IndirectUtility => "indirect utility",
+        Preferences::Expenditure => "expenditure",
+    };
+    let claim = |mover: Var| Claim {
+        text: format!("the given {what} rises in {}", field.name(mover).unwrap_or_default()),
+        statement: Statement::Relation {
+            left: field.reduce(&field.derivative(&given.value, mover)),
+            relation: Comparison::Greater,
+            right: Poly::zero(),
+        },
+        span: given.span,
+    };
+    movers.into_iter().map(claim).collect()
+}
+
 /// What follows from the given preferences by differentiation.
 pub(super) fn derive(evaluator: &Evaluator<'_>, given: &Given) -> Result<Derived, Failed> {
     match given.kind {
@@ -99,38 +126,54 @@ pub(super) fn derive(evaluator: &Evaluator<'_>, given: &Given) -> Result<Derived
 fn roy(evaluator: &Evaluator<'_>, given: &Given) -> Result<Vec<Demand>, Failed> {
     let field = evaluator.field;
     let income = evaluator.symbols.income().ok_or(Failed)?;
-    let along = field.reduce(&field.log_derivative(&given.value, income));
-    if field.is_zero(&along) {
+    let Some(shares) = marshallian_shares(field, &given.value, evaluator.symbols.prices(), income) else {
         return Err(constant(evaluator, given.span, "indirect utility does not depend on income"));
-    }
+    };
     let m = Poly::var(income);
-    let of = |a: &Element, b: &Element| field.quotient(a, b).map_err(|_| Failed);
-    let demand = |price: &Var| {
-        let across = field.reduce(&field.log_derivative(&given.value, *price));
-        let share = field.reduce(&of(&across.neg(), &along)?);
+    let demand = |(price, share): (&Var, Element)| {
         let outlay = field.reduce(&field.product(&share, &m));
-        let quantity = field.reduce(&of(&outlay, &Poly::var(*price))?);
+        let quantity = field.reduce(&field.quotient(&outlay, &Poly::var(*price)).map_err(|_| Failed)?);
         Ok(Demand { form: Form::Demand, formula: quantity.clone(), quantity, outlay, share })
     };
-    evaluator.symbols.prices().iter().map(demand).collect()
+    evaluator.symbols.prices().iter().zip(shares).map(demand).collect()
+}
+
+/// The budget shares p_i x_i / m that an indirect utility function has by Roy's identity; `None` where it does not
+/// depend on income.
+pub fn marshallian_shares(field: &Field, v: &Element, prices: &[Var], income: Var) -> Option<Vec<Element>> {
+    let along = field.reduce(&field.log_derivative(v, income));
+    if field.is_zero(&along) {
+        return None;
+    }
+    let share = |price: &Var| {
+        let across = field.reduce(&field.log_derivative(v, *price));
+        Some(field.reduce(&field.quotient(&across.neg(), &along).ok()?))
+    };
+    prices.iter().map(share).collect()
+}
+
+/// The shares x_i π_i of inverse demand that a direct utility function has by the first-order conditions; `None` where
+/// it does not change as all quantities grow in proportion.
+pub fn inverse_shares(field: &Field, utility: &Element, quantities: &[Var]) -> Option<Vec<Element>> {
+    let slopes: Vec<Element> = quantities.iter().map(|x| field.reduce(&field.log_derivative(utility, *x))).collect();
+    let total = field.reduce(&Poly::sum(slopes.iter().map(|e| field.current(e)).collect()));
+    if field.is_zero(&total) {
+        return None;
+    }
+    slopes.iter().map(|slope| Some(field.reduce(&field.quotient(slope, &total).ok()?))).collect()
 }
 
 fn first_order(evaluator: &Evaluator<'_>, given: &Given) -> Result<Vec<InverseDemand>, Failed> {
     let field = evaluator.field;
     let quantities: Vec<Var> = evaluator.symbols.quantities().iter().copied().collect::<Option<_>>().ok_or(Failed)?;
-    let slopes: Vec<Element> =
-        quantities.iter().map(|x| field.reduce(&field.log_derivative(&given.value, *x))).collect();
-    let total = field.reduce(&Poly::sum(slopes.iter().map(|e| field.current(e)).collect()));
-    if field.is_zero(&total) {
+    let Some(shares) = inverse_shares(field, &given.value, &quantities) else {
         return Err(constant(evaluator, given.span, "utility does not change as all quantities grow in proportion"));
-    }
-    let of = |a: &Element, b: &Element| field.quotient(a, b).map_err(|_| Failed);
-    let inverse = |(slope, x): (&Element, &Var)| {
-        let share = field.reduce(&of(slope, &total)?);
-        let formula = field.reduce(&of(&share, &Poly::var(*x))?);
+    };
+    let inverse = |(share, x): (Element, &Var)| {
+        let formula = field.reduce(&field.quotient(&share, &Poly::var(*x)).map_err(|_| Failed)?);
         Ok(InverseDemand { formula, share })
     };
-    slopes.iter().zip(&quantities).map(inverse).collect()
+    shares.into_iter().zip(&quantities).map(inverse).collect()
 }
 
 fn constant(evaluator: &Evaluator<'_>, span: Span, message: &str) -> Failed {

@@ -28,10 +28,11 @@ use crate::algebra::generator::Element;
 use crate::algebra::monomial::Var;
 use crate::language::{self, Diagnostic, Source};
 
+pub use given::{inverse_shares, marshallian_shares};
 pub use points::PointSearch;
 pub use system::{
-    Assumption, Claim, Coverage, Demand, DomainCondition, Form, Function, Given, Good, InverseDemand, Parameter, Statement,
-    Value,
+    Assumption, Claim, Coverage, Demand, DomainCondition, Form, Function, Given, Good, InverseDemand, Parameter,
+    Statement, Value,
 };
 
 /// A model file with its meaning.

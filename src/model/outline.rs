@@ -2,8 +2,7 @@
 
 use crate::language::{
     self, Claim, Declared, Diagnostic, Equation, Expr, Goods, Index, Located, Name, Others, Preferences, Relation,
-    Source, Span,
-    Statement, Target,
+    Source, Span, Statement, Target,
 };
 
 /// A statement's content with its place.

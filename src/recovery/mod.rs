@@ -11,6 +11,7 @@ pub mod divisors;
 pub mod fractions;
 pub mod frame;
 pub mod gather;
+pub mod given;
 pub mod integrating_factor;
 pub mod inverse_factor;
 pub mod invert;

@@ -26,6 +26,8 @@ pub enum Method {
     Riccati,
     /// An integrating factor.
     IntegratingFactor,
+    /// They are the author's own.
+    Given,
 }
 
 /// A method: its proposals for a system.

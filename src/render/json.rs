@@ -175,7 +175,7 @@ fn claim(model: &Model, claim: &Claim, finding: &ClaimFinding) -> Json {
         "claim": claim.text,
         "verdict": vocabulary::verdict(finding.verdict),
         "witness": witness,
-        "correct": Json::Null,
+        "correct": finding.correct.as_ref().map(|e| formula(&model.field, e)),
         "reason": finding.reason,
     })
 }

@@ -21,5 +21,6 @@ pub fn method(method: Method) -> &'static str {
         Method::Linear => "linear in a function of income",
         Method::Riccati => "quadratic in a function of income",
         Method::IntegratingFactor => "an integrating factor",
+        Method::Given => "given, and differentiated",
     }
 }

@@ -8,10 +8,10 @@ use std::rc::Rc;
 use std::time::{Duration, Instant};
 
 use crate::algebra::budget::{self, Limits, Stopped};
-use crate::conditions::{self, ClaimFinding, Condition, Finding, Verdict};
+use crate::conditions::{self, Charts, ClaimFinding, Condition, Finding, Verdict};
 use crate::model::Model;
 use crate::proof::{Derivation, Prover};
-use crate::recovery::{self, Recovered};
+use crate::recovery::{self, Recovered, given};
 
 /// A part of the work that can be asked for by itself.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -111,14 +111,29 @@ pub fn vet(model: Rc<Model>, asked: &[Part], allowance: Allowance) -> Vetting {
         findings.push(found.unwrap_or_else(|stopped| Finding::undecided(condition, stopped.describe())));
     }
     let mut recovered = None;
-    if asked.contains(&Part::Recovery) && !model.demands.is_empty() {
+    let of_functions = model.claims.iter().any(|claim| claim.sides().is_none());
+    if model.given.is_none()
+        && !model.demands.is_empty()
+        && (asked.contains(&Part::Recovery) || asked.contains(&Part::Claims) && of_functions)
+    {
         let found = run.part(Part::Recovery, || recover(&model, &mut prover, &findings));
         recovered = Some(found.unwrap_or_else(|stopped| not_found(stopped.describe())));
     }
+    let mut charts = Charts::default();
+    if model.given.is_some() || asked.contains(&Part::Claims) && of_functions {
+        let part = if asked.contains(&Part::Claims) { Part::Claims } else { Part::Recovery };
+        charts = run.part(part, || given::charts(&model, recovered.as_ref(), &mut prover)).unwrap_or_default();
+        recovered = given::derived(&model, &charts).or(recovered);
+    }
+    recovered = recovered.filter(|_| asked.contains(&Part::Recovery));
     let mut claims = Vec::new();
     if asked.contains(&Part::Claims) {
-        for claim in &model.claims {
-            let found = run.part(Part::Claims, || conditions::examine_claim(&model, claim, &mut prover));
+        for (place, claim) in model.claims.iter().enumerate() {
+            if let Some((_, settled)) = charts.settled.iter().find(|(settled, _)| *settled == place) {
+                claims.push(settled.clone());
+                continue;
+            }
+            let found = run.part(Part::Claims, || conditions::examine_claim(&model, claim, &charts, &mut prover));
             claims.push(found.unwrap_or_else(|stopped| ClaimFinding::undecided(stopped.describe())));
         }
     }

@@ -1,7 +1,7 @@
 //! Model texts with what the conditions say of them.
 #![allow(dead_code)]
 
-use mainspring::conditions::{ClaimFinding, Condition, Finding, Verdict, applies, examine, examine_claim};
+use mainspring::conditions::{Charts, ClaimFinding, Condition, Finding, Verdict, applies, examine, examine_claim};
 use mainspring::language::{self, Source};
 use mainspring::model::{self, Model};
 use mainspring::proof::{Derivation, Prover};
@@ -40,7 +40,8 @@ pub fn vet_only(text: &str, asked: &[Condition]) -> Vetted {
         let finding = examine(*condition, &model, &mut prover, &findings);
         findings.push(finding);
     }
-    let claims = model.claims.iter().map(|claim| examine_claim(&model, claim, &mut prover)).collect();
+    let claims =
+        model.claims.iter().map(|claim| examine_claim(&model, claim, &Charts::default(), &mut prover)).collect();
     let derivation = prover.into_derivation();
     Vetted { model, findings, claims, derivation }
 }

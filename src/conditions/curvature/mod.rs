@@ -15,7 +15,6 @@ use std::rc::Rc;
 use crate::algebra::budget;
 use crate::algebra::field::Relation;
 use crate::algebra::generator::Element;
-use crate::algebra::polynomial::Poly;
 use crate::model::{Coverage, Model};
 use crate::proof::{Balanced, Expression, Factor, Matrix, Proved, Prover};
 
@@ -70,13 +69,10 @@ fn positive_quantities(model: &Model, system: &System) -> Vec<(Expression, Relat
     let mut domain: Vec<(Expression, Relation)> =
         system.functions.iter().map(|f| (Expression::from(Factor::Function(*f)), Relation::Positive)).collect();
     if model.coverage != Coverage::Complete {
-        let whole = match system.coordinates {
-            super::Coordinates::Shares => Expression::integer(1),
-            super::Coordinates::Outlays => Expression::element(Poly::var(system.income)),
-        };
-        let left = system.functions.iter().fold(whole, |sum, f| sum.plus(-1, vec![Factor::Function(*f)]));
+        let left = system.functions.iter().fold(system.whole(), |sum, f| sum.plus(-1, vec![Factor::Function(*f)]));
         domain.push((left, Relation::Positive));
     }
+    domain.extend(system.positive.iter().map(|e| (Expression::element(e.clone()), Relation::Positive)));
     domain
 }
 

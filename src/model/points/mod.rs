@@ -50,6 +50,8 @@ struct Plan {
     powers: BTreeMap<Var, u32>,
     /// Constraints without free symbols hold.
     possible: bool,
+    /// Whether the file speaks of the utility level.
+    utility_matters: bool,
 }
 
 impl<'a> PointSearch<'a> {
@@ -90,11 +92,17 @@ impl Plan {
         let mut constraints = Constraint::of_model(model);
         constraints.extend(positive.iter().map(|e| Constraint::new(field, e, Relation::Positive)));
         let order = free_symbols(model);
+        let determined: Vec<Var> =
+            if model.demands.is_empty() { Vec::new() } else { model.quantities.iter().flatten().copied().collect() };
         let places: BTreeMap<Var, usize> = order.iter().enumerate().map(|(place, var)| (*var, place)).collect();
         let mut complete: BTreeMap<Var, Vec<usize>> = BTreeMap::new();
         let mut shared: BTreeMap<Var, Vec<usize>> = BTreeMap::new();
         let mut possible = true;
         for (index, constraint) in constraints.iter().enumerate() {
+            // what is demanded follows from the rest; the caller checks it at the whole point
+            if constraint.symbols.iter().any(|var| determined.contains(var)) {
+                continue;
+            }
             let Some(last) = constraint.last(&places) else {
                 possible &= Values::at(field, &Point::new()).satisfies(&constraint.element, constraint.relation);
                 continue;
@@ -110,7 +118,8 @@ impl Plan {
             ranges.entry(*var).or_insert_with(|| own_range(field, *var));
         }
         let powers = order.iter().map(|var| (*var, root_power(field, *var))).collect();
-        Plan { constraints, order, complete, shared, ranges, powers, possible }
+        let utility_matters = model.given.is_some() || model.claims.iter().any(|claim| claim.sides().is_none());
+        Plan { constraints, order, complete, shared, ranges, powers, possible, utility_matters }
     }
 
     /// A point by this recipe, if it leads to one.
@@ -125,7 +134,7 @@ impl Plan {
             let numbers = match field.role(*var) {
                 Some(Role::Income) => for_income(recipe, power, &range, &mut dice),
                 Some(Role::Price | Role::Others | Role::Quantity) => for_price(recipe, place, power, &range, &mut dice),
-                Some(Role::Utility) => vec![Rational::from_integer(1.into())],
+                Some(Role::Utility) if !self.utility_matters => vec![Rational::from_integer(1.into())],
                 _ => for_parameter(recipe, place, &range, &mut dice),
             };
             let fits = |value: &Rational| {

@@ -1,42 +1,50 @@
-//! The author's claims: identities and inequalities on the domain.
+//! Claims that are identities or inequalities on the domain.
 
 use crate::algebra::budget;
 use crate::algebra::evaluation::Point;
 use crate::algebra::field::Relation;
 use crate::algebra::generator::Element;
 use crate::language::Comparison;
-use crate::model::{Claim, Model};
+use crate::model::Model;
 use crate::proof::{Bounded, Equation, Expression, Label, Prover, Residual};
 
-use super::finding::{ClaimFinding, Verdict, Witness};
-use super::witness;
+use super::super::finding::{ClaimFinding, Verdict, Witness};
+use super::super::witness;
 
 /// How many points are looked at against an inequality.
 const MOST_POINTS: usize = 400;
 /// The work that one evaluation may take.
 const WORK: u64 = 20_000_000;
 
-/// Examines a claim. The steps are added to the prover's derivation, with the claim's text for their subject.
-pub fn examine_claim(model: &Model, claim: &Claim, prover: &mut Prover<'_>) -> ClaimFinding {
-    let (left, right) = (claim.left.clone(), claim.right.clone());
-    match claim.relation {
-        Comparison::Equal => identity(model, prover, &claim.text, left, right),
-        Comparison::NotEqual => bound(model, prover, &claim.text, &left - &right, Relation::NonZero),
-        Comparison::Greater => bound(model, prover, &claim.text, &left - &right, Relation::Positive),
-        Comparison::GreaterEqual => bound(model, prover, &claim.text, &left - &right, Relation::NonNegative),
-        Comparison::Less => bound(model, prover, &claim.text, &right - &left, Relation::Positive),
-        Comparison::LessEqual => bound(model, prover, &claim.text, &right - &left, Relation::NonNegative),
+/// Examines left ~ right.
+pub(super) fn examine(
+    model: &Model,
+    prover: &mut Prover<'_>,
+    text: &str,
+    left: &Element,
+    relation: Comparison,
+    right: &Element,
+) -> ClaimFinding {
+    match relation {
+        Comparison::Equal => identity(model, prover, text, left.clone(), right.clone()),
+        Comparison::NotEqual => bound(model, prover, text, left - right, Relation::NonZero),
+        Comparison::Greater => bound(model, prover, text, left - right, Relation::Positive),
+        Comparison::GreaterEqual => bound(model, prover, text, left - right, Relation::NonNegative),
+        Comparison::Less => bound(model, prover, text, right - left, Relation::Positive),
+        Comparison::LessEqual => bound(model, prover, text, right - left, Relation::NonNegative),
     }
 }
 
 fn identity(model: &Model, prover: &mut Prover<'_>, text: &str, left: Element, right: Element) -> ClaimFinding {
     let equation = Equation { label: Label::Whole, left: Expression::element(left), right: Expression::element(right) };
     let residuals = match prover.identities(text, vec![equation.clone()], &[]) {
-        Ok(proof) => return settled(Verdict::Proven, None, proof.step()),
+        Ok(proof) => return ClaimFinding::settled(Verdict::Proven, None, proof.step()),
         Err(residuals) => residuals,
     };
     match witness::against(model, prover, text, &residuals, &|_: &Residual| Some(equation.clone())) {
-        Some(refuted) => settled(Verdict::Refuted, Some(Witness::of(refuted.failure(), None)), refuted.step()),
+        Some(refuted) => {
+            ClaimFinding::settled(Verdict::Refuted, Some(Witness::of(refuted.failure(), None)), refuted.step())
+        }
         None => ClaimFinding::undecided(
             "the normal form of the difference is not zero, and no admissible point was found that shows it",
         ),
@@ -46,7 +54,7 @@ fn identity(model: &Model, prover: &mut Prover<'_>, text: &str, left: Element, r
 fn bound(model: &Model, prover: &mut Prover<'_>, text: &str, e: Element, relation: Relation) -> ClaimFinding {
     let expression = Expression::element(e.clone());
     if let Some(proof) = prover.bound(text, expression.clone(), relation, &[]) {
-        return settled(Verdict::Proven, None, proof.step());
+        return ClaimFinding::settled(Verdict::Proven, None, proof.step());
     }
     let claim = Bounded { expression, relation };
     for point in model.points().take(MOST_POINTS) {
@@ -54,7 +62,7 @@ fn bound(model: &Model, prover: &mut Prover<'_>, text: &str, e: Element, relatio
             continue;
         }
         if let Some(refuted) = prover.refute_bound(text, claim.clone(), &point) {
-            return settled(Verdict::Refuted, Some(Witness::of(refuted.failure(), None)), refuted.step());
+            return ClaimFinding::settled(Verdict::Refuted, Some(Witness::of(refuted.failure(), None)), refuted.step());
         }
     }
     ClaimFinding::undecided("no sign follows from the assumptions, and no admissible point was found against it")
@@ -72,8 +80,4 @@ fn may_fail(model: &Model, e: &Element, relation: Relation, point: &Point) -> bo
             | (Relation::NonNegative, Some(Equal))
     );
     !holds
-}
-
-fn settled(verdict: Verdict, witness: Option<Witness>, step: crate::proof::StepId) -> ClaimFinding {
-    ClaimFinding { verdict, witness, steps: vec![step], reason: None }
 }
