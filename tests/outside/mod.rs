@@ -1,7 +1,10 @@
 //! An evaluation of model files from outside: it walks the syntax tree in floating point and knows nothing of the
 //! program's algebra, of how it checks, or of what it found.
 
+#![allow(dead_code)]
+
 pub mod dual;
+pub mod integrability;
 
 use std::collections::BTreeMap;
 
@@ -18,6 +21,8 @@ pub struct Outside {
     pub prices: Vec<String>,
     /// The prices of goods outside the system.
     pub others: Vec<String>,
+    /// Whether the system covers the whole budget.
+    pub complete: bool,
     pub income: Option<String>,
     groups: BTreeMap<String, Vec<String>>,
     lets: BTreeMap<String, (Vec<String>, Expr)>,
@@ -38,6 +43,7 @@ impl Outside {
             goods: Vec::new(),
             prices: Vec::new(),
             others: Vec::new(),
+            complete: true,
             income: None,
             groups: BTreeMap::new(),
             lets: BTreeMap::new(),
@@ -73,7 +79,9 @@ impl Outside {
             }
             Statement::Demand(equation) => self.demands.push((equation.form, equation.target, equation.value)),
             Statement::Rest(target) => self.rest = Some(target_text(&target)),
+            Statement::Others(Others::Deflated) => self.complete = false,
             Statement::Others(Others::Prices(names)) => {
+                self.complete = false;
                 self.others = names.into_iter().map(|each| each.name.text).collect();
             }
             _ => {}
