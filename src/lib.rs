@@ -14,6 +14,7 @@ pub mod model;
 pub mod proof;
 pub mod recovery;
 pub mod render;
+pub mod restrictions;
 pub mod vetting;
 
 use algebra::budget::{self, Limits, Stopped};

@@ -9,7 +9,7 @@ use super::settlement::{Family, settle};
 use super::slutsky::{Compensation, Coordinates, System, scaled};
 
 /// Σ wᵢ = 1, or Σ yᵢ = m.
-const FAMILY: Family = Family { condition: Condition::AddingUp, equations, in_quantities };
+pub(super) const FAMILY: Family = Family { condition: Condition::AddingUp, equations, in_quantities };
 
 fn equations(system: &System) -> Vec<Equation> {
     let left = system.functions.iter().fold(Expression::zero(), |sum, f| sum.plus(1, vec![Factor::Function(*f)]));

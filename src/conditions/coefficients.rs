@@ -33,14 +33,14 @@ pub(super) fn of(field: &Field, residuals: &[Residual]) -> Coefficients {
 }
 
 /// The same equation without content, divisors and repeated single factors.
-pub(super) fn normalised(e: &Poly) -> Poly {
+pub fn normalised(e: &Poly) -> Poly {
     let split = e.primitive();
     let simple = Monomial::from_pairs(split.monomial.iter().filter(|(_, k)| *k > 0).map(|(v, _)| (v, 1)));
     split.part.mul_term(&rational(1, 1), &simple)
 }
 
 /// Whether a variable changes with prices, income, quantities or the utility level.
-pub(super) fn moves(field: &Field, v: Var) -> bool {
+pub fn moves(field: &Field, v: Var) -> bool {
     let moves = |role: Role| role.is_positive() || role == Role::Utility;
     field.symbols_of(&Poly::var(v)).into_iter().any(|s| field.role(s).is_some_and(moves))
 }
@@ -67,7 +67,8 @@ fn is_positive_function(field: &Field, v: Var) -> bool {
     }
 }
 
-fn contains_special(field: &Field, v: Var) -> bool {
+/// Whether a special function stands in a variable.
+pub fn contains_special(field: &Field, v: Var) -> bool {
     match &*field.kind(v) {
         Kind::Symbol(_) | Kind::Ln(Base::Number(_)) => false,
         Kind::Ln(Base::Var(base)) => contains_special(field, *base),

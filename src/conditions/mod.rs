@@ -7,7 +7,7 @@
 mod adding_up;
 mod branches;
 pub mod claims;
-mod coefficients;
+pub mod coefficients;
 mod curvature;
 mod finding;
 mod homogeneity;
@@ -19,7 +19,7 @@ mod witness;
 use crate::algebra::generator::Element;
 use crate::language::Preferences;
 use crate::model::{Coverage, Model};
-use crate::proof::Prover;
+use crate::proof::{Prover, Residual};
 
 pub use claims::chart::{Chart, Charts};
 pub use claims::examine_claim;
@@ -62,4 +62,37 @@ pub fn examine_utility(model: &Model, utility: &Element, prover: &mut Prover<'_>
     let system = System::of_utility(model, utility, prover)?;
     system.prepare(prover);
     Some(curvature::examine(model, &system, prover, &[]))
+}
+
+/// The identities of a condition; `None` for curvature, which is none.
+fn family(condition: Condition) -> Option<&'static settlement::Family> {
+    match condition {
+        Condition::Homogeneity => Some(&homogeneity::FAMILY),
+        Condition::AddingUp => Some(&adding_up::FAMILY),
+        Condition::Symmetry => Some(&symmetry::FAMILY),
+        Condition::Curvature => None,
+    }
+}
+
+/// What keeps a condition that is a family of identities from holding: the differences whose normal form is not zero.
+/// Empty exactly where the condition is proven. `None` for curvature and for models without demands.
+pub fn differences(condition: Condition, model: &Model, prover: &mut Prover<'_>) -> Option<Vec<Residual>> {
+    let family = family(condition)?;
+    let system = System::of(model, prover)?;
+    if condition == Condition::Symmetry {
+        system.prepare(prover);
+    }
+    Some(settlement::differences(&system, prover, family))
+}
+
+/// An admissible point at which one of the differences of a condition does not vanish.
+pub fn failure(
+    condition: Condition,
+    model: &Model,
+    prover: &mut Prover<'_>,
+    differences: &[Residual],
+) -> Option<Witness> {
+    let family = family(condition)?;
+    let system = System::of(model, prover)?;
+    settlement::failure(model, &system, prover, family, differences)
 }

@@ -3,7 +3,7 @@
 
 use crate::algebra::budget;
 use crate::model::Model;
-use crate::proof::{Equation, Prover, Residual};
+use crate::proof::{Equation, Identities, Prover, Refuted, Residual};
 
 use super::branches::{self, Solved};
 use super::finding::{Condition, Finding, Verdict, Witness};
@@ -37,11 +37,7 @@ pub(super) fn settle(model: &Model, system: &System, prover: &mut Prover<'_>, fa
         }
         Err(residuals) => residuals,
     };
-    let shown = |residual: &Residual| {
-        let equation = equations.iter().find(|e| e.label == residual.label);
-        equation.map(|e| (family.in_quantities)(system, e))
-    };
-    let mut finding = match witness::against(model, prover, subject, &residuals, &shown) {
+    let mut finding = match against(model, system, prover, family, &equations, &residuals) {
         Some(refuted) => {
             let mut finding = Finding::new(family.condition, Verdict::Refuted, "evaluation at a point");
             finding.witness = Some(Witness::of(refuted.failure(), None));
@@ -59,6 +55,40 @@ pub(super) fn settle(model: &Model, system: &System, prover: &mut Prover<'_>, fa
     };
     finding.residuals = residuals;
     finding
+}
+
+/// The differences of the sides whose normal form is not zero.
+pub(super) fn differences(system: &System, prover: &mut Prover<'_>, family: &Family) -> Vec<Residual> {
+    let equations = (family.equations)(system);
+    prover.identities(family.condition.name(), equations, &[]).err().unwrap_or_default()
+}
+
+/// An admissible point at which one of the differences does not vanish.
+pub(super) fn failure(
+    model: &Model,
+    system: &System,
+    prover: &mut Prover<'_>,
+    family: &Family,
+    residuals: &[Residual],
+) -> Option<Witness> {
+    let equations = (family.equations)(system);
+    let refuted = against(model, system, prover, family, &equations, residuals)?;
+    Some(Witness::of(refuted.failure(), None))
+}
+
+fn against(
+    model: &Model,
+    system: &System,
+    prover: &mut Prover<'_>,
+    family: &Family,
+    equations: &[Equation],
+    residuals: &[Residual],
+) -> Option<Refuted<Identities>> {
+    let shown = |residual: &Residual| {
+        let equation = equations.iter().find(|e| e.label == residual.label);
+        equation.map(|e| (family.in_quantities)(system, e))
+    };
+    witness::against(model, prover, family.condition.name(), residuals, &shown)
 }
 
 /// Looks for parameter values that rescue the condition, or for a reason why none do.

@@ -1,0 +1,135 @@
+//! A branch: parameter values for which the conditions hold, and what the system becomes under them.
+
+use std::rc::Rc;
+
+use crate::algebra::field::{Field, Relation};
+use crate::algebra::generator::Element;
+use crate::algebra::monomial::Var;
+use crate::algebra::polynomial::Poly;
+use crate::algebra::sign::Sign;
+use crate::conditions::{self, Condition, Finding, Verdict};
+use crate::model::Model;
+use crate::proof::{Derivation, Prover, Value, exact_value};
+use crate::recovery::{self, Recovered};
+
+use super::node::Node;
+use super::search::Tested;
+
+/// How many points are looked at for one that satisfies the side conditions.
+const MOST_POINTS: usize = 24;
+
+/// Parameter values for which the conditions hold: where all equations hold and no side condition vanishes.
+pub struct Branch {
+    /// Parameters with their values, in declared order; elements of the general model's field.
+    pub equations: Vec<(Var, Element)>,
+    /// Elements of the general model's field that do not vanish.
+    pub side_conditions: Vec<Element>,
+    /// The parameters that stay free, in declared order. Their number is the dimension of the branch.
+    pub free: Vec<Var>,
+    /// The model with the values put in.
+    pub model: Rc<Model>,
+    /// What is found of the conditions there.
+    pub findings: Vec<Finding>,
+    /// The preferences there; `None` where symmetry is not proven.
+    pub recovered: Option<Recovered>,
+    /// The steps that prove all this, over the field of `model`.
+    pub derivation: Derivation,
+}
+
+impl Branch {
+    /// The number of parameters that stay free.
+    pub fn dimension(&self) -> usize {
+        self.free.len()
+    }
+
+    /// The finding on a condition.
+    pub fn finding(&self, condition: Condition) -> Option<&Finding> {
+        self.findings.iter().find(|finding| finding.condition == condition)
+    }
+}
+
+/// Whether the conditions hold for all values of a leaf, and whether there are any.
+pub fn test(model: &Model, only: &[Condition], leaf: &Node) -> Tested {
+    if contradicts_a_fact(&model.field, &leaf.solved) {
+        return Tested::Empty;
+    }
+    let Ok(special) = model.respecialised(&leaf.solved) else { return Tested::Open };
+    let mut prover = Prover::new(&special.field);
+    let holds = |condition: &Condition| match conditions::differences(*condition, &special, &mut prover) {
+        Some(differences) => differences.is_empty(),
+        None => *condition == Condition::Curvature,
+    };
+    if !only.iter().all(holds) {
+        return Tested::Open;
+    }
+    let sides: Option<Vec<Element>> = leaf.sides.iter().map(|e| transfer(model, &special, e)).collect();
+    let Some(sides) = sides else { return Tested::Open };
+    let nonzero = |e: &Element, point: &_| {
+        let sign = exact_value(&special.field, e, point).as_ref().and_then(Value::sign);
+        sign.is_some_and(|sign| sign != std::cmp::Ordering::Equal)
+    };
+    let admissible = special.points().take(MOST_POINTS).any(|point| sides.iter().all(|e| nonzero(e, &point)));
+    if admissible { Tested::Holds } else { Tested::Open }
+}
+
+/// An element of the model's field in that of the special model; the names are the same.
+fn transfer(model: &Model, special: &Model, e: &Element) -> Option<Element> {
+    let symbol = |name: &str| special.parameters.iter().find(|p| p.name == name).map(|p| Poly::var(p.var));
+    special.field.import(&model.field, e, &symbol).ok()
+}
+
+/// Whether a fact about parameters becomes false whatever the others are.
+fn contradicts_a_fact(field: &Field, solved: &[(Var, Element)]) -> bool {
+    field.facts().iter().any(|fact| {
+        if solved.iter().all(|(v, _)| !field.depends_on(&fact.element, *v)) {
+            return false;
+        }
+        let Ok(value) = field.substitute(&fact.element, solved) else { return false };
+        let sign = if field.is_zero(&value) { Sign::Zero } else { field.sign(&value) };
+        match fact.relation {
+            Relation::Positive => matches!(sign, Sign::Zero | Sign::Negative | Sign::NonPositive),
+            Relation::NonNegative => sign == Sign::Negative,
+            Relation::NonZero => sign == Sign::Zero,
+        }
+    })
+}
+
+/// The branch that a confirmed leaf is, without findings yet. `None` where the model cannot be built.
+pub fn branch(model: &Model, leaf: &Node) -> Option<Branch> {
+    let special = Rc::new(model.respecialised(&leaf.solved).ok()?);
+    let mut equations = leaf.solved.clone();
+    let place = |v: Var| model.parameters.iter().position(|p| p.var == v);
+    equations.sort_by_key(|(v, _)| place(*v));
+    let open = model.parameters.iter().filter(|p| p.eliminated.is_none()).map(|p| p.var);
+    let free = open.filter(|v| equations.iter().all(|(w, _)| w != v)).collect();
+    let derivation = Prover::new(&special.field).into_derivation();
+    Some(Branch {
+        equations,
+        side_conditions: leaf.sides.clone(),
+        free,
+        model: special,
+        findings: Vec::new(),
+        recovered: None,
+        derivation,
+    })
+}
+
+/// Examines the system that the branch leaves: all conditions, and the preferences where symmetry is proven.
+pub fn examine(branch: &mut Branch) {
+    let model = branch.model.clone();
+    let mut prover = Prover::new(&model.field);
+    let mut findings = Vec::new();
+    for condition in Condition::ALL.into_iter().filter(|c| conditions::applies(*c, &model)) {
+        let found = super::limited(|| conditions::examine(condition, &model, &mut prover, &findings));
+        findings.push(found.unwrap_or_else(|stopped| Finding::undecided(condition, stopped.describe())));
+    }
+    branch.findings = findings;
+    if branch.finding(Condition::Symmetry).is_some_and(|f| f.verdict == Verdict::Proven) {
+        let found = super::limited(|| recovery::recover(&model, &mut prover));
+        branch.recovered = Some(found.unwrap_or_else(|stopped| Recovered::NotFound {
+            reason: stopped.describe().to_string(),
+            existence: true,
+        }));
+    }
+    branch.derivation = prover.into_derivation();
+}

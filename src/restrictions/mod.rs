@@ -1,0 +1,141 @@
+//! Parameter restrictions: for which parameter values conditions hold, as a list of branches, and what each leaves.
+//!
+//! The differences that should vanish become sums of functions of prices and income with coefficients of the parameters
+//! ([`terms`]); where they vanish is searched exhaustively ([`search`]), coincidences of functions included; each branch
+//! is proven by building the model anew ([`branch`]).
+
+pub mod branch;
+mod equations;
+mod node;
+mod search;
+mod terms;
+
+use std::rc::Rc;
+
+use crate::algebra::budget::{self, Stopped};
+use crate::algebra::monomial::Var;
+use crate::conditions::{self, Condition, Witness};
+use crate::model::Model;
+use crate::proof::{Prover, Residual};
+
+pub use branch::Branch;
+
+use node::Node;
+use search::Search;
+
+/// What is asked.
+#[derive(Clone, Debug)]
+pub struct Request {
+    /// The conditions that are to hold, together.
+    pub only: Vec<Condition>,
+    /// Parameters that must stay free: branches that restrict them alone are left out.
+    pub kept: Vec<Var>,
+}
+
+/// The parameter values for which conditions hold.
+pub struct Restrictions {
+    /// The model.
+    pub model: Rc<Model>,
+    /// The conditions that are to hold, as far as they make sense for the model.
+    pub only: Vec<Condition>,
+    /// The branches, none inside another, the largest first.
+    pub branches: Vec<Branch>,
+    /// Whether they are shown to be all.
+    pub complete: bool,
+    /// Why they may not be all.
+    pub reason: Option<String>,
+    /// For each condition that does not hold for all parameter values: a point, outside all branches, at which it fails.
+    pub failures: Vec<(Condition, Witness)>,
+}
+
+/// The work that the search for branches may take.
+const SEARCH_WORK: u64 = 8_000_000_000;
+/// The work that one part of the examination of a branch may take.
+const PART_WORK: u64 = 600_000_000;
+
+/// Finds the branches, and examines each.
+pub fn restrict(model: Rc<Model>, request: &Request) -> Restrictions {
+    let only: Vec<Condition> =
+        Condition::ALL.into_iter().filter(|c| request.only.contains(c) && conditions::applies(*c, &model)).collect();
+    let mut found = branches(model, only, &request.kept);
+    found.branches.iter_mut().for_each(branch::examine);
+    found
+}
+
+/// Finds the branches without examining what they leave.
+pub fn branches(model: Rc<Model>, only: Vec<Condition>, kept: &[Var]) -> Restrictions {
+    let mut out = Restrictions {
+        model: model.clone(),
+        only: only.clone(),
+        branches: Vec::new(),
+        complete: false,
+        reason: None,
+        failures: Vec::new(),
+    };
+    let Some(differences) = differences(&model, &only, &mut out) else { return out };
+    let test = |leaf: &Node| branch::test(&model, &only, leaf);
+    let mut search = Search::new(&model.field, kept, &test);
+    let ended = budget::attempt(SEARCH_WORK, || begin(&model, &differences, &mut search));
+    if let Err(stopped) = ended {
+        search.leave_out(stopped.describe());
+    }
+    (out.complete, out.reason) = (search.exhaustive, search.reason);
+    let mut leaves = without_inner(&model, search.found);
+    leaves.sort_by_key(|leaf| leaf.solved.len());
+    out.branches = leaves.iter().filter_map(|leaf| branch::branch(&model, leaf)).collect();
+    out
+}
+
+/// Runs a part of the work within its own limit.
+fn limited<T>(work: impl FnOnce() -> T) -> Result<T, Stopped> {
+    budget::attempt(PART_WORK, work)
+}
+
+/// The differences of all conditions, and a failure for each condition that has any.
+fn differences(model: &Model, only: &[Condition], out: &mut Restrictions) -> Option<Vec<Residual>> {
+    let mut prover = Prover::new(&model.field);
+    let mut all = Vec::new();
+    for condition in only.iter().filter(|c| **c != Condition::Curvature) {
+        let found = budget::attempt(SEARCH_WORK, || {
+            let differences = conditions::differences(*condition, model, &mut prover).unwrap_or_default();
+            let failure = conditions::failure(*condition, model, &mut prover, &differences);
+            (differences, failure)
+        });
+        match found {
+            Ok((differences, failure)) => {
+                out.failures.extend(failure.map(|witness| (*condition, witness)));
+                all.extend(differences);
+            }
+            Err(stopped) => {
+                out.reason = Some(stopped.describe().to_string());
+                return None;
+            }
+        }
+    }
+    Some(all)
+}
+
+fn begin(model: &Model, differences: &[Residual], search: &mut Search<'_>) {
+    let mut root = Node::default();
+    for residual in differences {
+        let sum = terms::terms_of(&model.field, &residual.element);
+        if !sum.understood {
+            search.leave_out("functions of prices and parameters whose coincidences are not known");
+        }
+        root.sums.push(terms::merged(&model.field, sum.terms));
+    }
+    search.follow(root);
+}
+
+/// The leaves that are inside none of the others.
+fn without_inner(model: &Model, leaves: Vec<Node>) -> Vec<Node> {
+    let field = &model.field;
+    let mut kept: Vec<Node> = Vec::new();
+    for (at, leaf) in leaves.iter().enumerate() {
+        let later = leaves[at + 1..].iter().any(|other| leaf.is_inside(field, other) && !other.is_inside(field, leaf));
+        if !later && !kept.iter().any(|other| leaf.is_inside(field, other)) {
+            kept.push(leaf.clone());
+        }
+    }
+    kept
+}
