@@ -1,7 +1,7 @@
 //! Decides exactly whether a consumer demand system comes from a utility-maximising consumer, and from which.
 //!
-//! A model file becomes a [`model::Model`] with [`read`]; [`vet`] finds the verdicts and the preferences; the reports
-//! of [`render`] are made from what it found.
+//! A model file becomes a [`model::Model`] with [`read`]; [`vet`] finds the verdicts and the preferences,
+//! [`restrict`] the parameter values for which conditions hold; the reports of [`render`] are made from what it found.
 
 #![deny(missing_docs)]
 // the documentation is for contributors too, and is built with the private items
@@ -23,6 +23,8 @@ use algebra::number::Rational;
 use algebra::polynomial::Poly;
 use language::{Diagnostic, Source};
 use model::{Model, Value};
+use restrictions::{Request, Restrictions};
+use std::rc::Rc;
 pub use vetting::{Allowance, Part, Vetting, vet};
 
 /// Why a model file gives no model.
@@ -56,4 +58,12 @@ pub fn read(source: &Source, values: &[(String, Rational)], allowance: Allowance
         Ok(Err(mistakes)) => Err(Unread::Mistakes(mistakes)),
         Err(stopped) => Err(Unread::Stopped(stopped)),
     }
+}
+
+/// Finds the parameter values for which the conditions asked for hold together, and examines what each branch leaves.
+/// The time and the memory are for everything; running out leaves what was found until then.
+pub fn restrict(model: Rc<Model>, request: &Request, allowance: Allowance) -> Restrictions {
+    let limits = Limits::new(u64::MAX, allowance.time, allowance.memory_mib);
+    let outcome = budget::within(limits, || restrictions::restrict(model.clone(), request));
+    outcome.unwrap_or_else(|stopped| Restrictions::unknown(model, stopped.describe()))
 }

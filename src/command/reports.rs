@@ -7,10 +7,12 @@ use std::time::{Duration, Instant};
 use mainspring::algebra::number::Rational;
 use mainspring::conditions::{Condition, Verdict};
 use mainspring::language::Source;
-use mainspring::render::{html, json, latex, report, text};
+use mainspring::render::document::Document;
+use mainspring::render::{html, json, json_restrictions, latex, report, text};
+use mainspring::restrictions::{Request, Restrictions};
 use mainspring::vetting::appendix::Appendix;
 use mainspring::vetting::{Allowance, Part, Vetting};
-use mainspring::{Unread, read, vet};
+use mainspring::{Unread, read, restrict, vet};
 
 use super::arguments::{self, Accepted, Command, Form, Options};
 use super::input::Input;
@@ -62,6 +64,15 @@ pub fn report(command: &Command, input: &Input, values: &[(String, Rational)]) -
     };
     clock.lap("read");
     model.warnings.iter().for_each(|warning| eprintln!("{}", warning.render(&source)));
+    if let Command::Restrict(options) = command {
+        let found = restrict(model, &request(command), allowance);
+        clock.lap("restrictions");
+        let report = match options.form {
+            Form::Json => Report::Json(json_restrictions::restrictions(&found)),
+            _ => in_form(command, options, input, &source, &report::restrictions(&found)),
+        };
+        return (Some(report), restricted(&found, &options.accept));
+    }
     let vetting = vet(model, &asked(command), allowance);
     for (part, time) in &vetting.timings {
         clock.tell(part.word(), *time);
@@ -98,6 +109,26 @@ fn asked(command: &Command) -> Vec<Part> {
     Part::ALL.into_iter().filter(|part| options.only.iter().any(|only| named(*only) == *part)).collect()
 }
 
+/// The conditions that are to hold together.
+fn request(command: &Command) -> Request {
+    let condition = |part: &Part| match part {
+        Part::Condition(condition) => Some(*condition),
+        Part::Recovery | Part::Claims => None,
+    };
+    Request { only: asked(command).iter().filter_map(condition).collect(), kept: Vec::new() }
+}
+
+/// The status that a list of branches calls for.
+fn restricted(found: &Restrictions, accept: &[Accepted]) -> Status {
+    match (found.unrestricted(), found.complete) {
+        (true, _) => Status::Passed,
+        (false, true) if accept.contains(&Accepted::Conditional) && !found.branches.is_empty() => Status::Passed,
+        (false, true) => Status::Refuted,
+        (false, false) if accept.contains(&Accepted::Undecided) => Status::Passed,
+        (false, false) => Status::Undecided,
+    }
+}
+
 fn named(part: arguments::Part) -> Part {
     match part {
         arguments::Part::Homogeneity => Part::Condition(Condition::Homogeneity),
@@ -127,15 +158,19 @@ fn written(command: &Command, options: &Options, input: &Input, source: &Source,
         return Report::Json(json::vetting(vetting, matches!(command, Command::Derive(_))));
     }
     let document = match command {
-        Command::Vet(_) => report::answer(vetting),
         Command::Derive(_) => report::derivation(vetting, &Appendix::of(vetting, allowance(options))),
-        Command::Restrict(_) => report::answer(vetting),
+        Command::Vet(_) | Command::Restrict(_) => report::answer(vetting),
     };
+    in_form(command, options, input, source, &document)
+}
+
+/// A document in the form that is asked for.
+fn in_form(command: &Command, options: &Options, input: &Input, source: &Source, document: &Document) -> Report {
     Report::Text(match (options.form, options.document) {
-        (Form::Latex, true) => latex::whole(&document, &header(command, input, source)),
-        (Form::Latex, false) => latex::fragment(&document, &header(command, input, source)),
-        (Form::Html, _) => html::page(&document),
-        _ => text::text(&document, text::Layout { colour: options.out.is_none() && colour(), ..Default::default() }),
+        (Form::Latex, true) => latex::whole(document, &header(command, input, source)),
+        (Form::Latex, false) => latex::fragment(document, &header(command, input, source)),
+        (Form::Html, _) => html::page(document),
+        _ => text::text(document, text::Layout { colour: options.out.is_none() && colour(), ..Default::default() }),
     })
 }
 

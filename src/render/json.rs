@@ -51,7 +51,7 @@ pub fn formula(field: &Field, e: &Element) -> String {
     plain(&best_formula(field, e))
 }
 
-fn finding(model: &Model, finding: &Finding) -> Json {
+pub(super) fn finding(model: &Model, finding: &Finding) -> Json {
     let field = &model.field;
     let mut out = Map::new();
     out.insert("verdict".into(), json!(vocabulary::verdict(finding.verdict)));
@@ -79,7 +79,7 @@ fn branch(field: &Field, branch: &Branch) -> Vec<String> {
     equations.chain(conditions).chain(bounds).collect()
 }
 
-fn witness(model: &Model, condition: Condition, witness: &Witness) -> Json {
+pub(super) fn witness(model: &Model, condition: Condition, witness: &Witness) -> Json {
     let mut out = Map::new();
     out.insert("point".into(), json!(point(&model.field, &witness.point)));
     out.insert("where".into(), json!(place(model, condition, witness.place)));
@@ -119,7 +119,7 @@ fn value(value: &Value) -> Json {
     }
 }
 
-fn recovered(model: &Model, recovered: &Recovered) -> Json {
+pub(super) fn recovered(model: &Model, recovered: &Recovered) -> Json {
     match recovered {
         Recovered::Found(preferences) => found(model, preferences),
         Recovered::NotFound { reason, existence } => json!({"reason": reason, "existence": existence}),

@@ -9,6 +9,7 @@ pub mod formula_latex;
 pub mod formula_text;
 pub mod html;
 pub mod json;
+pub mod json_restrictions;
 pub mod latex;
 mod latex_display;
 mod latex_escape;

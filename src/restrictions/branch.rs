@@ -126,10 +126,11 @@ pub fn examine(branch: &mut Branch) {
     branch.findings = findings;
     if branch.finding(Condition::Symmetry).is_some_and(|f| f.verdict == Verdict::Proven) {
         let found = super::limited(|| recovery::recover(&model, &mut prover));
-        branch.recovered = Some(found.unwrap_or_else(|stopped| Recovered::NotFound {
-            reason: stopped.describe().to_string(),
-            existence: true,
-        }));
+        branch.recovered =
+            Some(found.unwrap_or_else(|stopped| Recovered::NotFound {
+                reason: stopped.describe().to_string(),
+                existence: true,
+            }));
     }
     branch.derivation = prover.into_derivation();
 }

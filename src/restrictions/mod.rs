@@ -48,6 +48,19 @@ pub struct Restrictions {
     pub failures: Vec<(Condition, Witness)>,
 }
 
+impl Restrictions {
+    /// Nothing was found.
+    pub fn unknown(model: Rc<Model>, reason: &str) -> Restrictions {
+        let reason = Some(reason.to_string());
+        Restrictions { model, only: Vec::new(), branches: Vec::new(), complete: false, reason, failures: Vec::new() }
+    }
+
+    /// Whether the conditions hold for all parameter values.
+    pub fn unrestricted(&self) -> bool {
+        self.branches.iter().any(|branch| branch.equations.is_empty() && branch.side_conditions.is_empty())
+    }
+}
+
 /// The work that the search for branches may take.
 const SEARCH_WORK: u64 = 8_000_000_000;
 /// The work that one part of the examination of a branch may take.
@@ -64,14 +77,7 @@ pub fn restrict(model: Rc<Model>, request: &Request) -> Restrictions {
 
 /// Finds the branches without examining what they leave.
 pub fn branches(model: Rc<Model>, only: Vec<Condition>, kept: &[Var]) -> Restrictions {
-    let mut out = Restrictions {
-        model: model.clone(),
-        only: only.clone(),
-        branches: Vec::new(),
-        complete: false,
-        reason: None,
-        failures: Vec::new(),
-    };
+    let mut out = Restrictions { only: only.clone(), reason: None, ..Restrictions::unknown(model.clone(), "") };
     let Some(differences) = differences(&model, &only, &mut out) else { return out };
     let test = |leaf: &Node| branch::test(&model, &only, leaf);
     let mut search = Search::new(&model.field, kept, &test);
@@ -80,9 +86,11 @@ pub fn branches(model: Rc<Model>, only: Vec<Condition>, kept: &[Var]) -> Restric
         search.leave_out(stopped.describe());
     }
     (out.complete, out.reason) = (search.exhaustive, search.reason);
-    let mut leaves = without_inner(&model, search.found);
+    let found = search.found;
+    let mut leaves = limited(|| without_inner(&model, &found)).unwrap_or(found);
     leaves.sort_by_key(|leaf| leaf.solved.len());
-    out.branches = leaves.iter().filter_map(|leaf| branch::branch(&model, leaf)).collect();
+    out.branches = leaves.iter().filter_map(|leaf| limited(|| branch::branch(&model, leaf)).ok().flatten()).collect();
+    out.complete &= out.branches.len() == leaves.len();
     out
 }
 
@@ -128,7 +136,7 @@ fn begin(model: &Model, differences: &[Residual], search: &mut Search<'_>) {
 }
 
 /// The leaves that are inside none of the others.
-fn without_inner(model: &Model, leaves: Vec<Node>) -> Vec<Node> {
+fn without_inner(model: &Model, leaves: &[Node]) -> Vec<Node> {
     let field = &model.field;
     let mut kept: Vec<Node> = Vec::new();
     for (at, leaf) in leaves.iter().enumerate() {

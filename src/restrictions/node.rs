@@ -113,9 +113,8 @@ impl Node {
                 gap.is_zero() || self.equations.contains(&gap)
             })
         };
-        let holds = |side: &Element| {
-            put_in(field, side, &self.solved).is_ok_and(|side| self.excludes_zero(field, &side))
-        };
+        let holds =
+            |side: &Element| put_in(field, side, &self.solved).is_ok_and(|side| self.excludes_zero(field, &side));
         // the side conditions first: the values of the other set are defined only where they hold
         other.sides.iter().all(holds) && other.solved.iter().all(vanishes)
     }

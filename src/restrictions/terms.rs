@@ -109,7 +109,8 @@ fn is_linear_in_prices(field: &Field, value: &Element) -> bool {
     let value = field.expand(value);
     let prices = field.moving_symbols().into_iter().filter(|s| field.role(*s) == Some(Role::Price)).count();
     let parts = value.collect(|v| moves(field, v));
-    let single = |m: &Monomial| matches!(m.iter().collect::<Vec<_>>()[..], [(v, 1)] if field.role(v) == Some(Role::Price));
+    let single =
+        |m: &Monomial| matches!(m.iter().collect::<Vec<_>>()[..], [(v, 1)] if field.role(v) == Some(Role::Price));
     prices > 1 && parts.len() == prices && parts.iter().all(|(m, c)| single(m) && field.sign(c).excludes_zero())
 }
 
@@ -172,4 +173,3 @@ pub fn merged(field: &Field, terms: Vec<Term>) -> Vec<Term> {
     out.retain(|term| !term.coefficient.is_zero());
     out
 }
-

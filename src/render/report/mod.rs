@@ -4,6 +4,7 @@ mod conditions;
 mod derivation;
 mod preferences;
 mod recovery;
+mod restrictions;
 mod system;
 mod verdicts;
 mod words;
@@ -11,4 +12,5 @@ mod working;
 mod written;
 
 pub use derivation::derivation;
+pub use restrictions::restrictions;
 pub use verdicts::answer;

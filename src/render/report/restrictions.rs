@@ -1,0 +1,137 @@
+//! The parameter restrictions: a table of branches, and what the system becomes under each.
+
+use crate::algebra::generator::Element;
+use crate::conditions::{Condition, Verdict};
+use crate::recovery::Recovered;
+use crate::render::document::{Block, Document, Equation, Inline, Relation, Table};
+use crate::render::expression::Expression;
+use crate::render::notation::Notation;
+use crate::render::report::preferences;
+use crate::render::report::verdicts::{condition_line, failure};
+use crate::render::report::words::{enumerated, listed, text};
+use crate::render::vocabulary;
+use crate::restrictions::{Branch, Restrictions};
+use crate::vetting::Part;
+
+/// The branches in a table, and each by itself.
+pub fn restrictions(found: &Restrictions) -> Document {
+    let notation = Notation::new(&found.model);
+    let mut blocks = vec![Block::Paragraph(vec![text(summary(found))])];
+    blocks.extend(failures(&notation, found));
+    if found.branches.len() > 1 {
+        blocks.push(Block::Table(table(&notation, found)));
+    }
+    for (number, branch) in found.branches.iter().enumerate() {
+        blocks.extend(one(&notation, found, number, branch));
+    }
+    Document { title: found.model.title.clone(), blocks }
+}
+
+/// How many branches there are, and whether they are all.
+fn summary(found: &Restrictions) -> String {
+    let names: Vec<String> = found.only.iter().map(|c| Part::Condition(*c).word().to_string()).collect();
+    let (subject, verb) = match names.len() {
+        0 => return "None of the conditions asked for makes sense for this model.".to_string(),
+        1 => (enumerated(&names), "holds"),
+        _ => (enumerated(&names), "hold together"),
+    };
+    let open = match &found.reason {
+        Some(reason) => format!("this list is not known to be complete ({reason})"),
+        None => "this list is not known to be complete".to_string(),
+    };
+    let words = match (found.branches.len(), found.complete) {
+        _ if found.unrestricted() => format!("{subject} {verb} for all admissible parameter values."),
+        (0, true) => format!("For no admissible parameter values {subject} {verb}."),
+        (0, false) => format!("No parameter values were found for which {subject} {verb}; {open}."),
+        (1, true) => format!("{subject} {verb} exactly under these restrictions."),
+        (1, false) => format!("{subject} {verb} under these restrictions; {open}."),
+        (n, true) => format!("{subject} {verb} exactly in these {n} cases."),
+        (n, false) => format!("{subject} {verb} in these {n} cases; {open}."),
+    };
+    let mut letters = words.chars();
+    letters.next().map_or_else(String::new, |first| first.to_uppercase().chain(letters).collect())
+}
+
+/// A point outside all branches for each condition that fails somewhere.
+fn failures(notation: &Notation<'_>, found: &Restrictions) -> Vec<Block> {
+    let each = |(condition, witness): &(Condition, crate::conditions::Witness)| {
+        let word = Part::Condition(*condition).word();
+        let mut words = vec![text(format!("Otherwise {word} may fail: it "))];
+        words.extend(failure(notation, *condition, witness));
+        words.push(text("."));
+        Block::Paragraph(words)
+    };
+    found.failures.iter().map(each).collect()
+}
+
+fn table(notation: &Notation<'_>, found: &Restrictions) -> Table {
+    let heading = |words: &str| vec![text(words)];
+    let columns = ["case", "restrictions", "free", "curvature"].into_iter().map(heading).collect();
+    let row = |(number, branch): (usize, &Branch)| {
+        let curvature = branch.finding(Condition::Curvature).map_or("", |f| vocabulary::verdict(f.verdict));
+        vec![
+            vec![text(letter(number))],
+            listed(relations(notation, branch).into_iter().map(|e| vec![Inline::equation(e)]).collect(), ", "),
+            vec![text(branch.dimension().to_string())],
+            vec![text(curvature)],
+        ]
+    };
+    Table { columns, rows: found.branches.iter().enumerate().map(row).collect() }
+}
+
+/// A, B, …, Z, then numbers.
+fn letter(number: usize) -> String {
+    u8::try_from(number)
+        .ok()
+        .filter(|n| *n < 26)
+        .map_or_else(|| (number + 1).to_string(), |n| char::from(b'A' + n).to_string())
+}
+
+/// The equations and side conditions of a branch.
+fn relations(notation: &Notation<'_>, branch: &Branch) -> Vec<Equation> {
+    let zero = Expression::Number(num_rational::Ratio::from_integer(0.into()));
+    let equations =
+        branch.equations.iter().map(|(v, value)| Equation::equal(notation.variable(*v), notation.element(value)));
+    let not_zero = |e: &Element| Equation::new(notation.element(e), Relation::NotEqual, zero.clone());
+    equations.chain(branch.side_conditions.iter().map(not_zero)).collect()
+}
+
+fn one(notation: &Notation<'_>, found: &Restrictions, number: usize, branch: &Branch) -> Vec<Block> {
+    let mut blocks = Vec::new();
+    if found.branches.len() > 1 {
+        blocks.push(Block::Heading { level: 1, text: vec![text(format!("Case {}", letter(number)))] });
+    }
+    let relations = relations(notation, branch);
+    if !relations.is_empty() {
+        blocks.push(Block::Display(relations));
+    }
+    blocks.push(Block::Paragraph(free(notation, branch)));
+    let own = Notation::new(&branch.model);
+    let open = |f: &&crate::conditions::Finding| !found.only.contains(&f.condition) || f.verdict != Verdict::Proven;
+    let lines: Vec<_> = branch.findings.iter().filter(open).map(|finding| condition_line(&own, finding)).collect();
+    if !lines.is_empty() {
+        blocks.push(Block::Verdicts(lines));
+    }
+    match &branch.recovered {
+        Some(Recovered::Found(preferences)) => blocks.extend(preferences::summary(&own, preferences)),
+        Some(Recovered::NotFound { reason, .. }) => {
+            blocks.push(Block::Note(vec![text(format!("Preferences exist locally, but {reason}."))]));
+        }
+        None => {}
+    }
+    blocks
+}
+
+fn free(notation: &Notation<'_>, branch: &Branch) -> Vec<Inline> {
+    let names: Vec<Vec<Inline>> = branch.free.iter().map(|v| vec![Inline::math(notation.variable(*v))]).collect();
+    let mut words = vec![text(match names.len() {
+        0 => "No parameter stays free.".to_string(),
+        1 => "One parameter stays free: ".to_string(),
+        n => format!("{n} parameters stay free: "),
+    })];
+    if !names.is_empty() {
+        words.extend(listed(names, " and "));
+        words.push(text("."));
+    }
+    words
+}
