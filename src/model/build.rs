@@ -39,7 +39,9 @@ pub(super) fn build(text: Rc<Text>, values: &[Value<'_>]) -> Result<Model, Vec<D
     let Some(content) = content.filter(|_| mistakes.is_empty()) else { return Err(mistakes) };
     let parameters = parameters(&evaluator);
     drop(evaluator);
-    Ok(assemble(text, &script, field, &symbols, ground, content, parameters))
+    let fixed = |p: &Parameter| values.iter().any(|value| value.parameter == p.name);
+    let fixed = parameters.iter().filter(|p| fixed(p)).map(|p| p.var).collect();
+    Ok(Model { fixed, ..assemble(text, &script, field, &symbols, ground, content, parameters) })
 }
 
 /// The mistakes in the names of a file that could be read in part only.
@@ -296,6 +298,7 @@ fn assemble(
         domain: ground.domain,
         warnings,
         field,
+        fixed: Vec::new(),
         text,
     }
 }

@@ -77,6 +77,8 @@ pub struct Model {
     pub domain: Vec<DomainCondition>,
     /// What is read, but perhaps not as its author meant it.
     pub warnings: Vec<Diagnostic>,
+    /// The parameters that values were put in for.
+    fixed: Vec<Var>,
     text: Rc<Text>,
 }
 
@@ -115,18 +117,36 @@ pub fn elaborate(source: &Source, tree: &language::Model, values: &[Value<'_>]) 
 
 impl Model {
     /// The model of the same text with elements of this model's field put in for parameters, built anew in a fresh
-    /// field.
+    /// field. Values that were put in before stay.
     ///
     /// # Errors
     /// What is wrong with the file under these values: a divisor that becomes zero, an assumption that fails.
     pub fn respecialised(&self, equations: &[(Var, Element)]) -> Result<Model, Vec<Diagnostic>> {
-        let names: Vec<String> = equations.iter().map(|(v, _)| self.field.name(*v).unwrap_or_default()).collect();
+        let mut all = self.values_so_far(equations)?;
+        all.extend_from_slice(equations);
+        let names: Vec<String> = all.iter().map(|(v, _)| self.field.name(*v).unwrap_or_default()).collect();
         let values: Vec<Value<'_>> = names
             .iter()
-            .zip(equations)
+            .zip(&all)
             .map(|(parameter, (_, element))| Value { parameter, element, field: &self.field })
             .collect();
         build::build(self.text.clone(), &values)
+    }
+
+    /// The values that were put in before, under the new ones.
+    fn values_so_far(&self, new: &[(Var, Element)]) -> Result<Vec<(Var, Element)>, Vec<Diagnostic>> {
+        let mut values = Vec::new();
+        let old =
+            self.parameters.iter().filter(|p| self.fixed.contains(&p.var) && new.iter().all(|(v, _)| *v != p.var));
+        for parameter in old {
+            let Some(value) = &parameter.eliminated else { continue };
+            let Ok(value) = self.field.substitute(value, new) else {
+                let words = format!("the value of `{}` is not defined there", parameter.name);
+                return Err(vec![Diagnostic::error(language::Span::new(0, 0), words)]);
+            };
+            values.push((parameter.var, value));
+        }
+        Ok(values)
     }
 
     /// The file that the model was made from.

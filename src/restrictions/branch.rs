@@ -8,7 +8,7 @@ use crate::algebra::monomial::Var;
 use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
 use crate::conditions::{self, Condition, Finding, Verdict};
-use crate::model::Model;
+use crate::model::{DomainCondition, Model};
 use crate::proof::{Derivation, Prover, Value, exact_value};
 use crate::recovery::{self, Recovered};
 
@@ -53,7 +53,7 @@ pub fn test(model: &Model, only: &[Condition], leaf: &Node) -> Tested {
     if contradicts_a_fact(&model.field, &leaf.solved) {
         return Tested::Empty;
     }
-    let Ok(special) = model.respecialised(&leaf.solved) else { return Tested::Open };
+    let Some((special, sides)) = special(model, leaf) else { return Tested::Open };
     let mut prover = Prover::new(&special.field);
     let holds = |condition: &Condition| match conditions::differences(*condition, &special, &mut prover) {
         Some(differences) => differences.is_empty(),
@@ -62,14 +62,24 @@ pub fn test(model: &Model, only: &[Condition], leaf: &Node) -> Tested {
     if !only.iter().all(holds) {
         return Tested::Open;
     }
-    let sides: Option<Vec<Element>> = leaf.sides.iter().map(|e| transfer(model, &special, e)).collect();
-    let Some(sides) = sides else { return Tested::Open };
     let nonzero = |e: &Element, point: &_| {
         let sign = exact_value(&special.field, e, point).as_ref().and_then(Value::sign);
         sign.is_some_and(|sign| sign != std::cmp::Ordering::Equal)
     };
     let admissible = special.points().take(MOST_POINTS).any(|point| sides.iter().all(|e| nonzero(e, &point)));
     if admissible { Tested::Holds } else { Tested::Open }
+}
+
+/// The model with the values put in, its side conditions part of its domain, and these in its field.
+fn special(model: &Model, leaf: &Node) -> Option<(Model, Vec<Element>)> {
+    let mut special = model.respecialised(&leaf.solved).ok()?;
+    let sides: Option<Vec<Element>> = leaf.sides.iter().map(|e| transfer(model, &special, e)).collect();
+    let sides = sides?;
+    for side in &sides {
+        special.field.assume(side, Relation::NonZero);
+        special.domain.push(DomainCondition::NonZero(side.clone()));
+    }
+    Some((special, sides))
 }
 
 /// An element of the model's field in that of the special model; the names are the same.
@@ -96,7 +106,7 @@ fn contradicts_a_fact(field: &Field, solved: &[(Var, Element)]) -> bool {
 
 /// The branch that a confirmed leaf is, without findings yet. `None` where the model cannot be built.
 pub fn branch(model: &Model, leaf: &Node) -> Option<Branch> {
-    let special = Rc::new(model.respecialised(&leaf.solved).ok()?);
+    let special = Rc::new(special(model, leaf)?.0);
     let mut equations = leaf.solved.clone();
     let place = |v: Var| model.parameters.iter().position(|p| p.var == v);
     equations.sort_by_key(|(v, _)| place(*v));

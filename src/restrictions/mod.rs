@@ -64,7 +64,7 @@ impl Restrictions {
 /// The work that the search for branches may take.
 const SEARCH_WORK: u64 = 8_000_000_000;
 /// The work that one part of the examination of a branch may take.
-const PART_WORK: u64 = 600_000_000;
+const PART_WORK: u64 = 60_000_000;
 
 /// Finds the branches, and examines each.
 pub fn restrict(model: Rc<Model>, request: &Request) -> Restrictions {

@@ -181,10 +181,28 @@ impl<'a> Search<'a> {
         }
     }
 
+    /// The reading whose divisor serves the most equations, so that few cases stand apart; a short divisor before a long
+    /// one.
+    fn best_divisor(&self, equations: &[Element]) -> Option<Linear> {
+        let readings: Vec<Vec<(Linear, Vec<Element>)>> = equations
+            .iter()
+            .map(|e| linear_readings(self.field, e, self.kept))
+            .map(|all| {
+                all.into_iter().map(|linear| (divisor(self.field, &linear), linear)).map(|(d, l)| (l, d)).collect()
+            })
+            .collect();
+        let serves = |divisor: &[Element]| {
+            readings.iter().filter(|all| all.iter().any(|(_, other)| other.as_slice() == divisor)).count()
+        };
+        let cost = |(linear, divisor): &(Linear, Vec<Element>)| {
+            (linear.coefficient.len(), std::cmp::Reverse(serves(divisor)), divisor.len(), linear.rest.len())
+        };
+        readings.iter().flatten().min_by_key(|each| cost(each)).map(|(linear, _)| linear.clone())
+    }
+
     /// Solves an equation whose coefficient may vanish, with the case that it does; or rewrites one.
     fn with_a_divisor(&mut self, node: Node, equations: &[Element]) -> Vec<Node> {
-        let readings = equations.iter().flat_map(|e| linear_readings(self.field, e, self.kept));
-        let best = readings.min_by_key(|linear| (linear.coefficient.len(), linear.rest.len()));
+        let best = self.best_divisor(equations);
         if let Some(linear) = best {
             let mut main = node.clone();
             main.sides.extend(parts(self.field, &linear.coefficient));
@@ -207,6 +225,13 @@ impl<'a> Search<'a> {
         self.leave_out("an equation between the parameters could not be solved for one of them");
         Vec::new()
     }
+}
+
+/// What may vanish in a coefficient.
+fn divisor(field: &Field, linear: &Linear) -> Vec<Element> {
+    let mut divisor = parts(field, &numerator(field, &linear.coefficient));
+    divisor.sort();
+    divisor
 }
 
 fn product(factors: &[Element]) -> Element {

@@ -107,7 +107,10 @@ fn one(notation: &Notation<'_>, found: &Restrictions, number: usize, branch: &Br
     }
     blocks.push(Block::Paragraph(free(notation, branch)));
     let own = Notation::new(&branch.model);
-    let open = |f: &&crate::conditions::Finding| !found.only.contains(&f.condition) || f.verdict != Verdict::Proven;
+    let asked = |c: Condition| found.only.contains(&c) || c == Condition::Curvature;
+    let open = |f: &&crate::conditions::Finding| {
+        asked(f.condition) && f.verdict != Verdict::Proven || f.condition == Condition::Curvature
+    };
     let lines: Vec<_> = branch.findings.iter().filter(open).map(|finding| condition_line(&own, finding)).collect();
     if !lines.is_empty() {
         blocks.push(Block::Verdicts(lines));
