@@ -1,0 +1,1 @@
+//! Tables of restrictions that are known.
