@@ -20,7 +20,8 @@ fn form(goods: usize, exponential: bool, price: &str, income: &str) -> String {
         names("g")
     );
     for i in 1..=goods {
-        let sum: Vec<String> = (1..=goods).map(|k| format!("b{i}{k}*{}", price.replace('#', &format!("p{k}")))).collect();
+        let sum: Vec<String> =
+            (1..=goods).map(|k| format!("b{i}{k}*{}", price.replace('#', &format!("p{k}")))).collect();
         let sum = format!("{} + g{i}*{income}", sum.join(" + "));
         text.push_str(&match exponential {
             false => format!("demand good{i} = a{i} + {sum}\n"),

@@ -92,7 +92,6 @@ fn linear_systems() {
 fn products_and_powers_of_sums() {
     let text = "goods x, y\nprices p, q\nincome m\nparameters r, s, t\nassume r > 0\n\
                 share x = p^s/(p^s + r*q^t)\nshare y = r*q^t/(p^s + r*q^s)\n";
-    let (held, failed) =
-        compare(text, &[Condition::Homogeneity, Condition::AddingUp], &numbers(&[-2, -1, 0, 1, 2]));
+    let (held, failed) = compare(text, &[Condition::Homogeneity, Condition::AddingUp], &numbers(&[-2, -1, 0, 1, 2]));
     assert!(held > 0 && failed > 0);
 }

@@ -30,7 +30,8 @@ pub fn listed(found: &Restrictions) -> Vec<String> {
         .branches
         .iter()
         .map(|branch| {
-            let equations = branch.equations.iter().map(|(v, e)| format!("{} = {}", field.name(*v).unwrap(), formula(e)));
+            let equations =
+                branch.equations.iter().map(|(v, e)| format!("{} = {}", field.name(*v).unwrap(), formula(e)));
             let sides = branch.side_conditions.iter().map(|e| format!("{} != 0", formula(e)));
             equations.chain(sides).collect::<Vec<_>>().join(", ")
         })
