@@ -66,6 +66,8 @@ fn term(field: &Field, monomial: &Monomial, coefficient: &Element) -> Option<(Te
     for (v, k) in monomial.iter() {
         let times = rational(i64::from(k), 1);
         match &*field.kind(v) {
+            // the utility level may have either sign; its powers are polynomial, like those of logarithms
+            Kind::Symbol(Role::Utility) => factor.push((v, k)),
             Kind::Symbol(_) => grows.push(field.ln(&Poly::var(v)).ok()?.scale(&times)),
             Kind::Exp(argument) => grows.push(argument.scale(&times)),
             Kind::Sum { root, .. } if *root > 1 => grows.push(field.ln(&Poly::var(v)).ok()?.scale(&times)),
