@@ -51,7 +51,7 @@ impl Problem<'_> {
         let mut outlays = Vec::new();
         let mut others = Vec::new();
         for good in 0..self.quantities.len() {
-            let value = if good == reference { Poly::var(base) } else { self.from_rate(good, reference, &mut facts)? };
+            let value = if good == reference { Poly::var(base) } else { self.by_rate(good, reference, &mut facts)? };
             outlays.push(field.product(&self.price(good)?, &value));
             others.push(value);
         }
@@ -78,7 +78,7 @@ impl Problem<'_> {
     }
 
     /// xᵢ from πᵢ/π₁ = pᵢ/p₁, where the left side depends on xᵢ and x₁ alone.
-    fn from_rate(&self, good: usize, reference: usize, facts: &mut Vec<(Element, Relation)>) -> Option<Element> {
+    fn by_rate(&self, good: usize, reference: usize, facts: &mut Vec<(Element, Relation)>) -> Option<Element> {
         let field = self.field;
         let (x, base) = (*self.quantities.get(good)?, *self.quantities.get(reference)?);
         let above = field.product(self.shares.get(good)?, &Poly::var(base));
