@@ -35,7 +35,9 @@ struct Construction {
 impl Construction {
     fn new(seed: u64) -> Result<Construction, Blocked> {
         let mut dice = Dice(seed.wrapping_mul(0x9E37_79B9_7F4A_7C15));
-        (0..4).for_each(|_| drop(dice.roll(2)));
+        for _ in 0..4 {
+            dice.roll(2);
+        }
         let goods = 2 + dice.roll(3) as usize;
         let names: Vec<String> = (1..=goods).map(|k| format!("p{k}")).collect();
         let mut ground = Ground::new(&names.join(" "), "m", "+a +b +c +s");
