@@ -8,6 +8,7 @@ mod adding_up;
 mod branches;
 pub mod claims;
 pub mod coefficients;
+mod concavity;
 mod curvature;
 mod finding;
 mod homogeneity;
@@ -23,6 +24,7 @@ use crate::proof::{Prover, Residual};
 
 pub use claims::chart::{Chart, Charts};
 pub use claims::examine_claim;
+pub use concavity::{by_concavity, maximised};
 pub use finding::{Branch, ClaimFinding, Condition, Finding, Verdict, Witness};
 pub use slutsky::{Compensation, Coordinates, System};
 
@@ -52,13 +54,22 @@ pub fn examine(condition: Condition, model: &Model, prover: &mut Prover<'_>, ear
         Condition::Homogeneity => settlement::settle(model, &system, prover, &homogeneity::FAMILY),
         Condition::AddingUp => adding_up::examine(model, &system, prover),
         Condition::Symmetry => settlement::settle(model, &system, prover, &symmetry::FAMILY),
-        Condition::Curvature => curvature::examine(model, &system, prover, earlier),
+        Condition::Curvature => {
+            let utility = model.given.as_ref().filter(|given| given.kind == Preferences::Utility);
+            let concave = utility
+                .filter(|_| model.demands.is_empty())
+                .and_then(|given| by_concavity(model, &given.value, prover));
+            concave.unwrap_or_else(|| curvature::examine(model, &system, prover, earlier))
+        }
     }
 }
 
 /// Examines whether a direct utility is quasi-concave where it rises: whether the Antonelli matrix of its inverse
 /// demands is negative semidefinite. `None` where quantities have no names.
-pub fn examine_utility(model: &Model, utility: &Element, prover: &mut Prover<'_>) -> Option<Finding> {
+fn examine_utility(model: &Model, utility: &Element, prover: &mut Prover<'_>) -> Option<Finding> {
+    if let Some(finding) = by_concavity(model, utility, prover) {
+        return Some(finding);
+    }
     let system = System::of_utility(model, utility, prover)?;
     system.prepare(prover);
     Some(curvature::examine(model, &system, prover, &[]))

@@ -57,6 +57,8 @@ pub enum Rule {
         /// The row and column left out.
         without: Option<usize>,
     },
+    /// The symmetric part vanishes off the diagonal and is nowhere positive on it.
+    Diagonal,
     /// Evaluation at a point.
     Evaluation,
     /// Not established, but assumed by the author or the language.

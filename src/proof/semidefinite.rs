@@ -138,6 +138,17 @@ impl Prover<'_> {
         vanish.then(|| self.semidefinite(subject, matrix.clone(), Rule::NormalForm, &[]))
     }
 
+    /// A matrix whose symmetric part is diagonal is negative semidefinite if no entry on the diagonal is positive.
+    pub fn diagonal(&mut self, subject: &str, matrix: &Rc<Matrix>) -> Option<Proved<Semidefinite>> {
+        let n = matrix.size;
+        let entries = self.entries(matrix);
+        let current: Vec<_> = entries.iter().map(|e| self.field.current(e)).collect();
+        let off = |i: usize, j: usize| self.field.is_zero(&(&current[i * n + j] + &current[j * n + i]));
+        let fits = (0..n)
+            .all(|i| (0..i).all(|j| off(i, j)) && holds(self.field, &current[i * n + i].neg(), Relation::NonNegative));
+        fits.then(|| self.semidefinite(subject, matrix.clone(), Rule::Diagonal, &[]))
+    }
+
     fn semidefinite(
         &mut self,
         subject: &str,

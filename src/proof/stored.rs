@@ -117,6 +117,8 @@ pub enum StoredClaim {
         /// The row and column left out (by the premise).
         without: Option<usize>,
     },
+    /// A diagonal matrix without positive entries.
+    Diagonal(StoredMatrix),
     /// A matrix whose symmetric part is zero.
     ZeroMatrix(StoredMatrix),
     /// Negative semidefinite at a point.
@@ -193,6 +195,7 @@ impl Writer<'_> {
                 Rule::Characteristic { without } => {
                     StoredClaim::Characteristic { matrix: self.matrix(&claim.matrix), without: *without }
                 }
+                Rule::Diagonal => StoredClaim::Diagonal(self.matrix(&claim.matrix)),
                 _ => StoredClaim::ZeroMatrix(self.matrix(&claim.matrix)),
             },
             Statement::SemidefiniteAt(claim) => {
@@ -412,6 +415,10 @@ impl Rebuild<'_, '_> {
                 let balance = without.map(|_| self.balance()).transpose()?;
                 let reduction = balance.as_ref().zip(*without);
                 Ok(self.prover.characteristic(subject, &matrix, reduction).map(|p| p.step()))
+            }
+            StoredClaim::Diagonal(matrix) => {
+                let matrix = self.matrix(matrix)?;
+                Ok(self.prover.diagonal(subject, &matrix).map(|p| p.step()))
             }
             StoredClaim::ZeroMatrix(matrix) => {
                 let matrix = self.matrix(matrix)?;

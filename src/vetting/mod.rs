@@ -119,6 +119,9 @@ pub fn vet(model: Rc<Model>, asked: &[Part], allowance: Allowance) -> Vetting {
         let found = run.part(Part::Recovery, || recover(&model, &mut prover, &findings));
         recovered = Some(found.unwrap_or_else(|stopped| not_found(stopped.describe())));
     }
+    if model.given.is_none() && model.demands.is_empty() && !model.inverse.is_empty() {
+        recovered = Some(of_inverse_demands(&mut run, &model, asked, &mut prover, &mut findings));
+    }
     let mut charts = Charts::default();
     if model.given.is_some() || asked.contains(&Part::Claims) && of_functions {
         let part = if asked.contains(&Part::Claims) { Part::Claims } else { Part::Recovery };
@@ -155,6 +158,43 @@ fn recover(model: &Model, prover: &mut Prover<'_>, findings: &[Finding]) -> Reco
             found => found,
         },
     }
+}
+
+/// The direct utility behind inverse demands. A concave one settles their curvature, where that is open.
+fn of_inverse_demands(
+    run: &mut Run,
+    model: &Model,
+    asked: &[Part],
+    prover: &mut Prover<'_>,
+    findings: &mut [Finding],
+) -> Recovered {
+    let verdict = |findings: &[Finding], condition: Condition| {
+        findings.iter().find(|finding| finding.condition == condition).map(|finding| finding.verdict)
+    };
+    let open = verdict(findings, Condition::Curvature) == Some(Verdict::Undecided);
+    if !asked.contains(&Part::Recovery) && !open {
+        return not_found("they were not asked for");
+    }
+    match verdict(findings, Condition::Symmetry) {
+        Some(Verdict::Refuted | Verdict::Conditional) => return not_found("the Antonelli matrix is not symmetric"),
+        _ => {}
+    }
+    let found = run.part(Part::Recovery, || {
+        let found = given::of_inverse(model, prover);
+        let concave = match &found {
+            Recovered::Found(found) if open => {
+                found.utility.as_ref().and_then(|utility| conditions::by_concavity(model, utility, prover))
+            }
+            _ => None,
+        };
+        (found, concave)
+    });
+    let (found, concave) = found.unwrap_or_else(|stopped| (not_found(stopped.describe()), None));
+    let curvature = findings.iter_mut().find(|finding| finding.condition == Condition::Curvature);
+    if let (Some(slot), Some(concave)) = (curvature, concave) {
+        *slot = concave;
+    }
+    found
 }
 
 fn not_found(reason: &str) -> Recovered {

@@ -22,8 +22,10 @@ pub(super) fn solve(model: &Model, utility: &Element, prover: &mut Prover<'_>) -
     let field = &model.field;
     let quantities: Vec<Var> = model.quantities.iter().copied().collect::<Option<_>>()?;
     let shares = inverse_shares(field, utility, &quantities)?;
+    let slopes: Vec<Element> = quantities.iter().map(|x| field.reduce(&field.derivative(utility, *x))).collect();
+    let problem =
+        Problem { model, field, quantities: &quantities, shares: &shares, slopes: &slopes, income: model.income? };
     (0..quantities.len()).find_map(|reference| {
-        let problem = Problem { model, field, quantities: &quantities, shares: &shares, income: model.income? };
         let solution = budget::attempt(SOLVING, || problem.solve(reference)).ok().flatten()?;
         problem.checked(solution, utility, prover)
     })
@@ -35,6 +37,8 @@ struct Problem<'a> {
     quantities: &'a [Var],
     /// xᵢ πᵢ(x).
     shares: &'a [Element],
+    /// ∂U/∂xᵢ.
+    slopes: &'a [Element],
     income: Var,
 }
 
@@ -77,13 +81,11 @@ impl Problem<'_> {
         self.model.prices.get(good).map(|p| Poly::var(*p))
     }
 
-    /// xᵢ from πᵢ/π₁ = pᵢ/p₁, where the left side depends on xᵢ and x₁ alone.
+    /// xᵢ from Uᵢ/U₁ = pᵢ/p₁, where the left side depends on xᵢ and x₁ alone.
     fn by_rate(&self, good: usize, reference: usize, facts: &mut Vec<(Element, Relation)>) -> Option<Element> {
         let field = self.field;
         let (x, base) = (*self.quantities.get(good)?, *self.quantities.get(reference)?);
-        let above = field.product(self.shares.get(good)?, &Poly::var(base));
-        let below = field.product(self.shares.get(reference)?, &Poly::var(x));
-        let rate = field.reduce(&field.quotient(&above, &below).ok()?);
+        let rate = field.reduce(&field.quotient(self.slopes.get(good)?, self.slopes.get(reference)?).ok()?);
         let others = self.quantities.iter().filter(|q| **q != x && **q != base);
         if others.into_iter().any(|q| field.depends_on(&rate, *q)) {
             return None;
@@ -98,8 +100,13 @@ impl Problem<'_> {
     /// to one.
     fn checked(&self, solution: Solution, utility: &Element, prover: &mut Prover<'_>) -> Option<Chosen> {
         let field = self.field;
-        let Solution { quantities, facts } = solution;
+        let Solution { quantities, mut facts } = solution;
         let with: Vec<(Var, Element)> = self.quantities.iter().copied().zip(quantities.iter().cloned()).collect();
+        // what the author assumes of quantities holds of those demanded
+        for fact in field.facts().iter().filter(|fact| with.iter().any(|(x, _)| field.depends_on(&fact.element, *x))) {
+            let there = field.suppose(&facts, || field.substitute(&fact.element, &with)).ok()?;
+            facts.push((there, fact.relation));
+        }
         let income = Poly::var(self.income);
         let indirect_utility = prover.supposing(&supposed(&facts), |prover| {
             let mut equations = Vec::new();

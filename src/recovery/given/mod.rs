@@ -8,6 +8,7 @@
 mod claimed;
 mod direct;
 mod functions;
+mod inverse;
 
 use crate::algebra::field::Relation;
 use crate::algebra::generator::Element;
@@ -63,10 +64,9 @@ fn of_given(model: &Model, kind: Kind, value: &Element, prover: &mut Prover<'_>)
 /// The charts of a direct utility: only where it is shown to be quasi-concave are they a consumer's.
 fn of_utility(model: &Model, utility: &Element, prover: &mut Prover<'_>) -> Charts {
     let mut charts = Charts::default();
-    let finding = conditions::examine_utility(model, utility, prover);
+    let finding = conditions::maximised(model, utility, prover);
     if finding.as_ref().is_none_or(|finding| finding.verdict != Verdict::Proven) {
-        let words =
-            "utility is not shown to be quasi-concave, so that the first-order conditions need not give a maximum";
+        let words = "utility is not shown to be quasi-concave and rising, so that the first-order conditions need not give a maximum";
         charts.reserve = Some(words.to_string());
     }
     let premises = finding.map(|finding| finding.steps).unwrap_or_default();
@@ -119,33 +119,62 @@ fn of_recovered(model: &Model, recovered: Option<&Recovered>) -> Charts {
     Charts { all, rising: found.is_some_and(|found| found.rising), ..Charts::default() }
 }
 
+/// The preferences behind a file's own inverse demands: a direct utility.
+pub fn of_inverse(model: &Model, prover: &mut Prover<'_>) -> Recovered {
+    match inverse::direct_utility(model, prover) {
+        None => {
+            Recovered::NotFound { reason: "no direct utility was found in closed form".to_string(), existence: true }
+        }
+        Some(found) => Recovered::Found(Box::new(Preferences {
+            utility: Some(found.utility),
+            steps: vec![found.step],
+            ..nothing(Method::IntegratingFactor)
+        })),
+    }
+}
+
+/// Preferences of which nothing is known yet.
+fn nothing(method: Method) -> Preferences {
+    Preferences {
+        expenditure: None,
+        indirect_utility: None,
+        hicksian: Vec::new(),
+        utility: None,
+        method,
+        working: Working::default(),
+        rising: false,
+        checked: Checks::default(),
+        conditions: Vec::new(),
+        cases: Vec::new(),
+        steps: Vec::new(),
+    }
+}
+
 /// The given preferences with what follows from them; `None` where nothing was given.
 pub fn derived(model: &Model, charts: &Charts) -> Option<Recovered> {
     let given = model.given.as_ref()?;
     let field = &model.field;
+    if let Some(reason) = charts.reserve.clone() {
+        return Some(Recovered::NotFound { reason, existence: false });
+    }
     let at = |coordinates: Coordinates| charts.all.iter().find(|chart| chart.coordinates == coordinates);
     let clean = |e: &Element| field.reduce(e);
     let (income, utility) = (at(Coordinates::Income), at(Coordinates::Utility));
     let own = |kind: Kind| (given.kind == kind).then(|| given.value.clone());
-    let expenditure = own(Kind::Expenditure).or_else(|| utility.map(|chart| clean(&chart.income)));
-    let indirect = own(Kind::IndirectUtility).or_else(|| income.and_then(|chart| chart.utility.as_ref()).map(clean));
-    if expenditure.is_none() && indirect.is_none() {
-        let reason = "the first-order conditions were not solved in closed form".to_string();
-        return Some(Recovered::NotFound { reason, existence: true });
-    }
-    let both = income.is_some() && utility.is_some();
     Some(Recovered::Found(Box::new(Preferences {
+        expenditure: own(Kind::Expenditure).or_else(|| utility.map(|chart| clean(&chart.income))),
+        indirect_utility: own(Kind::IndirectUtility)
+            .or_else(|| income.and_then(|chart| chart.utility.as_ref()).map(clean)),
         hicksian: utility.map(|chart| chart.quantities.iter().map(clean).collect()).unwrap_or_default(),
         utility: own(Kind::Utility),
-        expenditure,
-        indirect_utility: indirect,
-        method: Method::Given,
-        working: Working::default(),
         rising: charts.rising,
-        checked: Checks { shephard: utility.is_some(), roy: income.is_some(), inverse: both },
-        conditions: Vec::new(),
-        cases: Vec::new(),
+        checked: Checks {
+            shephard: utility.is_some(),
+            roy: income.is_some(),
+            inverse: income.is_some() && utility.is_some(),
+        },
         steps: charts.all.iter().flat_map(|chart| chart.premises.iter().copied()).collect(),
+        ..nothing(Method::Given)
     })))
 }
 

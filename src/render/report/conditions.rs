@@ -172,6 +172,9 @@ fn reason(scribe: &Scribe<'_>, id: crate::proof::StepId) -> Option<Block> {
             "The coefficients of the characteristic polynomial of minus the matrix are nonnegative, and so are the \
              eigenvalues of minus the matrix."
         }
+        (Statement::Semidefinite(_), Rule::Diagonal) => {
+            "The Hessian matrix of utility is diagonal, and no entry on its diagonal is positive."
+        }
         (Statement::Semidefinite(_), Rule::NormalForm) => "The matrix is zero.",
         (Statement::Assumed(words), _) => return Some(paragraph(format!("By assumption: {words}."))),
         _ => return None,

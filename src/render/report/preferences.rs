@@ -39,7 +39,11 @@ fn functions(notation: &Notation<'_>, found: &Preferences) -> Vec<Equation> {
     let expenditure = found.expenditure.as_ref().map(|e| Equation::equal(notation.expenditure(), notation.element(e)));
     let indirect =
         found.indirect_utility.as_ref().map(|v| Equation::equal(notation.indirect_utility(), notation.element(v)));
-    expenditure.into_iter().chain(indirect).collect()
+    let mut all: Vec<Equation> = expenditure.into_iter().chain(indirect).collect();
+    if all.is_empty() {
+        all.extend(found.utility.as_ref().map(|u| Equation::equal(notation.direct_utility(), notation.element(u))));
+    }
+    all
 }
 
 /// What must not vanish.
