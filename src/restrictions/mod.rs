@@ -63,8 +63,8 @@ impl Restrictions {
 
 /// The work that the search for branches may take.
 const SEARCH_WORK: u64 = 8_000_000_000;
-/// The work that one part of the examination of a branch may take.
-const PART_WORK: u64 = 60_000_000;
+/// The work that one part of the examination of a branch may take; the table has many.
+const PART_WORK: u64 = 20_000_000;
 
 /// Finds the branches, and examines each.
 pub fn restrict(model: Rc<Model>, request: &Request) -> Restrictions {
