@@ -6,6 +6,7 @@
 
 pub mod branch;
 mod equations;
+pub mod indexed;
 mod node;
 mod search;
 mod terms;

@@ -127,3 +127,23 @@ fn constant_elasticities_of_a_complete_system() {
                 demand x = a*p^b*q^c*m^d\ndemand y = e*p^f*q^g*m^h\n";
     exactly(text, &[AddingUp], &["b = -1, c = 0, d = 1, e = 1 - a, f = 0, g = -1, h = 1"]);
 }
+
+/// What is general is said in indices: symmetry, homogeneity and adding-up of shares in log prices.
+#[test]
+fn general_statements() {
+    use mainspring::restrictions::indexed::{Pattern, Statement, statements};
+    let text = "goods 1..4\nprices p[i]\nincome m\nparameters a[i], g[i,j]\n\
+                share[i] = a[i] + sum over j of (g[i,j]*ln(p[j]))\n";
+    let found = restricted(text, &ALL);
+    let said = statements(&found.model, &found.branches[0].equations);
+    let general = |family: &str, paired, pattern| Statement::General { family: family.into(), paired, pattern };
+    let one = mainspring::algebra::number::rational(1, 1);
+    assert_eq!(
+        said,
+        [
+            general("a", false, Pattern::Total(one)),
+            general("g", true, Pattern::Symmetric),
+            general("g", true, Pattern::ColumnsVanish),
+        ]
+    );
+}

@@ -1,15 +1,17 @@
 //! The parameter restrictions: a table of branches, and what the system becomes under each.
 
 use crate::algebra::generator::Element;
+use crate::algebra::number::Rational;
 use crate::conditions::{Condition, Verdict};
 use crate::recovery::Recovered;
 use crate::render::document::{Block, Document, Equation, Inline, Relation, Table};
-use crate::render::expression::Expression;
+use crate::render::expression::{Expression, Object};
 use crate::render::notation::Notation;
 use crate::render::report::preferences;
 use crate::render::report::verdicts::{condition_line, failure};
-use crate::render::report::words::{enumerated, listed, text};
+use crate::render::report::words::{enumerated, listed, relation, text};
 use crate::render::vocabulary;
+use crate::restrictions::indexed::{self, Pattern, Statement};
 use crate::restrictions::{Branch, Restrictions};
 use crate::vetting::Part;
 
@@ -71,7 +73,7 @@ fn table(notation: &Notation<'_>, found: &Restrictions) -> Table {
         let curvature = branch.finding(Condition::Curvature).map_or("", |f| vocabulary::verdict(f.verdict));
         vec![
             vec![text(letter(number))],
-            listed(relations(notation, branch).into_iter().map(|e| vec![Inline::equation(e)]).collect(), ", "),
+            listed(restrictions_of(notation, branch), ", "),
             vec![text(branch.dimension().to_string())],
             vec![text(curvature)],
         ]
@@ -87,13 +89,58 @@ fn letter(number: usize) -> String {
         .map_or_else(|| (number + 1).to_string(), |n| char::from(b'A' + n).to_string())
 }
 
-/// The equations and side conditions of a branch.
-fn relations(notation: &Notation<'_>, branch: &Branch) -> Vec<Equation> {
+/// The restrictions of a branch: general statements in indices, single equations, and what does not vanish.
+fn restrictions_of(notation: &Notation<'_>, branch: &Branch) -> Vec<Vec<Inline>> {
     let zero = Expression::Number(num_rational::Ratio::from_integer(0.into()));
-    let equations =
-        branch.equations.iter().map(|(v, value)| Equation::equal(notation.variable(*v), notation.element(value)));
-    let not_zero = |e: &Element| Equation::new(notation.element(e), Relation::NotEqual, zero.clone());
-    equations.chain(branch.side_conditions.iter().map(not_zero)).collect()
+    let not_zero = |e: &Element| vec![relation(notation.element(e), Relation::NotEqual, zero.clone())];
+    let said = indexed::statements(notation.model(), &branch.equations);
+    let said = said.iter().filter_map(|statement| match statement {
+        Statement::General { family, paired, pattern } => Some(general(family, *paired, pattern)),
+        Statement::Single(place) => branch
+            .equations
+            .get(*place)
+            .map(|(v, value)| vec![relation(notation.variable(*v), Relation::Equal, notation.element(value))]),
+    });
+    said.chain(branch.side_conditions.iter().map(not_zero)).collect()
+}
+
+/// A general statement about a family, with what its indices run over.
+fn general(family: &str, paired: bool, pattern: &Pattern) -> Vec<Inline> {
+    let at = |indices: &[&str]| {
+        Expression::from(indices.iter().fold(Object::new(family), |object, index| object.at(*index)))
+    };
+    let number = |value: &Rational| Expression::Number(value.clone());
+    let zero = number(&Rational::from_integer(0.into()));
+    let said = |left: Expression, right: Expression, range: &str| {
+        let mut words = vec![relation(left, Relation::Equal, right)];
+        if !range.is_empty() {
+            words.push(text(format!(" for {range}")));
+        }
+        words
+    };
+    match pattern {
+        Pattern::Zero if paired => said(at(&["i", "j"]), zero, "all i and j"),
+        Pattern::Zero => said(at(&["i"]), zero, "all i"),
+        Pattern::Diagonal => said(at(&["i", "j"]), zero, "all i other than j"),
+        Pattern::Symmetric => said(at(&["i", "j"]), at(&["j", "i"]), "all i and j"),
+        Pattern::ColumnsVanish => said(Expression::total("i", at(&["i", "j"])), zero, "all j"),
+        Pattern::RowsVanish => said(Expression::total("j", at(&["i", "j"])), zero, "all i"),
+        Pattern::Total(value) => said(Expression::total("i", at(&["i"])), number(value), ""),
+    }
+}
+
+/// The restrictions set off: aligned equations, or a list where some of them speak of indices.
+fn displayed(notation: &Notation<'_>, branch: &Branch) -> Option<Block> {
+    let all = restrictions_of(notation, branch);
+    let single = |words: &Vec<Inline>| match &words[..] {
+        [Inline::Math(equation)] => Some((**equation).clone()),
+        _ => None,
+    };
+    match all.iter().map(single).collect::<Option<Vec<Equation>>>() {
+        Some(equations) if equations.is_empty() => None,
+        Some(equations) => Some(Block::Display(equations)),
+        None => Some(Block::List { ordered: false, items: all }),
+    }
 }
 
 fn one(notation: &Notation<'_>, found: &Restrictions, number: usize, branch: &Branch) -> Vec<Block> {
@@ -101,10 +148,7 @@ fn one(notation: &Notation<'_>, found: &Restrictions, number: usize, branch: &Br
     if found.branches.len() > 1 {
         blocks.push(Block::Heading { level: 1, text: vec![text(format!("Case {}", letter(number)))] });
     }
-    let relations = relations(notation, branch);
-    if !relations.is_empty() {
-        blocks.push(Block::Display(relations));
-    }
+    blocks.extend(displayed(notation, branch));
     blocks.push(Block::Paragraph(free(notation, branch)));
     let own = Notation::new(&branch.model);
     let asked = |c: Condition| found.only.contains(&c) || c == Condition::Curvature;
