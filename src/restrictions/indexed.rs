@@ -1,4 +1,4 @@
-//! Restrictions said in indices: g[i,j] = g[j,i] rather than an equation for every pair of goods.
+//! Restrictions said in indices: `g[i,j]` = `g[j,i]` rather than an equation for every pair of goods.
 //!
 //! A general statement is used where every instance of it holds on the branch; it then stands for all equations that
 //! follow from its instances, and what does not follow is said singly. Linear algebra on linear equations.
@@ -21,15 +21,15 @@ use super::terms::put_in;
 pub enum Pattern {
     /// All members vanish.
     Zero,
-    /// F[i,j] = 0 for i ≠ j.
+    /// `F[i,j]` = 0 for i ≠ j.
     Diagonal,
-    /// F[i,j] = F[j,i].
+    /// `F[i,j]` = `F[j,i]`.
     Symmetric,
-    /// Σᵢ F[i,j] = 0 for every j.
+    /// Σᵢ `F[i,j]` = 0 for every j.
     ColumnsVanish,
-    /// Σⱼ F[i,j] = 0 for every i.
+    /// Σⱼ `F[i,j]` = 0 for every i.
     RowsVanish,
-    /// Σᵢ F[i] is a number.
+    /// Σᵢ `F[i]` is a number.
     Total(Rational),
 }
 
@@ -138,7 +138,7 @@ fn patterns(model: &Model, family: &Family, equations: &[(Var, Element)]) -> Vec
     all
 }
 
-/// Σ F[i] where it is a number.
+/// Σ `F[i]` where it is a number.
 fn total(model: &Model, family: &Family, equations: &[(Var, Element)]) -> Option<(Pattern, Vec<Element>)> {
     let field: &Field = &model.field;
     let sum = Poly::sum(family.members.clone());

@@ -175,9 +175,8 @@ fn of_inverse_demands(
     if !asked.contains(&Part::Recovery) && !open {
         return not_found("they were not asked for");
     }
-    match verdict(findings, Condition::Symmetry) {
-        Some(Verdict::Refuted | Verdict::Conditional) => return not_found("the Antonelli matrix is not symmetric"),
-        _ => {}
+    if let Some(Verdict::Refuted | Verdict::Conditional) = verdict(findings, Condition::Symmetry) {
+        return not_found("the Antonelli matrix is not symmetric");
     }
     let found = run.part(Part::Recovery, || {
         let found = given::of_inverse(model, prover);
