@@ -134,7 +134,13 @@ pub fn within<T>(limits: Limits, body: impl FnOnce() -> T) -> Result<T, Stopped>
     match outcome {
         Ok(value) => Ok(value),
         Err(payload) => match payload.downcast::<Stopped>() {
-            Ok(reason) => Err(*reason),
+            Ok(reason) => {
+                // where the enclosing guards have passed too, going on would only spoil what is found
+                if matches!(*reason, Stopped::Time | Stopped::Memory) {
+                    look_around();
+                }
+                Err(*reason)
+            }
             Err(other) => resume_unwind(other),
         },
     }
@@ -157,5 +163,16 @@ mod tests {
             LEFT.get()
         });
         assert_eq!(outer, Ok(85));
+    }
+
+    #[test]
+    fn a_clock_that_has_run_out_ends_the_enclosing_computation_too() {
+        let outer =
+            within(Limits::new(u64::MAX, Duration::ZERO, u64::MAX), || attempt(LOOK_EVERY * 4, || spend(LOOK_EVERY)));
+        assert_eq!(outer, Err(Stopped::Time));
+        let inner = within(Limits::new(u64::MAX, Duration::from_secs(60), u64::MAX), || {
+            within(Limits::new(u64::MAX, Duration::ZERO, u64::MAX), || spend(LOOK_EVERY))
+        });
+        assert_eq!(inner, Ok(Err(Stopped::Time)));
     }
 }
