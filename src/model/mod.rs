@@ -166,6 +166,11 @@ impl Model {
         points::is_admissible(self, point)
     }
 
+    /// Whether the file speaks of the utility level.
+    pub fn speaks_of_utility(&self) -> bool {
+        self.given.is_some() || self.claims.iter().any(|claim| claim.sides().is_none())
+    }
+
     /// The syntax tree that the model was made from.
     pub fn tree(&self) -> &language::Model {
         &self.text.tree

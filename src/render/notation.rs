@@ -21,6 +21,7 @@ pub struct Notation<'a> {
     slutsky: String,
     outlay: String,
     transformed: String,
+    inverse: String,
     arguments: Vec<Expression>,
 }
 
@@ -42,7 +43,11 @@ impl<'a> Notation<'a> {
             share: free(&["w", "W", "omega", "share"]),
             expenditure: free(&["e", "E", "C", "expenditure"]),
             indirect: free(&["v", "V", "psi", "Psi", "indirect"]),
-            slutsky: free(&["S", "K", "Sigma", "Slutsky"]),
+            slutsky: match model.demands.is_empty() && !model.inverse.is_empty() {
+                true => free(&["A", "Antonelli"]),
+                false => free(&["S", "K", "Sigma", "Slutsky"]),
+            },
+            inverse: free(&["pi", "phi", "Pi", "inverse"]),
             transformed: free(&["z", "Z", "zeta", "transformed"]),
             outlay: free(&["y", "Y", "z", "outlay"]),
             arguments: arguments(model, &taken),
@@ -77,6 +82,11 @@ impl<'a> Notation<'a> {
     /// e(p, v(p, m)).
     pub fn expenditure_at_indirect_utility(&self) -> Expression {
         Object::new(self.expenditure.clone()).of(self.with(self.indirect_utility())).into()
+    }
+
+    /// v(p, e(p, u)).
+    pub fn indirect_utility_at_expenditure(&self) -> Expression {
+        Object::new(self.indirect.clone()).of(self.with(self.expenditure())).into()
     }
 
     /// w_i.
@@ -149,6 +159,18 @@ impl<'a> Notation<'a> {
     /// h_i(p, u).
     pub fn hicksian(&self, good: usize) -> Expression {
         self.hicksian.clone().at(self.good(good)).of(self.with(self.utility())).into()
+    }
+
+    /// π_i, price over income.
+    pub fn inverse_letter(&self) -> Object {
+        Object::new(self.inverse.clone())
+    }
+
+    /// The letters of quantities with an index.
+    pub fn quantity_family(&self, index: &str) -> Expression {
+        let first = self.model.quantities.first().copied().flatten().and_then(|var| self.model.field.name(var));
+        let letter = first.map_or_else(|| self.quantity.clone(), |name| head(&name).to_string());
+        Object::new(letter).at(index).into()
     }
 
     /// S.

@@ -118,7 +118,7 @@ impl Plan {
             ranges.entry(*var).or_insert_with(|| own_range(field, *var));
         }
         let powers = order.iter().map(|var| (*var, root_power(field, *var))).collect();
-        let utility_matters = model.given.is_some() || model.claims.iter().any(|claim| claim.sides().is_none());
+        let utility_matters = model.speaks_of_utility();
         Plan { constraints, order, complete, shared, ranges, powers, possible, utility_matters }
     }
 

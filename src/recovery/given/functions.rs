@@ -86,6 +86,14 @@ pub(super) fn of_demands(model: &Model, chosen: Chosen, prover: &mut Prover<'_>)
     charts
 }
 
+/// The chart of a known expenditure function; claims are judged in it where v(p, e(p, u)) = u is proven.
+pub(super) fn known(model: &Model, e: Element, v: &Element, prover: &mut Prover<'_>) -> Option<Chart> {
+    let mut chart = in_utility(model, e, Vec::new())?;
+    let judging = checked(chart.clone(), v, model.income?, model.utility, prover);
+    chart.judges = false;
+    Some(judging.unwrap_or(chart))
+}
+
 /// The chart, once v(p, e(p, u)) = u is proven.
 fn checked(mut chart: Chart, v: &Element, income: Var, utility: Var, prover: &mut Prover<'_>) -> Option<Chart> {
     let field = prover.field();

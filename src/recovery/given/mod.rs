@@ -40,7 +40,7 @@ pub fn charts(model: &Model, recovered: Option<&Recovered>, prover: &mut Prover<
         charts.settled = settled.findings;
         return charts;
     }
-    let mut charts = of_recovered(model, recovered);
+    let mut charts = of_recovered(model, recovered, prover);
     charts.settled = settled.findings;
     let function = |place: usize| match model.claims.get(place).map(|claim| &claim.statement) {
         Some(Statement::Function { function, .. }) => Some(*function),
@@ -105,18 +105,24 @@ fn inverse_chart(model: &Model, utility: Option<&Element>) -> Option<Chart> {
 }
 
 /// The charts of a file's own demands, on the scale of what was recovered for them.
-fn of_recovered(model: &Model, recovered: Option<&Recovered>) -> Charts {
+fn of_recovered(model: &Model, recovered: Option<&Recovered>, prover: &mut Prover<'_>) -> Charts {
+    let quantities: Vec<Element> = model.demands.iter().map(|demand| demand.quantity.clone()).collect();
     let found = match recovered {
         Some(Recovered::Found(found)) => Some(found),
         _ => None,
     };
-    let v = found.and_then(|found| found.indirect_utility.clone());
-    let demands = model.demands.iter().map(|demand| demand.quantity.clone()).collect();
-    let mut all: Vec<Chart> = functions::in_income(model, demands, v.clone(), Vec::new()).into_iter().collect();
-    if let Some(e) = found.and_then(|found| found.expenditure.clone()) {
-        all.extend(functions::in_utility(model, e, Vec::new()));
+    let Some((found, v)) = found.and_then(|found| Some((found, found.indirect_utility.clone()?))) else {
+        let all = functions::in_income(model, quantities, None, Vec::new()).into_iter().collect();
+        return Charts { all, ..Charts::default() };
+    };
+    let chosen = functions::Chosen { quantities, indirect_utility: v.clone(), facts: Vec::new() };
+    let mut charts = functions::of_demands(model, chosen, prover);
+    charts.rising |= found.rising;
+    let solved = charts.all.iter().any(|chart| chart.coordinates == Coordinates::Utility);
+    if let (false, Some(e)) = (solved, found.expenditure.clone()) {
+        charts.all.extend(functions::known(model, e, &v, prover));
     }
-    Charts { all, rising: found.is_some_and(|found| found.rising), ..Charts::default() }
+    charts
 }
 
 /// The preferences behind a file's own inverse demands: a direct utility.

@@ -6,6 +6,7 @@ use crate::render::document::{Block, Equation, Inline, Relation};
 use crate::render::expression::{Expression, Mark, Object};
 use crate::render::notation::Notation;
 use crate::render::report::derivation::{coordinates, heading, logarithm, paragraph};
+use crate::render::report::starting::{self, Start};
 use crate::render::report::verdicts;
 use crate::render::report::words::{equation, text};
 use crate::render::report::working::{Scribe, square};
@@ -19,6 +20,8 @@ pub fn section(scribe: &Scribe<'_>, finding: &Finding) -> Vec<Block> {
         Condition::Curvature => "Negative semidefiniteness",
     })];
     blocks.extend(opening(scribe, finding));
+    let concave = finding.condition == Condition::Curvature && finding.method.ends_with("is concave");
+    blocks.extend(concave.then(|| paragraph(format!("It is enough that {}, by its Hessian matrix.", finding.method))));
     for id in &finding.steps {
         blocks.extend(reason(scribe, *id));
         if scribe.derivation.step(*id).is_some_and(|step| *step.rule() == Rule::Laplacian) {
@@ -34,6 +37,9 @@ pub fn section(scribe: &Scribe<'_>, finding: &Finding) -> Vec<Block> {
 fn opening(scribe: &Scribe<'_>, finding: &Finding) -> Vec<Block> {
     let Some(used) = scribe.appendix.coordinates else { return Vec::new() };
     let notation = scribe.notation;
+    if let Some(start) = Start::of(notation.model()) {
+        return starting::opening(notation, start, finding.condition);
+    }
     let mut words = match finding.condition {
         Condition::Homogeneity => vec![text(
             "By Euler's theorem demands are homogeneous of degree zero in prices and income exactly when, for ",
@@ -193,6 +199,14 @@ fn conclusion(notation: &Notation<'_>, finding: &Finding) -> Vec<Inline> {
         Condition::Symmetry => "Hence the Slutsky matrix is symmetric.",
         Condition::Curvature => "Hence the Slutsky matrix is negative semidefinite.",
     };
+    if let (Some(start), Verdict::Proven) = (Start::of(notation.model()), finding.verdict) {
+        return vec![text(match finding.condition {
+            Condition::Homogeneity => "Hence Hicksian demands are homogeneous of degree zero in prices.".to_string(),
+            Condition::AddingUp => "Hence all of the budget is spent.".to_string(),
+            Condition::Symmetry => format!("Hence {} is symmetric.", start.matrix()),
+            Condition::Curvature => format!("Hence {} is negative semidefinite.", start.matrix()),
+        })];
+    }
     if finding.verdict == Verdict::Proven {
         return vec![text(holds)];
     }

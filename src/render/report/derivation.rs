@@ -6,6 +6,7 @@ use crate::proof::FunctionId;
 use crate::render::document::{Block, Document, Equation, Inline, Matrix};
 use crate::render::expression::Expression;
 use crate::render::notation::Notation;
+use crate::render::report::starting::Start;
 use crate::render::report::words::{short, text};
 use crate::render::report::working::{Scribe, square, sum, term};
 use crate::render::report::{conditions, recovery, system, verdicts};
@@ -17,8 +18,11 @@ pub fn derivation(vetting: &Vetting, appendix: &Appendix) -> Document {
     let notation = Notation::new(&vetting.model);
     let scribe = Scribe { notation: &notation, derivation: &vetting.derivation, appendix };
     let mut blocks = Vec::new();
-    if !vetting.model.demands.is_empty() {
+    let start = Start::of(&vetting.model);
+    if !vetting.model.demands.is_empty() || start.is_some() {
         blocks.extend(system::blocks(&notation));
+    }
+    if start.is_none() && !vetting.model.demands.is_empty() {
         blocks.extend(slutsky(&notation, vetting, appendix));
     }
     for finding in &vetting.findings {

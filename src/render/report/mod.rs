@@ -5,6 +5,7 @@ mod derivation;
 mod preferences;
 mod recovery;
 mod restrictions;
+mod starting;
 mod system;
 mod verdicts;
 mod words;

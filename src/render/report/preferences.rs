@@ -28,7 +28,8 @@ pub fn further(notation: &Notation<'_>, found: &Preferences) -> Vec<Block> {
         blocks.push(Block::Paragraph(vec![text("The Hicksian demands are, by Shephard's lemma,")]));
         blocks.push(Block::Display(equations));
     }
-    if let Some(utility) = &found.utility {
+    let stated = found.expenditure.is_none() && found.indirect_utility.is_none();
+    if let Some(utility) = found.utility.as_ref().filter(|_| !stated) {
         blocks.push(Block::Paragraph(vec![text("and direct utility is")]));
         blocks.push(Block::Display(vec![Equation::equal(notation.direct_utility(), notation.element(utility))]));
     }

@@ -2,7 +2,7 @@
 
 use crate::algebra::generator::Element;
 use crate::proof::StepId;
-use crate::recovery::{Preferences, Recovered, Working};
+use crate::recovery::{Method, Preferences, Recovered, Working};
 use crate::render::document::{Block, Equation, Inline};
 use crate::render::expression::Expression;
 use crate::render::notation::Notation;
@@ -24,7 +24,13 @@ pub fn sections(scribe: &Scribe<'_>, recovered: &Recovered) -> Vec<Block> {
             blocks.push(paragraph(format!("No closed form was found: {reason}.")));
         }
         Recovered::Found(found) => {
-            blocks.extend(steps(scribe.notation, &found.working));
+            blocks.extend(match (found.method, &found.expenditure, &found.indirect_utility) {
+                (Method::Given, _, _) => {
+                    vec![paragraph("From the given function follow, by solving for the other argument,")]
+                }
+                (_, None, None) => vec![paragraph("The inverse demands are proportional to the slopes of")],
+                _ => steps(scribe.notation, &found.working),
+            });
             blocks.extend(preferences::summary(scribe.notation, found));
             blocks.extend(preferences::further(scribe.notation, found));
             blocks.extend(check(scribe, found));
@@ -131,8 +137,15 @@ fn solution(notation: &Notation<'_>, working: &Working, z: &Expression) -> Vec<B
 }
 
 fn check(scribe: &Scribe<'_>, found: &Preferences) -> Vec<Block> {
-    let steps = found.steps.iter().flat_map(|id| identity(scribe, *id));
-    std::iter::once(heading("Check")).chain(steps).collect()
+    let mut told: Vec<StepId> = Vec::new();
+    let mut blocks = Vec::new();
+    for id in &found.steps {
+        if !told.contains(id) {
+            told.push(*id);
+            blocks.extend(identity(scribe, *id));
+        }
+    }
+    if blocks.is_empty() { blocks } else { std::iter::once(heading("Check")).chain(blocks).collect() }
 }
 
 /// One of the identities that the preferences were put to.
@@ -142,11 +155,18 @@ fn identity(scribe: &Scribe<'_>, id: StepId) -> Vec<Block> {
     let words = match step.subject() {
         "Roy's identity" => "Roy's identity holds:",
         "Shephard's lemma" => "Shephard's lemma holds:",
-        _ => {
+        "first-order conditions" => "The first-order conditions hold:",
+        "expenditure at the utility reached" => {
             let inverse = Equation::equal(notation.expenditure_at_indirect_utility(), notation.income());
             let words = paragraph("Expenditure and indirect utility are inverse to each other:");
             return vec![words, Block::Display(vec![inverse])];
         }
+        "utility reached with expenditure" => {
+            let inverse = Equation::equal(notation.indirect_utility_at_expenditure(), notation.utility());
+            let words = paragraph("Indirect utility and expenditure are inverse to each other:");
+            return vec![words, Block::Display(vec![inverse])];
+        }
+        _ => return Vec::new(),
     };
     std::iter::once(paragraph(words)).chain(scribe.step(id)).collect()
 }

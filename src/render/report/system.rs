@@ -6,6 +6,7 @@ use crate::model::{Coverage, DomainCondition, Model};
 use crate::render::document::{Block, Equation, Inline, Relation};
 use crate::render::expression::{Expression, Object};
 use crate::render::notation::Notation;
+use crate::render::report::starting;
 use crate::render::report::words::{counted, enumerated, listed, relation, text};
 use crate::render::report::written::{Author, sign_of};
 
@@ -29,8 +30,12 @@ pub fn blocks(notation: &Notation<'_>) -> Vec<Block> {
         })]));
         blocks.push(Block::Display(abbreviations));
     }
-    blocks.push(Block::Paragraph(vec![text(opening(model))]));
-    blocks.push(Block::Display(demands(notation, &author)));
+    if model.given.is_some() || !model.inverse.is_empty() {
+        blocks.extend(starting::blocks(notation));
+    } else {
+        blocks.push(Block::Paragraph(vec![text(opening(model))]));
+        blocks.push(Block::Display(demands(notation, &author)));
+    }
     blocks.extend(closing(notation));
     blocks
 }
@@ -39,6 +44,9 @@ fn names(notation: &Notation<'_>) -> Vec<Inline> {
     let model = notation.model();
     let goods: Vec<String> = model.goods.iter().map(|good| good.name.clone()).collect();
     let numbered = goods.iter().enumerate().all(|(k, name)| *name == (k + 1).to_string());
+    if model.prices.is_empty() {
+        return quantities(notation, &goods, numbered);
+    }
     let mut out = vec![text(match (goods.len(), numbered) {
         (1, _) => format!("There is one good, {}, with price ", enumerated(&goods)),
         (n, true) => format!("There are {} goods, with prices ", counted(n)),
@@ -63,6 +71,26 @@ fn names(notation: &Notation<'_>) -> Vec<Inline> {
         out.push(text(if parameters.len() == 1 { " The parameter " } else { " The parameters " }));
         out.extend(listed(families(notation), " and "));
         out.push(text(if parameters.len() == 1 { " is a real number." } else { " are real numbers." }));
+    }
+    out
+}
+
+/// The same for inverse demands, which speak of quantities alone.
+fn quantities(notation: &Notation<'_>, goods: &[String], numbered: bool) -> Vec<Inline> {
+    let model = notation.model();
+    let mut out = vec![text(match numbered {
+        true => format!("There are {} goods, with quantities ", counted(goods.len())),
+        false => format!("There are {} goods, {}, with quantities ", counted(goods.len()), enumerated(goods)),
+    })];
+    let letters = model.quantities.iter().flatten().map(|var| vec![Inline::math(notation.variable(*var))]).collect();
+    out.extend(listed(letters, " and "));
+    out.push(text(". All of these are positive."));
+    let parameters = families(notation);
+    if !parameters.is_empty() {
+        out.push(text(if parameters.len() == 1 { " The parameter " } else { " The parameters " }));
+        let one = parameters.len() == 1;
+        out.extend(listed(parameters, " and "));
+        out.push(text(if one { " is a real number." } else { " are real numbers." }));
     }
     out
 }

@@ -246,6 +246,9 @@ pub fn claim_lines(notation: &Notation<'_>, vetting: &Vetting) -> Vec<VerdictLin
             note.push(text(": "));
             note.extend(value(Expression::symbol("left - right"), &witness.value));
         }
+        if let Some(correct) = finding.correct.as_ref().and_then(|e| short(notation, e, LONGEST_BOUND)) {
+            note.extend([text("; right is "), Inline::math(correct)]);
+        }
         if let Some(reason) = &finding.reason {
             note.push(text(format!(": {reason}")));
         }

@@ -81,7 +81,17 @@ pub fn declared(model: &Model) -> Vec<Var> {
     };
     let parameters = model.parameters.iter().map(|parameter| parameter.var);
     let quantities = model.quantities.iter().copied().flatten();
-    model.prices.iter().copied().chain(others).chain(model.income).chain(parameters).chain(quantities).collect()
+    let utility = model.speaks_of_utility().then_some(model.utility);
+    model
+        .prices
+        .iter()
+        .copied()
+        .chain(others)
+        .chain(model.income)
+        .chain(parameters)
+        .chain(quantities)
+        .chain(utility)
+        .collect()
 }
 
 /// `left = value`; where the value is not rational, its formula if that is short, and bounds.
