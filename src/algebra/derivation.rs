@@ -8,11 +8,14 @@ use num_traits::One;
 use rustc_hash::FxHashMap;
 
 use super::budget;
-use super::field::Field;
+use super::field::{Field, Moves};
 use super::generator::{Base, Element, Kind, Role, Special};
 use super::monomial::{Monomial, Var};
 use super::number::{Int, Rational};
 use super::polynomial::Poly;
+
+/// Derivatives of named sums that are longer than this are named.
+const LONG: usize = 8;
 
 /// The symbols that an Euler operator scales, with what it does to each generator.
 pub struct Scale {
@@ -64,7 +67,9 @@ impl Field {
     pub fn log_gradient(&self, e: &Element, symbols: &[Var]) -> Vec<Element> {
         let e = self.current(e);
         let vars = e.vars();
-        let moves: Vec<Vec<(usize, Rc<Element>)>> = vars.iter().map(|v| self.log_moves(*v, symbols)).collect();
+        let positions: FxHashMap<Var, usize> = symbols.iter().enumerate().map(|(index, x)| (*x, index)).collect();
+        let moves: Vec<Vec<(usize, Rc<Element>)>> =
+            vars.iter().map(|v| self.log_moves(*v, symbols, &positions)).collect();
         let mut terms: Vec<Vec<(Monomial, Int)>> = vec![Vec::new(); symbols.len()];
         let mut fractional: Vec<Vec<Poly>> = vec![Vec::new(); symbols.len()];
         for (monomial, coefficient) in e.raw_terms() {
@@ -106,7 +111,16 @@ impl Field {
     }
 
     /// The symbols (by position) that move a variable, with x ∂v/∂x.
-    fn log_moves(&self, var: Var, symbols: &[Var]) -> Vec<(usize, Rc<Element>)> {
+    fn log_moves(&self, var: Var, symbols: &[Var], positions: &FxHashMap<Var, usize>) -> Vec<(usize, Rc<Element>)> {
+        let positive = || symbols.iter().all(|x| self.role(*x).is_some_and(Role::is_positive));
+        let all = match &*self.kind(var) {
+            Kind::Sum { value, root } if positive() => Some(self.moves_of(var, value, Some(*root))),
+            Kind::Exp(argument) if positive() => Some(self.moves_of(var, argument, None)),
+            _ => None,
+        };
+        if let Some(all) = all {
+            return all.iter().filter_map(|(x, by)| Some((*positions.get(x)?, by.clone()))).collect();
+        }
         let support = self.support(var);
         let mut moves = Vec::new();
         for (index, x) in symbols.iter().enumerate() {
@@ -118,6 +132,32 @@ impl Field {
                 moves.push((index, Rc::new(self.current(&(&*plain * &self.current(&Poly::var(*x)))))));
             }
         }
+        moves
+    }
+
+    /// x ∂v/∂x for the positive symbols that v is built from, where v is the N-th root of `inner` or exp(`inner`): long
+    /// derivatives are named in turn. Found once.
+    fn moves_of(&self, var: Var, inner: &Element, root: Option<u32>) -> Rc<Moves> {
+        let known = self.tables.borrow().moves.get(&var).cloned();
+        if let Some(known) = known {
+            return known;
+        }
+        let mut symbols: Vec<Var> = self.symbols_of(&Poly::var(var));
+        symbols.retain(|x| self.role(*x).is_some_and(Role::is_positive));
+        let n = root.unwrap_or(1);
+        let share = Rational::new(BigInt::one(), BigInt::from(n));
+        let outer = Monomial::power(var, if root.is_some() { 1 - n as i32 } else { 1 });
+        // a single term is moved by a multiple of itself
+        let itself = inner.as_monomial().filter(|_| root == Some(1)).map(|(c, m)| (c.recip(), m.clone()));
+        let shorter = |slope: Element| match &itself {
+            Some((scale, m)) => slope.mul_term(scale, &Monomial::power(var, 1).div(m)),
+            None if slope.len() > LONG => self.named(&slope, None),
+            None => slope,
+        };
+        let slopes = self.log_gradient(inner, &symbols).into_iter().zip(&symbols).filter(|(slope, _)| !slope.is_zero());
+        let moves = slopes.map(|(slope, x)| (*x, Rc::new(shorter(slope).mul_term(&share, &outer))));
+        let moves = Rc::new(moves.collect::<Moves>());
+        self.tables.borrow_mut().moves.insert(var, moves.clone());
         moves
     }
 

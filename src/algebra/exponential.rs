@@ -185,8 +185,9 @@ impl Field {
         }
     }
 
-    /// A named sum for a single term that must not be split (the product of factors of unknown sign).
-    fn sum_of_one_term(&self, value: &Element) -> Element {
+    /// A named sum for a single term: one that must not be split (the product of factors of unknown sign), or a long one
+    /// that comes again and again.
+    pub fn sum_of_one_term(&self, value: &Element) -> Element {
         let known = self.tables.borrow().sums.get(value).cloned();
         known.unwrap_or_else(|| {
             let var = self.add(Kind::Sum { value: Rc::new(value.clone()), root: 1 }, None);

@@ -50,6 +50,9 @@ pub(super) struct Exponential {
     pub value: Element,
 }
 
+/// The symbols that move a variable v, each with x ∂v/∂x.
+pub(super) type Moves = Vec<(Var, Rc<Element>)>;
+
 #[derive(Default)]
 pub(super) struct Tables {
     pub kinds: Vec<Rc<Kind>>,
@@ -61,6 +64,7 @@ pub(super) struct Tables {
     pub exponentials: FxHashMap<Group, Vec<Exponential>>,
     pub facts: Vec<Rc<Fact>>,
     pub derivatives: FxHashMap<(Var, Var), Rc<Element>>,
+    pub moves: FxHashMap<Var, Rc<Moves>>,
     pub support: FxHashMap<Var, Rc<Vec<Var>>>,
     pub levels: FxHashMap<Var, u32>,
     pub signs: FxHashMap<Var, Sign>,

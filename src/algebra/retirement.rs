@@ -17,6 +17,7 @@ impl Field {
             let mut tables = self.tables.borrow_mut();
             tables.retired.insert(var, by);
             tables.derivatives.clear();
+            tables.moves.clear();
             tables.support.clear();
             tables.levels.clear();
             tables.signs.clear();

@@ -2,18 +2,18 @@
 
 use crate::algebra::budget;
 use crate::algebra::factor::factor;
-use crate::algebra::field::{Field, Relation};
+use crate::algebra::field::Field;
 use crate::algebra::gcd::coprime;
 use crate::algebra::generator::{Element, Role};
 use crate::algebra::monomial::{Monomial, Var};
 use crate::algebra::number::rational;
 use crate::algebra::polynomial::Poly;
-use crate::algebra::sign::Sign;
 use crate::model::Model;
 use crate::proof::{Residual, Value, exact_value};
 
 use super::coefficients::{self, normalised};
 use super::finding::Branch;
+use super::special::{contradicts_a_fact, transfer};
 
 /// What was found.
 pub(super) struct Solved {
@@ -271,28 +271,6 @@ fn confirm(model: &Model, leaf: &Node, holds: &dyn Fn(&Model) -> bool) -> Confir
         sides.iter().all(nonzero)
     });
     if satisfied { Confirmed::Yes } else { Confirmed::No }
-}
-
-/// An element of the model's field in that of the special model; the names are the same.
-fn transfer(model: &Model, special: &Model, e: &Element) -> Option<Element> {
-    let symbol = |name: &str| special.parameters.iter().find(|p| p.name == name).map(|p| Poly::var(p.var));
-    special.field.import(&model.field, e, &symbol).ok()
-}
-
-/// Whether a fact about parameters becomes false whatever the others are.
-fn contradicts_a_fact(field: &Field, solved: &[(Var, Element)]) -> bool {
-    field.facts().iter().any(|fact| {
-        if solved.iter().all(|(v, _)| !field.depends_on(&fact.element, *v)) {
-            return false;
-        }
-        let Ok(value) = field.substitute(&fact.element, solved) else { return false };
-        let sign = if field.is_zero(&value) { Sign::Zero } else { field.sign(&value) };
-        match fact.relation {
-            Relation::Positive => matches!(sign, Sign::Zero | Sign::Negative | Sign::NonPositive),
-            Relation::NonNegative => sign == Sign::Negative,
-            Relation::NonZero => sign == Sign::Zero,
-        }
-    })
 }
 
 /// The branches that are inside none of the others.

@@ -24,7 +24,7 @@ fn equations(system: &System) -> Vec<Equation> {
 }
 
 fn equation(system: &System, i: usize, movers: &Rc<Vec<Var>>) -> Equation {
-    let f = system.functions[i];
+    let f = system.collected[i];
     let left = Expression::from(Factor::Euler(f, movers.clone()));
     let right = match system.coordinates {
         Coordinates::Shares => Expression::zero(),

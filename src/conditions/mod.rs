@@ -8,12 +8,14 @@ mod adding_up;
 mod branches;
 pub mod claims;
 pub mod coefficients;
+mod compact;
 mod concavity;
 mod curvature;
 mod finding;
 mod homogeneity;
 mod settlement;
 mod slutsky;
+pub mod special;
 mod symmetry;
 mod witness;
 

@@ -16,6 +16,8 @@ use crate::language::Preferences;
 use crate::model::{Coverage, Form, Model, inverse_shares};
 use crate::proof::{Expression, Factor, FunctionId, Matrix, Prover};
 
+use super::compact::Collector;
+
 /// What the demands are written in.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Coordinates {
@@ -41,8 +43,10 @@ pub enum Compensation {
 pub struct System {
     /// What the functions are.
     pub coordinates: Coordinates,
-    /// A function for each good.
+    /// A function for each good, as the author wrote it.
     pub functions: Vec<FunctionId>,
+    /// The same functions with long sums named.
+    pub collected: Vec<FunctionId>,
     /// The prices of the goods; of inverse demands, their quantities.
     pub prices: Vec<Var>,
     /// How utility is kept.
@@ -66,17 +70,24 @@ impl System {
         }
         let shares = model.demands.iter().filter(|d| d.form == Form::Share).count();
         let coordinates = if 2 * shares > model.demands.len() { Coordinates::Shares } else { Coordinates::Outlays };
-        let functions = model.demands.iter().zip(&model.goods).map(|(demand, good)| match coordinates {
-            Coordinates::Shares => prover.define(&format!("share {}", good.name), &demand.share),
-            Coordinates::Outlays => prover.define(&format!("outlay {}", good.name), &demand.outlay),
-        });
-        let functions = functions.collect();
+        let mut collector = Collector::new(&model.field, income);
+        let (mut functions, mut collected) = (Vec::new(), Vec::new());
+        for (demand, good) in model.demands.iter().zip(&model.goods) {
+            let (word, element) = match coordinates {
+                Coordinates::Shares => ("share", &demand.share),
+                Coordinates::Outlays => ("outlay", &demand.outlay),
+            };
+            let short = collector.short(element);
+            let addition = if short == *element { "" } else { ", collected" };
+            functions.push(prover.define(&format!("{word} {}", good.name), element));
+            collected.push(prover.define(&format!("{word} {}{addition}", good.name), &short));
+        }
         let others = match &model.coverage {
             Coverage::Others(others) => others.clone(),
             Coverage::Complete | Coverage::Deflated => Vec::new(),
         };
         let (prices, compensation) = (model.prices.clone(), Compensation::Income(income));
-        Some(System { coordinates, functions, prices, compensation, others, positive: Vec::new() })
+        Some(System { coordinates, functions, collected, prices, compensation, others, positive: Vec::new() })
     }
 
     fn inverse(model: &Model, prover: &mut Prover<'_>) -> Option<System> {
@@ -107,9 +118,11 @@ impl System {
     ) -> Option<System> {
         let quantities: Vec<Var> = model.quantities.iter().copied().collect::<Option<_>>()?;
         let functions = shares.iter().zip(&model.goods);
-        let functions = functions.map(|(share, good)| prover.define(&format!("share {}", good.name), share)).collect();
+        let functions = functions.map(|(share, good)| prover.define(&format!("share {}", good.name), share));
+        let functions: Vec<FunctionId> = functions.collect();
         Some(System {
             coordinates: Coordinates::Shares,
+            collected: functions.clone(),
             functions,
             prices: quantities,
             compensation: Compensation::Scale,
@@ -126,9 +139,11 @@ impl System {
             let outlay = field.log_derivative(e, *price);
             prover.define(&format!("outlay {}", good.name), &outlay)
         });
+        let functions: Vec<FunctionId> = outlays.collect();
         Some(System {
             coordinates: Coordinates::Outlays,
-            functions: outlays.collect(),
+            collected: functions.clone(),
+            functions,
             prices: model.prices.clone(),
             compensation: Compensation::Kept(e.clone()),
             others: Vec::new(),
@@ -157,7 +172,7 @@ impl System {
     /// Has the prover differentiate every function in one pass.
     pub(super) fn prepare(&self, prover: &mut Prover<'_>) {
         let movers = self.movers();
-        self.functions.iter().for_each(|f| prover.prepare(*f, &movers));
+        self.collected.iter().for_each(|f| prover.prepare(*f, &movers));
     }
 
     /// The number of goods.
@@ -167,12 +182,12 @@ impl System {
 
     /// θⱼ of the i-th function.
     pub(super) fn price_slope(&self, i: usize, j: usize) -> Factor {
-        Factor::LogSlope(self.functions[i], self.prices[j])
+        Factor::LogSlope(self.collected[i], self.prices[j])
     }
 
     /// Tᵢⱼ: the slope that is symmetric exactly when the Slutsky matrix is.
     pub fn compensated_slope(&self, i: usize, j: usize) -> Expression {
-        let (f, weight) = (self.functions[i], Factor::Function(self.functions[j]));
+        let (f, weight) = (self.collected[i], Factor::Function(self.collected[j]));
         let slope = Expression::from(self.price_slope(i, j));
         match (&self.compensation, self.coordinates) {
             (Compensation::Income(m), Coordinates::Shares) => slope.plus(1, vec![weight, Factor::LogSlope(f, *m)]),
@@ -184,7 +199,7 @@ impl System {
 
     /// pᵢ pⱼ Sᵢⱼ (outlays) or pᵢ pⱼ Sᵢⱼ/m (shares).
     pub fn scaled_entry(&self, i: usize, j: usize) -> Expression {
-        let function = |k: usize| Factor::Function(self.functions[k]);
+        let function = |k: usize| Factor::Function(self.collected[k]);
         let mut entry = self.compensated_slope(i, j);
         if self.coordinates == Coordinates::Shares {
             entry = entry.plus(1, vec![function(i), function(j)]);

@@ -2,11 +2,10 @@
 
 use std::rc::Rc;
 
-use crate::algebra::field::{Field, Relation};
+use crate::algebra::field::Relation;
 use crate::algebra::generator::Element;
 use crate::algebra::monomial::Var;
-use crate::algebra::polynomial::Poly;
-use crate::algebra::sign::Sign;
+use crate::conditions::special::{contradicts_a_fact, transfer};
 use crate::conditions::{self, Condition, Finding, Verdict};
 use crate::model::{DomainCondition, Model};
 use crate::proof::{Derivation, Prover, Value, exact_value};
@@ -80,28 +79,6 @@ fn special(model: &Model, leaf: &Node) -> Option<(Model, Vec<Element>)> {
         special.domain.push(DomainCondition::NonZero(side.clone()));
     }
     Some((special, sides))
-}
-
-/// An element of the model's field in that of the special model; the names are the same.
-fn transfer(model: &Model, special: &Model, e: &Element) -> Option<Element> {
-    let symbol = |name: &str| special.parameters.iter().find(|p| p.name == name).map(|p| Poly::var(p.var));
-    special.field.import(&model.field, e, &symbol).ok()
-}
-
-/// Whether a fact about parameters becomes false whatever the others are.
-fn contradicts_a_fact(field: &Field, solved: &[(Var, Element)]) -> bool {
-    field.facts().iter().any(|fact| {
-        if solved.iter().all(|(v, _)| !field.depends_on(&fact.element, *v)) {
-            return false;
-        }
-        let Ok(value) = field.substitute(&fact.element, solved) else { return false };
-        let sign = if field.is_zero(&value) { Sign::Zero } else { field.sign(&value) };
-        match fact.relation {
-            Relation::Positive => matches!(sign, Sign::Zero | Sign::Negative | Sign::NonPositive),
-            Relation::NonNegative => sign == Sign::Negative,
-            Relation::NonZero => sign == Sign::Zero,
-        }
-    })
 }
 
 /// The branch that a confirmed leaf is, without findings yet. `None` where the model cannot be built.

@@ -95,7 +95,7 @@ fn by_square(
     if question.system.coordinates != Coordinates::Shares {
         return None;
     }
-    let share = prover.value(&Expression::from(Factor::Function(question.system.functions[i])));
+    let share = prover.value(&Expression::from(Factor::Function(question.system.collected[i])));
     let root = &share - &Poly::constant(&rational(1, 2));
     let certificate = Combination { facts: Vec::new(), squares: vec![(rational(1, 1), root)] };
     prover.bound_by(SUBJECT, entry, Relation::Positive, certificate, &[])
