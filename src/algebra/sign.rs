@@ -93,7 +93,19 @@ impl Field {
         let (numerator, denominator) = self.fraction(&e);
         let below =
             denominator.iter().fold(Sign::Positive, |s, (v, k)| s.times(self.variable_sign(*v).to_power(*k as i32)));
-        self.polynomial_sign(&numerator).times(below)
+        if below != Sign::Unknown {
+            return self.polynomial_sign(&numerator).times(below);
+        }
+        // a/b has the sign of ab
+        let odd = denominator.iter().filter(|(_, k)| k % 2 != 0);
+        let product = odd.fold(numerator, |product, (v, _)| match &*self.kind(*v) {
+            Kind::Sum { value, .. } => &product * &self.expand(value),
+            _ => product,
+        });
+        match self.polynomial_sign(&self.expand(&product)) {
+            sign @ (Sign::Positive | Sign::Negative | Sign::NonZero) => sign,
+            _ => Sign::Unknown,
+        }
     }
 
     /// The sign of an element without symbols, from an enclosure.
@@ -123,7 +135,7 @@ impl Field {
         }
         let odd = Monomial::from_pairs(monomial.iter().filter(|power| open(*power)).map(|(v, _)| (v, 1)));
         let settled = Monomial::from_pairs(monomial.iter().filter(|power| !open(*power)));
-        match self.stated_sign(&Poly::monomial(odd)).times(self.monomial_sign(&settled)) {
+        match self.stated_sign(&self.expand(&Poly::monomial(odd))).times(self.monomial_sign(&settled)) {
             Sign::Unknown => by_factors,
             stated => stated,
         }

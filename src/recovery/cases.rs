@@ -8,7 +8,7 @@ use crate::algebra::polynomial::Poly;
 use crate::model::Model;
 use crate::proof::{Derivation, Prover};
 
-use super::{Recovered, recover_nested};
+use super::{Recovered, recover_plain};
 
 /// The system at a special parameter value.
 pub struct Case {
@@ -22,26 +22,69 @@ pub struct Case {
     pub derivation: Derivation,
 }
 
-/// How deep cases of cases go.
-const DEEPEST: u32 = 3;
+/// How many parameters may take special values at a time.
+const DEEPEST: usize = 3;
+/// How many cases are worked out.
+const MOST_CASES: usize = 15;
 
-/// A case for each condition that can be solved for a parameter and does not contradict the assumptions.
-pub fn cases(model: &Model, conditions: &[Element], depth: u32) -> Vec<Case> {
-    if depth >= DEEPEST {
-        return Vec::new();
-    }
-    let mut cases = Vec::new();
-    for condition in conditions {
-        let Some((var, value)) = solved_for_parameter(model, condition) else { continue };
-        let when = vec![(var, value)];
-        let Ok(special) = model.respecialised(&when) else { continue };
-        let special = Rc::new(special);
-        let mut prover = Prover::new(&special.field);
-        let recovered = recover_nested(&special, &mut prover, depth + 1);
-        let derivation = prover.into_derivation();
-        cases.push(Case { when, model: special.clone(), recovered, derivation });
+/// The values that parameters take, in the order of their declaration.
+type When = Vec<(Var, Element)>;
+
+/// A case for each set of conditions that can fail together: those of the closed form, then those of its cases. What
+/// contradicts the assumptions, and what cannot be solved for a parameter, gives no case.
+pub fn cases(model: &Model, conditions: &[Element]) -> Vec<Case> {
+    let mut cases: Vec<Case> = Vec::new();
+    let mut seen: Vec<When> = Vec::new();
+    extend(model, model, conditions, &Vec::new(), &mut seen, &mut cases);
+    let mut next = 0;
+    while let Some(case) = cases.get(next) {
+        next += 1;
+        let Recovered::Found(found) = &case.recovered else { continue };
+        let (special, conditions, when) = (case.model.clone(), found.conditions.clone(), case.when.clone());
+        if when.len() < DEEPEST {
+            extend(model, &special, &conditions, &when, &mut seen, &mut cases);
+        }
     }
     cases
+}
+
+/// Adds the cases in which one of the conditions of a special model fails.
+fn extend(
+    general: &Model,
+    special: &Model,
+    conditions: &[Element],
+    when: &When,
+    seen: &mut Vec<When>,
+    cases: &mut Vec<Case>,
+) {
+    for condition in conditions {
+        let Some((var, value)) = solved_for_parameter(special, condition) else { continue };
+        let Some(all) = together(general, special, when, var, &value) else { continue };
+        if seen.contains(&all) || cases.len() >= MOST_CASES {
+            continue;
+        }
+        seen.push(all.clone());
+        let Ok(model) = special.respecialised(&[(var, value)]) else { continue };
+        let model = Rc::new(model);
+        let mut prover = Prover::new(&model.field);
+        let recovered = recover_plain(&model, &mut prover);
+        let derivation = prover.into_derivation();
+        cases.push(Case { when: all, model: model.clone(), recovered, derivation });
+    }
+}
+
+/// The values so far under one more, as elements of the general model's field.
+fn together(general: &Model, special: &Model, when: &When, var: Var, value: &Element) -> Option<When> {
+    let field = &general.field;
+    let find = |name: &str| general.parameters.iter().find(|p| p.name == name).map(|p| p.var);
+    let own = find(&special.field.name(var)?)?;
+    let value = field.import(&special.field, value, &|name| find(name).map(Poly::var)).ok()?;
+    let mut all = vec![(own, value.clone())];
+    for (var, old) in when {
+        all.push((*var, field.reduce(&field.substitute(old, &[(own, value.clone())]).ok()?)));
+    }
+    all.sort_by_key(|(var, _)| *var);
+    Some(all)
 }
 
 /// The last parameter in which the condition is linear with a coefficient that cannot vanish, and its value.

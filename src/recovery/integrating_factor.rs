@@ -71,6 +71,12 @@ enum Factor {
     Exponential(Element),
 }
 
+/// A factor f that the form preserves: (θ_m ln f)ωᵢ − (θᵢ ln f)ω_m has no pole at f.
+struct Cofactored {
+    factor: Factor,
+    cofactors: Vec<Element>,
+}
+
 /// The proposals by integrating factors: factors in sight first, then polynomial inverse factors.
 pub fn propose(system: &System, utility: Var) -> Vec<Proposal> {
     let moving = Moving::new(system.field, &system.variables());
@@ -87,10 +93,28 @@ pub fn propose(system: &System, utility: Var) -> Vec<Proposal> {
     found
 }
 
+/// Tries growing sets of factors: symbols, everything in sight, exponentials of ratios.
 fn from_sight(form: &Form) -> Option<(Element, Element)> {
-    let factors = candidates(form);
-    let solution = exponents(form, &factors)?;
-    let multiplier = multiplier(form.moving, &factors, &solution).ok()?;
+    let mut factors: Vec<Cofactored> = Vec::new();
+    let symbols = form.moving.symbols.iter().map(|x| Factor::Power(Poly::var(*x))).collect();
+    let ratios = ratios(form.moving).into_iter().map(Factor::Exponential).collect();
+    let sets: [&dyn Fn() -> Vec<Factor>; 3] = [&|| Vec::clone(&symbols), &|| candidates(form), &|| Vec::clone(&ratios)];
+    for set in sets {
+        for factor in set() {
+            if factors.iter().all(|known| known.factor != factor) {
+                factors.extend(cofactored(form, factor));
+            }
+        }
+        if let Some(found) = exact(form, &factors) {
+            return Some(found);
+        }
+    }
+    None
+}
+
+fn exact(form: &Form, factors: &[Cofactored]) -> Option<(Element, Element)> {
+    let solution = exponents(form, factors)?;
+    let multiplier = multiplier(form.moving, factors, &solution).ok()?;
     let v = integral(form, &multiplier)?;
     Some((v, multiplier))
 }
@@ -158,9 +182,8 @@ fn candidates(form: &Form) -> Vec<Factor> {
                     offer(Factor::Power(field.named(value, None)));
                 }
             }
-            Kind::Sum { value, root } => {
+            Kind::Sum { value, .. } => {
                 waiting.extend(field.expand(value).vars());
-                let _ = root;
                 offer(Factor::Power(Poly::var(var)));
             }
             Kind::Special(_, argument) => {
@@ -175,9 +198,6 @@ fn candidates(form: &Form) -> Vec<Factor> {
                 offer(Factor::Power(field.named(&part, None)));
             }
         }
-    }
-    for ratio in ratios(moving) {
-        offer(Factor::Exponential(ratio));
     }
     found
 }
@@ -195,29 +215,41 @@ fn ratios(moving: &Moving) -> Vec<Element> {
     all
 }
 
-/// The constants nₖ and cⱼ with d ln μ ∧ Ω + dΩ = 0.
-fn exponents(form: &Form, factors: &[Factor]) -> Option<Vec<Element>> {
+/// The factor with its cofactors, if it is preserved.
+fn cofactored(form: &Form, factor: Factor) -> Option<Cofactored> {
     let moving = form.moving;
     let field = moving.field;
     let n = form.components.len() - 1;
-    let income = *moving.symbols.last()?;
-    let rates: Option<Vec<Vec<Element>>> =
-        factors.iter().map(|f| moving.symbols.iter().map(|x| log_rate(moving, f, *x).ok()).collect()).collect();
+    let rates: Option<Vec<Element>> = moving.symbols.iter().map(|x| log_rate(moving, &factor, *x).ok()).collect();
     let rates = rates?;
-    let mut equations = Vec::new();
+    let pole = match &factor {
+        Factor::Power(f) => f.as_var(),
+        Factor::Exponential(_) => None,
+    };
+    let mut cofactors = Vec::with_capacity(n);
     for index in 0..n {
-        let mut row: Vec<Element> = Vec::with_capacity(factors.len() + 1);
-        for rate in &rates {
-            let forth = field.product(&rate[n], &form.components[index]);
-            let back = field.product(&rate[index], form.last());
-            row.push(&field.current(&forth) - &field.current(&back));
+        let forth = field.product(&rates[n], &form.components[index]);
+        let back = field.product(&rates[index], form.last());
+        let cofactor = field.reduce(&(&field.current(&forth) - &field.current(&back)));
+        if pole.is_some_and(|f| cofactor.low_degree(f) < 0 && !matches!(*field.kind(f), Kind::Symbol(_))) {
+            return None;
         }
+        cofactors.push(cofactor);
+    }
+    Some(Cofactored { factor, cofactors })
+}
+
+/// The constants nₖ and cⱼ with d ln μ ∧ Ω + dΩ = 0.
+fn exponents(form: &Form, factors: &[Cofactored]) -> Option<Vec<Element>> {
+    let moving = form.moving;
+    let mut equations = Vec::new();
+    for index in 0..form.components.len() - 1 {
+        let mut row: Vec<Element> = factors.iter().filter_map(|f| f.cofactors.get(index).cloned()).collect();
         row.push(form.rotation(index).neg());
         let (numerators, _) = moving.over_one_denominator(&row);
         equations.extend(moving.matched(&numerators));
     }
-    let _ = income;
-    Some(linear_solve::solve(field, equations, factors.len())?.values)
+    Some(linear_solve::solve(moving.field, equations, factors.len())?.values)
 }
 
 /// θ ln f, or θg.
@@ -229,11 +261,11 @@ fn log_rate(moving: &Moving, factor: &Factor, x: Var) -> Built {
     }
 }
 
-fn multiplier(moving: &Moving, factors: &[Factor], exponents: &[Element]) -> Built {
+fn multiplier(moving: &Moving, factors: &[Cofactored], exponents: &[Element]) -> Built {
     let field = moving.field;
     let mut logs = Potential::default();
     for (factor, exponent) in factors.iter().zip(exponents).filter(|(_, n)| !n.is_zero()) {
-        match factor {
+        match &factor.factor {
             Factor::Power(f) => logs.logs.push((exponent.clone(), f.clone())),
             Factor::Exponential(g) => {
                 logs.regular = &field.current(&logs.regular) + &field.reduce(&field.product(exponent, g));

@@ -9,6 +9,7 @@ use crate::algebra::monomial::Var;
 use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
 
+use super::constant;
 use super::fractions::Moving;
 use super::invert::{self, Inverse};
 use super::potential::{Potential, potential};
@@ -32,8 +33,20 @@ pub fn solve(system: &System, reduced: &Reduced, utility: Var) -> Option<Proposa
     let inverse = field.inverse(&factor).ok()?;
     let scaled: Vec<Element> = a.iter().map(|e| field.product(&inverse, e)).collect();
     let shift = if reduced.lacks(0) { Potential::default() } else { potential(&prices, &scaled)? };
-    let base = field.reduce(&field.product(&factor, &shift.value(field).ok()?));
+    let mut base = field.reduce(&field.product(&factor, &shift.value(field).ok()?));
+    while let Some(constant) = constant::simplifying(&prices, &base, &factor) {
+        let simpler = field.reduce(&(&base - &field.product(&constant, &factor)));
+        if simpler.len() >= base.len() && size(&simpler) >= size(&base) {
+            break;
+        }
+        base = simpler;
+    }
     Some(affine(system, reduced, &factor, &base, utility))
+}
+
+/// How much there is to read.
+fn size(e: &Element) -> usize {
+    e.raw_terms().iter().map(|(m, _)| 1 + m.len()).sum()
 }
 
 /// v = (z − base)/factor and z = base + u·factor.

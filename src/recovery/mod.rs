@@ -7,6 +7,7 @@ pub mod ansatz;
 pub mod candidates;
 pub mod cases;
 pub mod check;
+pub mod constant;
 pub mod divisors;
 pub mod fractions;
 pub mod frame;
@@ -79,21 +80,21 @@ pub enum Recovered {
 /// Recovers the preferences behind a model whose Slutsky matrix is symmetric. The steps are added to the prover's
 /// derivation, whose field must be the model's.
 pub fn recover(model: &Model, prover: &mut Prover<'_>) -> Recovered {
-    recover_nested(model, prover, 0)
+    let mut recovered = recover_plain(model, prover);
+    if let Recovered::Found(found) = &mut recovered {
+        found.cases = cases::cases(model, &found.conditions);
+    }
+    recovered
 }
 
-fn recover_nested(model: &Model, prover: &mut Prover<'_>, depth: u32) -> Recovered {
+/// The same without the special cases.
+fn recover_plain(model: &Model, prover: &mut Prover<'_>) -> Recovered {
     let Some(system) = system_of(model) else {
         return Recovered::NotFound { reason: "the model has no demands".to_string(), existence: false };
     };
     match search::search(&system, model.utility, prover) {
         Err(reason) => Recovered::NotFound { reason, existence: true },
-        Ok(mut found) => {
-            // what the assumptions exclude anyway needs no mention
-            found.conditions.retain(|e| !model.field.sign(e).excludes_zero());
-            found.cases = cases::cases(model, &found.conditions, depth);
-            Recovered::Found(found)
-        }
+        Ok(found) => Recovered::Found(found),
     }
 }
 

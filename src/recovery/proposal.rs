@@ -1,11 +1,16 @@
 //! What a method proposes before anything is proven.
 
+use num_traits::Signed;
+
+use crate::algebra::budget;
 use crate::algebra::field::{Field, Relation};
 use crate::algebra::generator::Element;
-use crate::algebra::monomial::Var;
+use crate::algebra::monomial::{Monomial, Var};
+use crate::algebra::number::Rational;
 use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
 
+use super::fractions::Moving;
 use super::gather::gathered;
 use super::system::{Coordinate, System};
 
@@ -47,6 +52,11 @@ pub struct Working {
     pub integrating_factor: Option<Element>,
 }
 
+/// Quantities with more terms say little about signs.
+const LONGEST_QUANTITY: usize = 12;
+/// Units of work for the sign of ∂v/∂m.
+const WORK_OF_ONE_SIGN: u64 = 2_000_000;
+
 impl Proposal {
     /// The proposal in income itself, when it was found in another coordinate.
     pub fn in_income(mut self, system: &System, there: &System, coordinate: &Coordinate) -> Option<Proposal> {
@@ -72,8 +82,10 @@ impl Proposal {
         let field = system.field;
         if let (Sign::Unknown | Sign::NonZero, Some(v)) = (self.rising, &self.indirect_utility) {
             let slope = field.derivative(v, system.income);
-            let quantities: Vec<_> = system.demands.iter().map(|x| (x.clone(), Relation::Positive)).collect();
-            self.rising = field.suppose(&quantities, || field.sign(&slope));
+            let quantities = system.demands.iter().filter(|x| x.len() <= LONGEST_QUANTITY);
+            let quantities: Vec<_> = quantities.map(|x| (x.clone(), Relation::Positive)).collect();
+            let sign = budget::attempt(WORK_OF_ONE_SIGN, || field.suppose(&quantities, || field.sign(&slope)));
+            self.rising = sign.unwrap_or(Sign::Unknown);
         }
         self
     }
@@ -82,6 +94,31 @@ impl Proposal {
     pub fn gathered(mut self, field: &Field) -> Proposal {
         self.indirect_utility = self.indirect_utility.map(|v| gathered(field, &v));
         self.expenditure = self.expenditure.map(|e| gathered(field, &e));
+        self
+    }
+
+    /// The proposal with utility measured without a positive constant factor that all of v shares.
+    pub fn without_factor(mut self, system: &System, utility: Var) -> Proposal {
+        let field = system.field;
+        let Some(v) = self.indirect_utility.as_ref().map(|v| field.current(v)) else { return self };
+        let moving = Moving::new(field, &system.variables());
+        let split = v.primitive();
+        let shared = split
+            .monomial
+            .iter()
+            .filter(|(x, k)| *k > 0 && !moving.moves(*x) && field.sign(&Poly::var(*x)) == Sign::Positive);
+        let constant = Monomial::from_pairs(shared);
+        let factor = Poly::term(&Rational::from_integer(split.content.numer().abs()), constant);
+        let Ok(inverse) = field.inverse(&factor) else { return self };
+        if factor.is_one() {
+            return self;
+        }
+        let scale = [(utility, field.product(&factor, &Poly::var(utility)))];
+        let rescaled = |e: &Element| field.substitute(e, &scale).ok();
+        self.indirect_utility = Some(field.product(&v, &inverse));
+        self.positive = self.positive.iter().filter_map(rescaled).collect();
+        let facts: Vec<_> = self.positive.iter().map(|e| (e.clone(), Relation::Positive)).collect();
+        self.expenditure = self.expenditure.and_then(|e| field.suppose(&facts, || rescaled(&e)));
         self
     }
 

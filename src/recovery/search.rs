@@ -47,7 +47,8 @@ pub fn search(system: &System, utility: Var, prover: &mut Prover<'_>) -> Result<
             let proposals = budget::attempt(WORK_OF_ONE_ATTEMPT, || method(there, utility)).unwrap_or_default();
             for (method, proposal) in proposals {
                 let Some(proposal) = proposal.in_income(system, there, coordinate) else { continue };
-                let proposal = proposal.with_orientation(system).turned(system.field, utility).gathered(system.field);
+                let proposal = proposal.with_orientation(system).turned(system.field, utility);
+                let proposal = proposal.without_factor(system, utility).gathered(system.field);
                 if let Some(established) = check::establish(system, &proposal, utility, prover) {
                     return Ok(Box::new(preferences(system, utility, method, proposal, established)));
                 }
