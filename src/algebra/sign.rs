@@ -96,6 +96,9 @@ impl Field {
         if below != Sign::Unknown {
             return self.polynomial_sign(&numerator).times(below);
         }
+        if denominator.iter().any(|(v, k)| k % 2 == 0 && !self.variable_sign(*v).excludes_zero()) {
+            return Sign::Unknown;
+        }
         // a/b has the sign of ab
         let odd = denominator.iter().filter(|(_, k)| k % 2 != 0);
         let product = odd.fold(numerator, |product, (v, _)| match &*self.kind(*v) {

@@ -94,7 +94,11 @@ fn recover_plain(model: &Model, prover: &mut Prover<'_>) -> Recovered {
     };
     match search::search(&system, model.utility, prover) {
         Err(reason) => Recovered::NotFound { reason, existence: true },
-        Ok(found) => Recovered::Found(found),
+        Ok(mut found) => {
+            // what the assumptions exclude anyway needs no mention
+            found.conditions.retain(|e| !model.field.sign(e).excludes_zero());
+            Recovered::Found(found)
+        }
     }
 }
 
