@@ -1,6 +1,6 @@
 //! The command line from outside: what goes in, what comes out, and how it ends.
 
-use std::io::Write;
+use std::io::{BufRead, BufReader, Write};
 use std::path::PathBuf;
 use std::process::{Command, Output, Stdio};
 
@@ -134,12 +134,13 @@ fn files_are_replaced_whole_and_left_alone_when_nothing_changed() {
     let model = folder.file("m.demand", PROVEN);
     let report = folder.path("report.json");
     let arguments = ["vet", model.as_str(), "--as", "json", "--out", report.as_str()];
-    assert_eq!(code(&run(&[&arguments[..], &["--check"]].concat())), 6);
+    let check = ["vet", model.as_str(), "--as", "json", "--check", report.as_str()];
+    assert_eq!(code(&run(&check)), 6);
     assert_eq!(code(&run(&arguments)), 0);
     let first = std::fs::metadata(&report).unwrap().modified().unwrap();
     assert_eq!(code(&run(&arguments)), 0);
     assert_eq!(std::fs::metadata(&report).unwrap().modified().unwrap(), first);
-    assert_eq!(code(&run(&[&arguments[..], &["--check"]].concat())), 0);
+    assert_eq!(code(&run(&check)), 0);
     let left: Vec<_> = std::fs::read_dir(&folder.0).unwrap().collect();
     assert_eq!(left.len(), 2, "{left:?}");
 }
@@ -159,6 +160,80 @@ fn a_folder_stands_for_its_models() {
     let mut names: Vec<_> = std::fs::read_dir(&reports).unwrap().map(|e| e.unwrap().file_name()).collect();
     names.sort();
     assert_eq!(names, ["a.tex", "b.tex"]);
+    assert_eq!(code(&run(&["derive", folder.0.to_str().unwrap(), "--as", "latex", "--check", &reports])), 1);
+    folder.file("b.demand", PROVEN);
+    assert_eq!(code(&run(&["derive", folder.0.to_str().unwrap(), "--as", "latex", "--check", &reports])), 6);
+}
+
+#[test]
+fn several_models_are_reported_in_order_and_counted_however_many_run_at_a_time() {
+    let folder = Folder::new("order");
+    for at in 0..9 {
+        folder.file(&format!("{at}.demand"), &format!("title \"Number {at}\"\n{}", [PROVEN, REFUTED][at % 2]));
+    }
+    folder.file("x.demand", UNREADABLE);
+    let models = folder.0.to_str().unwrap();
+    let (one, many) = (run(&["vet", models, "--jobs", "1"]), run(&["vet", models, "--jobs", "8"]));
+    assert_eq!(out(&one), out(&many));
+    assert_eq!(err(&one), err(&many));
+    assert_eq!(code(&many), 4);
+    let titles: Vec<String> = out(&many).lines().filter(|l| l.starts_with("Number")).map(str::to_string).collect();
+    assert_eq!(titles, (0..9).map(|at| format!("Number {at}")).collect::<Vec<_>>());
+    let summary = "10 models: 5 proven, 4 not proven (refuted, regional or conditional), 1 unreadable";
+    assert_eq!(err(&many).lines().last(), Some(summary));
+}
+
+#[test]
+fn a_watched_model_is_vetted_again_when_it_is_saved() {
+    let folder = Folder::new("watch");
+    let model = folder.file("m.demand", PROVEN);
+    let mut child = Command::new(env!("CARGO_BIN_EXE_mainspring"))
+        .args(["vet", &model, "--watch", "--only", "adding-up"])
+        .stdout(Stdio::piped())
+        .spawn()
+        .unwrap();
+    let mut lines = BufReader::new(child.stdout.take().unwrap()).lines();
+    let mut verdict = || lines.find(|line| line.as_ref().unwrap().starts_with("adding-up")).unwrap().unwrap();
+    assert!(verdict().contains("proven"));
+    folder.file("m.demand", REFUTED);
+    assert!(verdict().contains("refuted"));
+    child.kill().unwrap();
+    child.wait().unwrap();
+    assert_eq!(code(&run(&["vet", "-", "--watch"])), 2);
+}
+
+#[test]
+fn a_model_to_start_from_is_a_model() {
+    let folder = Folder::new("new");
+    for shape in
+        ["quantities", "shares", "outlays", "logarithms", "inverse", "utility", "indirect-utility", "expenditure"]
+    {
+        for goods in ["2", "3", "tea,cake,jam"] {
+            let new = run(&["new", "--goods", goods, "--shape", shape]);
+            assert_eq!((code(&new), err(&new)), (0, String::new()), "{shape}");
+            let vetted = run_with_input(&["vet", "-", "--only", "adding-up,symmetry,claims"], &out(&new));
+            assert_eq!((code(&vetted), err(&vetted)), (0, String::new()), "{shape}:\n{}", out(&new));
+        }
+    }
+    let path = folder.path("paper.demand");
+    assert_eq!(code(&run(&["new", "--out", &path])), 0);
+    let first = std::fs::read(&path).unwrap();
+    assert_eq!(code(&run(&["new", "--shape", "shares", "--out", &path])), 5);
+    assert_eq!(std::fs::read(&path).unwrap(), first);
+    assert_eq!(code(&run(&["new", "--goods", "tea,tea"])), 2);
+}
+
+#[test]
+fn shells_and_the_manual_know_every_command() {
+    let commands = ["vet", "derive", "restrict", "new"];
+    for arguments in [&["completions", "bash"][..], &["completions", "zsh"], &["completions", "fish"], &["manual"]] {
+        let text = out(&run(arguments));
+        assert!(commands.iter().all(|command| text.contains(command)), "{arguments:?}");
+    }
+    assert!(out(&run(&["manual", "vet"])).contains("watch"));
+    assert_eq!(code(&run(&["manual", "veto"])), 2);
+    let help = out(&run(&["--help"]));
+    assert!(help.find("Examples:").unwrap() < help.find("Usage:").unwrap());
 }
 
 #[test]

@@ -3,20 +3,37 @@
 use std::path::PathBuf;
 
 use clap::{Args, Parser, Subcommand, ValueEnum};
+use clap_complete::Shell;
+
+use super::starting::{Goods, Shape};
 
 const EXAMPLES: &str = "\
+Decides exactly whether a consumer demand system comes from a utility-maximising consumer, and from which.
+
 Examples:
   mainspring vet examples/three-staples.demand
   mainspring derive paper.demand --as latex --out appendix.tex
   mainspring vet models/ --only symmetry --with s=1/2 --as json
+  mainspring new --goods 3 --shape shares --out paper.demand";
 
+const STATUS: &str = "\
 Exit status: 0 everything asked for is proven; 1 something is refuted, regional or conditional; 2 the command line is
 wrong; 3 something is undecided; 4 a model cannot be read; 5 an output cannot be written; 6 --check found a difference;
 70 an internal check failed.";
 
+const EXAMPLES_FIRST: &str = "{before-help}{usage-heading} {usage}\n\n{all-args}{after-help}";
+
 /// Decides exactly whether a demand system comes from a utility-maximising consumer, and from which.
 #[derive(Parser, Debug)]
-#[command(name = "mainspring", version, about, after_help = EXAMPLES, max_term_width = 100)]
+#[command(
+    name = "mainspring",
+    version,
+    about,
+    before_help = EXAMPLES,
+    help_template = EXAMPLES_FIRST,
+    after_help = STATUS,
+    max_term_width = 100
+)]
 pub struct Arguments {
     /// What to do.
     #[command(subcommand)]
@@ -27,14 +44,76 @@ pub struct Arguments {
 #[derive(Subcommand, Debug)]
 pub enum Command {
     /// The verdicts, one line each, and the recovered preferences
-    Vet(Options),
+    #[command(
+        before_help = "Example: mainspring vet paper.demand --watch",
+        help_template = EXAMPLES_FIRST,
+        after_help = STATUS
+    )]
+    Vet(Vet),
     /// The whole derivation, from the demand system to its preferences
+    #[command(
+        before_help = "Example: mainspring derive paper.demand --as latex --out appendix.tex",
+        help_template = EXAMPLES_FIRST,
+        after_help = STATUS
+    )]
     Derive(Options),
     /// The parameter restrictions under which the conditions hold, and what the system becomes under each
+    #[command(
+        before_help = "Example: mainspring restrict paper.demand --only symmetry --as latex",
+        help_template = EXAMPLES_FIRST,
+        after_help = STATUS
+    )]
     Restrict(Options),
+    /// A commented model file to start from
+    #[command(
+        before_help = "Example: mainspring new --goods bread,fish,cloth --shape shares --out paper.demand",
+        help_template = EXAMPLES_FIRST
+    )]
+    New(New),
+    /// Completions of the command line for a shell
+    #[command(
+        before_help = "Example: mainspring completions bash > ~/.local/share/bash-completion/completions/mainspring",
+        help_template = EXAMPLES_FIRST
+    )]
+    Completions {
+        /// The shell
+        #[arg(value_enum)]
+        shell: Shell,
+    },
+    /// A page of the manual, for man
+    #[command(before_help = "Example: mainspring manual vet | man -l -", help_template = EXAMPLES_FIRST)]
+    Manual {
+        /// The command that the page is about; the program, where it is left out
+        command: Option<String>,
+    },
 }
 
-/// What every command takes.
+/// What `vet` takes.
+#[derive(Args, Debug, Clone)]
+pub struct Vet {
+    /// What every command takes.
+    #[command(flatten)]
+    pub options: Options,
+    /// Vet again whenever a model is saved
+    #[arg(long, conflicts_with = "check")]
+    pub watch: bool,
+}
+
+/// What `new` takes.
+#[derive(Args, Debug, Clone)]
+pub struct New {
+    /// How many goods, or their names: 3, or bread,fish,cloth
+    #[arg(long, value_name = "GOODS", default_value = "3")]
+    pub goods: Goods,
+    /// What is written down
+    #[arg(long, value_enum, default_value_t = Shape::Quantities, value_name = "SHAPE")]
+    pub shape: Shape,
+    /// Write here instead of to the terminal; a file that is there already is left alone
+    #[arg(long, value_name = "FILE")]
+    pub out: Option<PathBuf>,
+}
+
+/// What every command that works models takes.
 #[derive(Args, Debug, Clone)]
 pub struct Options {
     /// Model files, folders of them, or - for standard input
@@ -46,9 +125,10 @@ pub struct Options {
     /// Write here instead of to the terminal; a folder where several models are named
     #[arg(long, value_name = "FILE")]
     pub out: Option<PathBuf>,
-    /// Write nothing; compare with what --out names, and end with status 6 where it differs
-    #[arg(long, requires = "out")]
-    pub check: bool,
+    /// Write nothing; compare with this file, or folder where several models are named, and end with status 6 where it
+    /// differs
+    #[arg(long, value_name = "FILE", conflicts_with = "out")]
+    pub check: Option<PathBuf>,
     /// With --as latex: a whole document instead of a fragment
     #[arg(long)]
     pub document: bool,
@@ -67,6 +147,12 @@ pub struct Options {
     /// Verdicts besides `proven` that count as passed
     #[arg(long, value_enum, value_delimiter = ',', value_name = "VERDICT,…")]
     pub accept: Vec<Accepted>,
+    /// How many models to work at a time; as many as there are processors, where it is left out
+    #[arg(long, value_name = "COUNT", value_parser = clap::value_parser!(u16).range(1..=256))]
+    pub jobs: Option<u16>,
+    /// Colour on the terminal
+    #[arg(long, value_enum, default_value_t = Colour::Auto, value_name = "WHEN", overrides_with = "colour")]
+    pub colour: Colour,
     /// Write the time that each part took to standard error
     #[arg(long)]
     pub timings: bool,
@@ -111,4 +197,15 @@ pub enum Accepted {
     Conditional,
     /// Could not be decided
     Undecided,
+}
+
+/// When colour is used.
+#[derive(ValueEnum, Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Colour {
+    /// Where the output is a terminal that wants it
+    Auto,
+    /// Always
+    Always,
+    /// Never
+    Never,
 }

@@ -3,13 +3,14 @@
 use std::cell::RefCell;
 use std::panic::{AssertUnwindSafe, catch_unwind};
 
+use super::reports::Outcome;
 use super::status::Status;
 
 thread_local! {
     static LAST: RefCell<Option<String>> = const { RefCell::new(None) };
 }
 
-/// Keeps panics from printing; what they say is kept for [`report`].
+/// Keeps panics from printing; what they say is kept for [`guarded`].
 pub fn silence() {
     std::panic::set_hook(Box::new(|panic| {
         let place = panic.location().map(|at| format!(" ({}:{})", at.file(), at.line())).unwrap_or_default();
@@ -19,13 +20,11 @@ pub fn silence() {
 }
 
 /// Runs `work` for one model; a panic in it becomes a message and [`Status::Internal`].
-pub fn guarded<T>(name: &str, work: impl FnOnce() -> (Option<T>, Status)) -> (Option<T>, Status) {
-    catch_unwind(AssertUnwindSafe(work)).unwrap_or_else(|_| (None, report(name)))
-}
-
-/// Tells of the last panic.
-pub fn report(name: &str) -> Status {
-    let words = LAST.take().unwrap_or_else(|| "a check failed".to_string());
-    eprintln!("{name}: internal error: {words}; no result is given, please report this with the model file");
-    Status::Internal
+pub fn guarded(name: &str, work: impl FnOnce() -> Outcome) -> Outcome {
+    catch_unwind(AssertUnwindSafe(work)).unwrap_or_else(|_| {
+        let words = LAST.take().unwrap_or_else(|| "a check failed".to_string());
+        let message =
+            format!("{name}: internal error: {words}; no result is given, please report this with the model file");
+        Outcome::without_report(&message, Status::Internal)
+    })
 }

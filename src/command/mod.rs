@@ -1,180 +1,70 @@
 //! From the command line to an exit status: models in, reports out, messages to standard error.
 
 mod arguments;
+mod delivery;
 mod input;
 mod internal;
 mod output;
 mod reports;
+mod schedule;
+mod starting;
 mod status;
+mod task;
 mod values;
+mod watch;
 
 use std::process::ExitCode;
-use std::sync::mpsc;
-use std::thread::JoinHandle;
-use std::time::Duration;
 
-use clap::Parser;
+use clap::{CommandFactory, Parser};
 
-use arguments::{Arguments, Command, Options};
-use reports::Report;
-use status::Status;
-
-/// The stack of the thread that computes, in bytes. Only what is touched is taken from memory.
-const STACK: usize = 1 << 29;
+use arguments::{Arguments, Command, New};
+use status::{Status, written};
+use task::{Kind, Task};
 
 /// Runs the program.
 pub fn main() -> ExitCode {
     let arguments = Arguments::parse();
     internal::silence();
-    let patience = patience(options(&arguments.command));
-    let (tell, told) = mpsc::channel();
-    let worker = std::thread::Builder::new().stack_size(STACK).spawn(move || run(&arguments.command, &tell));
-    let status = match worker {
-        Ok(worker) => wait(worker, &told, patience),
-        Err(error) => {
-            eprintln!("mainspring: no thread could be started: {error}");
-            Status::Internal
-        }
+    let status = match arguments.command {
+        Command::Vet(vet) if vet.watch => watch::watch(&vet.options),
+        Command::Vet(vet) => Task { kind: Kind::Vet, options: vet.options }.run(),
+        Command::Derive(options) => Task { kind: Kind::Derive, options }.run(),
+        Command::Restrict(options) => Task { kind: Kind::Restrict, options }.run(),
+        Command::New(new) => begun(&new),
+        Command::Completions { shell } => completions(shell),
+        Command::Manual { command } => manual(command.as_deref()),
     };
     ExitCode::from(status.code())
 }
 
-fn options(command: &Command) -> &Options {
-    let (Command::Vet(options) | Command::Derive(options) | Command::Restrict(options)) = command;
-    options
+/// Writes a model file to start from.
+fn begun(new: &New) -> Status {
+    let text = starting::model_file(&new.goods, new.shape);
+    written(match &new.out {
+        Some(path) => output::create(path, &text),
+        None => output::print(&text),
+    })
 }
 
-/// How long one model may stay silent: a step that does not look at the clock must not keep the program forever.
-fn patience(options: &Options) -> Duration {
-    Duration::from_secs(3 * options.time + 30)
+fn completions(shell: clap_complete::Shell) -> Status {
+    let mut script = Vec::new();
+    clap_complete::generate(shell, &mut Arguments::command(), "mainspring", &mut script);
+    written(output::print(&String::from_utf8_lossy(&script)))
 }
 
-/// Waits for the worker, which tells of each model that it begins and of its end.
-fn wait(worker: JoinHandle<Status>, told: &mpsc::Receiver<String>, patience: Duration) -> Status {
-    let mut current = String::new();
-    loop {
-        match told.recv_timeout(patience) {
-            Ok(name) => current = name,
-            Err(mpsc::RecvTimeoutError::Disconnected) => {
-                return worker.join().unwrap_or_else(|_| internal::report("mainspring"));
-            }
-            Err(mpsc::RecvTimeoutError::Timeout) => {
-                eprintln!("{current}: the time limit was reached in the middle of a step; no result is given");
-                return Status::Undecided;
-            }
-        }
-    }
-}
-
-fn run(command: &Command, tell: &mpsc::Sender<String>) -> Status {
-    let options = options(command);
-    let values = match values::read(&options.values) {
-        Ok(values) => values,
-        Err(fault) => return failed(&[fault], Status::Usage),
+/// The page of a command, or of the program.
+fn manual(command: Option<&str>) -> Status {
+    let mut whole = Arguments::command();
+    whole.build();
+    let about = match command {
+        Some(name) => whole.find_subcommand(name).cloned(),
+        None => Some(whole),
     };
-    let inputs = match input::expand(&options.models) {
-        Ok(inputs) => inputs,
-        Err(faults) => return failed(&faults, Status::Unreadable),
+    let Some(about) = about else {
+        eprintln!("mainspring manual: there is no command `{}`", command.unwrap_or_default());
+        return Status::Usage;
     };
-    let mut delivery = match Delivery::new(options, &inputs) {
-        Ok(delivery) => delivery,
-        Err(fault) => return failed(&[fault], Status::Unwritable),
-    };
-    let mut worst = Status::Passed;
-    for model in &inputs.models {
-        // the receiver is there as long as the program is
-        let _ = tell.send(model.name());
-        let (report, status) = internal::guarded(&model.name(), || reports::report(command, model, &values));
-        worst = worst.and(status);
-        if let Some(report) = report {
-            worst = worst.and(delivery.deliver(&model.stem(), report));
-        }
-    }
-    worst.and(delivery.finish())
-}
-
-fn failed(faults: &[String], status: Status) -> Status {
-    faults.iter().for_each(|fault| eprintln!("{fault}"));
-    status
-}
-
-/// Takes reports to where they are wanted.
-struct Delivery<'a> {
-    options: &'a Options,
-    single: bool,
-    printed: usize,
-    collected: Vec<serde_json::Value>,
-}
-
-impl<'a> Delivery<'a> {
-    fn new(options: &'a Options, inputs: &input::Inputs) -> Result<Delivery<'a>, String> {
-        let delivery = Delivery { options, single: inputs.single, printed: 0, collected: Vec::new() };
-        let Some(folder) = options.out.as_ref().filter(|_| !inputs.single) else { return Ok(delivery) };
-        let mut stems: Vec<String> = inputs.models.iter().map(input::Input::stem).collect();
-        stems.sort();
-        if let Some(pair) = stems.windows(2).find(|pair| pair[0] == pair[1]) {
-            return Err(format!("{}: two of the models are called {}", folder.display(), pair[0]));
-        }
-        if !options.check {
-            std::fs::create_dir_all(folder).map_err(|e| format!("{}: cannot be made: {e}", folder.display()))?;
-        }
-        Ok(delivery)
-    }
-
-    fn deliver(&mut self, stem: &str, report: Report) -> Status {
-        let Some(out) = &self.options.out else {
-            return match report {
-                Report::Json(value) => {
-                    self.collected.push(value);
-                    Status::Passed
-                }
-                Report::Text(text) => self.print(&text),
-            };
-        };
-        let path = match self.single {
-            true => out.clone(),
-            false => out.join(format!("{stem}.{}", reports::extension(self.options.form))),
-        };
-        let text = report.into_text();
-        if !self.options.check {
-            return told(output::replace(&path, &text));
-        }
-        if output::same(&path, &text) {
-            return Status::Passed;
-        }
-        eprintln!("{}: is not what the model gives now", path.display());
-        Status::Differs
-    }
-
-    /// Reports on the terminal stand apart by an empty line.
-    fn print(&mut self, text: &str) -> Status {
-        let gap = if self.printed > 0 { "\n" } else { "" };
-        self.printed += 1;
-        told(output::print(&format!("{gap}{text}")))
-    }
-
-    fn finish(&mut self) -> Status {
-        if self.options.form != arguments::Form::Json || self.options.out.is_some() {
-            return Status::Passed;
-        }
-        let mut collected = std::mem::take(&mut self.collected);
-        let whole = match (self.single, collected.pop()) {
-            (true, None) => return Status::Passed,
-            (true, Some(only)) => only,
-            (false, last) => serde_json::Value::Array(collected.into_iter().chain(last).collect()),
-        };
-        self.print(&Report::Json(whole).into_text())
-    }
-}
-
-fn told(written: Result<(), String>) -> Status {
-    match written {
-        Ok(()) => Status::Passed,
-        Err(fault) => {
-            if !fault.is_empty() {
-                eprintln!("{fault}");
-            }
-            Status::Unwritable
-        }
-    }
+    let mut page = Vec::new();
+    let rendered = clap_mangen::Man::new(about).render(&mut page);
+    written(rendered.map_err(|e| e.to_string()).and_then(|()| output::print(&String::from_utf8_lossy(&page))))
 }

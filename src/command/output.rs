@@ -42,3 +42,17 @@ fn beside(path: &Path) -> PathBuf {
     let name = path.file_name().map(|name| name.to_string_lossy().into_owned()).unwrap_or_default();
     path.with_file_name(format!(".{name}.{}.part", std::process::id()))
 }
+
+/// Writes a new file.
+///
+/// # Errors
+/// A message, where there is a file of this name already, which is left alone, or where it cannot be written.
+pub fn create(path: &Path, text: &str) -> Result<(), String> {
+    let written = std::fs::File::create_new(path).and_then(|mut file| file.write_all(text.as_bytes()));
+    written.map_err(|error| match error.kind() {
+        std::io::ErrorKind::AlreadyExists => {
+            format!("{}: there is a file of this name, and it is left as it is; choose another name", path.display())
+        }
+        _ => format!("{}: cannot be written: {error}", path.display()),
+    })
+}

@@ -7,6 +7,7 @@ use std::time::{Duration, Instant};
 use mainspring::algebra::number::Rational;
 use mainspring::conditions::{Condition, Verdict};
 use mainspring::language::Source;
+use mainspring::model::Model;
 use mainspring::render::document::Document;
 use mainspring::render::{html, json, json_restrictions, latex, report, text};
 use mainspring::restrictions::{Request, Restrictions};
@@ -14,9 +15,10 @@ use mainspring::vetting::appendix::Appendix;
 use mainspring::vetting::{Allowance, Part, Vetting};
 use mainspring::{Unread, read, restrict, vet};
 
-use super::arguments::{self, Accepted, Command, Form, Options};
+use super::arguments::{self, Accepted, Colour, Form, Options};
 use super::input::Input;
 use super::status::Status;
+use super::task::{Kind, Task};
 
 /// A report, ready to be written.
 pub enum Report {
@@ -24,6 +26,23 @@ pub enum Report {
     Text(String),
     /// A JSON value.
     Json(serde_json::Value),
+}
+
+/// What became of one model.
+pub struct Outcome {
+    /// The report, where there is one.
+    pub report: Option<Report>,
+    /// What is said on standard error, line by line.
+    pub messages: Vec<String>,
+    /// What it means for the exit status.
+    pub status: Status,
+}
+
+impl Outcome {
+    /// A message in place of a report.
+    pub fn without_report(message: &str, status: Status) -> Outcome {
+        Outcome { report: None, messages: vec![message.to_string()], status }
+    }
 }
 
 impl Report {
@@ -46,53 +65,62 @@ pub fn extension(form: Form) -> &'static str {
     }
 }
 
-/// Reads a model, works it, and makes its report; messages go to standard error.
-pub fn report(command: &Command, input: &Input, values: &[(String, Rational)]) -> (Option<Report>, Status) {
-    let options = super::options(command);
+/// Reads a model, works it, and makes its report.
+pub fn report(task: &Task, input: &Input, values: &[(String, Rational)]) -> Outcome {
+    let options = &task.options;
     let mut clock = Clock::new(options.timings, input.name());
     let source = match input.source() {
         Ok(source) => source,
-        Err(fault) => {
-            eprintln!("{fault}");
-            return (None, Status::Unreadable);
-        }
+        Err(fault) => return Outcome::without_report(&fault, Status::Unreadable),
     };
-    let allowance = allowance(options);
-    let model = match read(&source, values, allowance) {
+    let model = match read(&source, values, allowance(options)) {
         Ok(model) => Rc::new(model),
-        Err(unread) => return (None, refused(&source, unread)),
+        Err(unread) => return refused(&source, unread),
     };
     clock.lap("read");
-    model.warnings.iter().for_each(|warning| eprintln!("{}", warning.render(&source)));
-    if let Command::Restrict(options) = command {
-        let found = restrict(model, &request(command), allowance);
-        clock.lap("restrictions");
-        let report = match options.form {
-            Form::Json => Report::Json(json_restrictions::restrictions(&found)),
-            _ => in_form(command, options, input, &source, &report::restrictions(&found)),
-        };
-        return (Some(report), restricted(&found, &options.accept));
-    }
-    let vetting = vet(model, &asked(command), allowance);
+    let mut messages: Vec<String> = model.warnings.iter().map(|warning| warning.render(&source)).collect();
+    let (report, status) = match task.kind {
+        Kind::Restrict => branches(task, input, &source, model, &mut clock),
+        Kind::Vet | Kind::Derive => verdicts(task, input, &source, model, &mut clock),
+    };
+    messages.append(&mut clock.told);
+    Outcome { report: Some(report), messages, status }
+}
+
+/// The report of `restrict`.
+fn branches(task: &Task, input: &Input, source: &Source, model: Rc<Model>, clock: &mut Clock) -> (Report, Status) {
+    let options = &task.options;
+    let found = restrict(model, &request(options), allowance(options));
+    clock.lap("restrictions");
+    let report = match options.form {
+        Form::Json => Report::Json(json_restrictions::restrictions(&found)),
+        _ => in_form(task, input, source, &report::restrictions(&found)),
+    };
+    (report, restricted(&found, &options.accept))
+}
+
+/// The reports of `vet` and `derive`.
+fn verdicts(task: &Task, input: &Input, source: &Source, model: Rc<Model>, clock: &mut Clock) -> (Report, Status) {
+    let options = &task.options;
+    let vetting = vet(model, &asked(options), allowance(options));
     for (part, time) in &vetting.timings {
         clock.tell(part.word(), *time);
     }
     clock.start = Instant::now();
-    let status = judged(&vetting, &options.accept);
-    let report = written(command, options, input, &source, &vetting);
+    let report = written(task, input, source, &vetting);
     clock.lap("output");
-    (Some(report), status)
+    (report, judged(&vetting, &options.accept))
 }
 
-fn refused(source: &Source, unread: Unread) -> Status {
+fn refused(source: &Source, unread: Unread) -> Outcome {
     match unread {
         Unread::Mistakes(mistakes) => {
-            mistakes.iter().for_each(|mistake| eprintln!("{}", mistake.render(source)));
-            Status::Unreadable
+            let messages = mistakes.iter().map(|mistake| mistake.render(source)).collect();
+            Outcome { report: None, messages, status: Status::Unreadable }
         }
         Unread::Stopped(stopped) => {
-            eprintln!("{}: {} while the model was read", source.name, stopped.describe());
-            Status::Undecided
+            let message = format!("{}: {} while the model was read", source.name, stopped.describe());
+            Outcome::without_report(&message, Status::Undecided)
         }
     }
 }
@@ -101,8 +129,7 @@ fn allowance(options: &Options) -> Allowance {
     Allowance { time: Duration::from_secs(options.time), memory_mib: options.memory, ..Allowance::default() }
 }
 
-fn asked(command: &Command) -> Vec<Part> {
-    let options = super::options(command);
+fn asked(options: &Options) -> Vec<Part> {
     if options.only.is_empty() {
         return Part::ALL.to_vec();
     }
@@ -110,12 +137,12 @@ fn asked(command: &Command) -> Vec<Part> {
 }
 
 /// The conditions that are to hold together.
-fn request(command: &Command) -> Request {
+fn request(options: &Options) -> Request {
     let condition = |part: &Part| match part {
         Part::Condition(condition) => Some(*condition),
         Part::Recovery | Part::Claims => None,
     };
-    Request { only: asked(command).iter().filter_map(condition).collect(), kept: Vec::new() }
+    Request { only: asked(options).iter().filter_map(condition).collect(), kept: Vec::new() }
 }
 
 /// The status that a list of branches calls for.
@@ -153,35 +180,31 @@ fn judged(vetting: &Vetting, accept: &[Accepted]) -> Status {
     vetting.verdicts().map(of).fold(Status::Passed, Status::and)
 }
 
-fn written(command: &Command, options: &Options, input: &Input, source: &Source, vetting: &Vetting) -> Report {
-    if options.form == Form::Json {
-        return Report::Json(json::vetting(vetting, matches!(command, Command::Derive(_))));
+fn written(task: &Task, input: &Input, source: &Source, vetting: &Vetting) -> Report {
+    if task.options.form == Form::Json {
+        return Report::Json(json::vetting(vetting, task.kind == Kind::Derive));
     }
-    let document = match command {
-        Command::Derive(_) => report::derivation(vetting, &Appendix::of(vetting, allowance(options))),
-        Command::Vet(_) | Command::Restrict(_) => report::answer(vetting),
+    let document = match task.kind {
+        Kind::Derive => report::derivation(vetting, &Appendix::of(vetting, allowance(&task.options))),
+        Kind::Vet | Kind::Restrict => report::answer(vetting),
     };
-    in_form(command, options, input, source, &document)
+    in_form(task, input, source, &document)
 }
 
 /// A document in the form that is asked for.
-fn in_form(command: &Command, options: &Options, input: &Input, source: &Source, document: &Document) -> Report {
+fn in_form(task: &Task, input: &Input, source: &Source, document: &Document) -> Report {
+    let options = &task.options;
     Report::Text(match (options.form, options.document) {
-        (Form::Latex, true) => latex::whole(document, &header(command, input, source)),
-        (Form::Latex, false) => latex::fragment(document, &header(command, input, source)),
+        (Form::Latex, true) => latex::whole(document, &header(task.kind, input, source)),
+        (Form::Latex, false) => latex::fragment(document, &header(task.kind, input, source)),
         (Form::Html, _) => html::page(document),
-        _ => text::text(document, text::Layout { colour: options.out.is_none() && colour(), ..Default::default() }),
+        _ => text::text(document, text::Layout { colour: colour(options), ..Default::default() }),
     })
 }
 
 /// Where the file comes from: program, command, input; no date and no path.
-fn header(command: &Command, input: &Input, source: &Source) -> Vec<String> {
-    let word = match command {
-        Command::Vet(_) => "vet",
-        Command::Derive(_) => "derive",
-        Command::Restrict(_) => "restrict",
-    };
-    let version = env!("CARGO_PKG_VERSION");
+fn header(kind: Kind, input: &Input, source: &Source) -> Vec<String> {
+    let (version, word) = (env!("CARGO_PKG_VERSION"), kind.word());
     let made = format!("mainspring {version}: mainspring {word} {}.demand --as latex", input.stem());
     vec![made, format!("input: {} bytes, FNV-1a {:016x}", source.text.len(), fnv(source.text.as_bytes()))]
 }
@@ -191,22 +214,30 @@ fn fnv(bytes: &[u8]) -> u64 {
     bytes.iter().fold(0xcbf2_9ce4_8422_2325, |hash, byte| (hash ^ u64::from(*byte)).wrapping_mul(0x0100_0000_01b3))
 }
 
-fn colour() -> bool {
-    let refused = std::env::var_os("NO_COLOR").is_some_and(|value| !value.is_empty());
-    let dumb = std::env::var_os("TERM").is_some_and(|value| value == "dumb");
-    !refused && !dumb && std::io::stdout().is_terminal()
+/// Whether text is written in colour.
+pub fn colour(options: &Options) -> bool {
+    let refused = || std::env::var_os("NO_COLOR").is_some_and(|value| !value.is_empty());
+    let dumb = || std::env::var_os("TERM").is_some_and(|value| value == "dumb");
+    match options.colour {
+        Colour::Always => true,
+        Colour::Never => false,
+        Colour::Auto => {
+            options.out.is_none() && options.check.is_none() && std::io::stdout().is_terminal() && !refused() && !dumb()
+        }
+    }
 }
 
-/// Tells how long the parts took, where that is asked for.
+/// Notes how long the parts took, where that is asked for.
 struct Clock {
     wanted: bool,
     name: String,
     start: Instant,
+    told: Vec<String>,
 }
 
 impl Clock {
     fn new(wanted: bool, name: String) -> Clock {
-        Clock { wanted, name, start: Instant::now() }
+        Clock { wanted, name, start: Instant::now(), told: Vec::new() }
     }
 
     fn lap(&mut self, part: &str) {
@@ -214,9 +245,9 @@ impl Clock {
         self.start = Instant::now();
     }
 
-    fn tell(&self, part: &str, time: Duration) {
+    fn tell(&mut self, part: &str, time: Duration) {
         if self.wanted {
-            eprintln!("{}: {part}: {:.3} ms", self.name, time.as_secs_f64() * 1e3);
+            self.told.push(format!("{}: {part}: {:.3} ms", self.name, time.as_secs_f64() * 1e3));
         }
     }
 }

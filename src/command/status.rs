@@ -36,8 +36,34 @@ impl Status {
         }
     }
 
+    /// In a count of models.
+    pub fn of_a_model(self) -> &'static str {
+        match self {
+            Status::Passed => "proven",
+            Status::Refuted => "not proven (refuted, regional or conditional)",
+            Status::Undecided => "undecided",
+            Status::Usage | Status::Unreadable => "unreadable",
+            Status::Unwritable => "not written",
+            Status::Differs => "different",
+            Status::Internal => "with an internal error",
+        }
+    }
+
     /// The graver of the two.
     pub fn and(self, other: Status) -> Status {
         self.min(other)
+    }
+}
+
+/// The status of something written; what went wrong goes to standard error.
+pub fn written(result: Result<(), String>) -> Status {
+    match result {
+        Ok(()) => Status::Passed,
+        Err(fault) => {
+            if !fault.is_empty() {
+                eprintln!("{fault}");
+            }
+            Status::Unwritable
+        }
     }
 }

@@ -1,0 +1,79 @@
+//! What is done with each model.
+
+use std::sync::Arc;
+use std::thread::available_parallelism;
+use std::time::Duration;
+
+use super::arguments::Options;
+use super::delivery::Delivery;
+use super::reports;
+use super::schedule::Schedule;
+use super::status::Status;
+use super::{input, values};
+
+/// The kinds of work.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Kind {
+    /// Verdicts and preferences.
+    Vet,
+    /// The derivation.
+    Derive,
+    /// Branches of parameter restrictions.
+    Restrict,
+}
+
+impl Kind {
+    /// The command's word.
+    pub fn word(self) -> &'static str {
+        match self {
+            Kind::Vet => "vet",
+            Kind::Derive => "derive",
+            Kind::Restrict => "restrict",
+        }
+    }
+}
+
+/// A kind of work, with its options.
+#[derive(Clone, Debug)]
+pub struct Task {
+    /// The kind.
+    pub kind: Kind,
+    /// The options.
+    pub options: Options,
+}
+
+impl Task {
+    /// Works all models: reports go where they are wanted, messages to standard error.
+    pub fn run(self) -> Status {
+        let values = match values::read(&self.options.values) {
+            Ok(values) => values,
+            Err(fault) => return failed(&[fault], Status::Usage),
+        };
+        let inputs = match input::expand(&self.options.models) {
+            Ok(inputs) => inputs,
+            Err(faults) => return failed(&faults, Status::Unreadable),
+        };
+        let options = self.options.clone();
+        let mut delivery = match Delivery::new(&options, &inputs) {
+            Ok(delivery) => delivery,
+            Err(fault) => return failed(&[fault], Status::Unwritable),
+        };
+        let work = Arc::new(move |model: &input::Input| reports::report(&self, model, &values));
+        Schedule::new(inputs.models, patience(&options), work)
+            .run(threads(&options), |model, outcome| delivery.deliver(model, outcome));
+        delivery.finish()
+    }
+}
+
+fn patience(options: &Options) -> Duration {
+    Duration::from_secs(options.time.saturating_mul(3).saturating_add(30))
+}
+
+fn threads(options: &Options) -> usize {
+    options.jobs.map_or_else(|| available_parallelism().map_or(1, usize::from), usize::from)
+}
+
+fn failed(faults: &[String], status: Status) -> Status {
+    faults.iter().for_each(|fault| eprintln!("{fault}"));
+    status
+}
