@@ -142,6 +142,31 @@ fn incomplete_systems() {
     );
 }
 
+/// e from the principal branch of Lambert's function: Shephard's lemma and Roy's identity are proven, and so is that e
+/// is the income at which v is reached.
+fn recovers_with_lambert(demands: &str, known: &str) {
+    let model = read(&format!("goods x, y\nprices p, q\nincome m\n{demands}\nclaim {known} > 0\n"));
+    let found = found(&model);
+    assert!(found.checked.roy && found.checked.shephard, "{demands}: {:?}", found.checked);
+    let (known, _) = model.claims[0].sides().expect("the claim has sides");
+    assert!(same_preferences(&model, found.indirect_utility.as_ref().expect("v"), known), "{demands}");
+}
+
+#[test]
+fn income_inside_and_outside_a_logarithm() {
+    recovers_with_lambert("demand x = m^2/(p*(m+p))\ndemand y = m*p/(q*(m+p))", "m/p + ln(m/q)");
+    recovers_with_lambert(
+        "parameters k\nassume k > 0\ndemand x = k*m^(k+1)/(p*(k*m^k + p^k))\ndemand y = m*p^k/(q*(k*m^k + p^k))",
+        "(m/p)^k + ln(m/q)",
+    );
+    // a product of income and its exponential, and a sum of both
+    recovers_with_lambert("demand x = m^2/(p*(m+p))\ndemand y = m*p/(q*(m+p))", "m/q*exp(m/p)");
+    recovers_with_lambert(
+        "demand x = m*q*exp(m/p)/(p*(p + q*exp(m/p)))\ndemand y = m*p/(q*(p + q*exp(m/p)))",
+        "m/q + exp(m/p)",
+    );
+}
+
 #[test]
 fn what_has_no_potential_is_not_claimed() {
     // x = a/p + c·m leads to the exponential integral

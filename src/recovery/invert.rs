@@ -12,6 +12,7 @@ use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
 
 use super::fractions::{Cleared, Moving};
+use super::lambert;
 
 /// A solution y = φ⁻¹(Z) together with what must be positive for it.
 #[derive(Clone, Debug)]
@@ -24,8 +25,8 @@ pub struct Inverse {
     summands: Vec<Element>,
 }
 
-/// Solves φ(y) = Z for y where φ is built by one generator at a time, or linear over linear in one of them. Z is given
-/// in summands, whose exponentials are kept apart.
+/// Solves φ(y) = Z for y where φ is built by one generator at a time, each layer linear over linear or quadratic over
+/// quadratic in it, or of Lambert's form. Z is given in summands, whose exponentials are kept apart.
 pub fn solve(field: &Field, phi: &Element, y: Var, target: &[Element]) -> Option<Inverse> {
     let income = Moving::new(field, &[y]);
     let total = Poly::sum(target.iter().map(|e| field.current(e)).collect());
@@ -37,7 +38,8 @@ pub fn solve(field: &Field, phi: &Element, y: Var, target: &[Element]) -> Option
         }
         phi = step(&income, &phi, &mut inverse)
             .or_else(|| quadratic(&income, &phi, &mut inverse))
-            .or_else(|| product_of_logs(&income, &phi, &mut inverse))?;
+            .or_else(|| product_of_logs(&income, &phi, &mut inverse))
+            .or_else(|| lambert::step(&income, &phi, &mut inverse))?;
         inverse.summands = vec![inverse.value.clone()];
     }
     None
@@ -72,43 +74,52 @@ fn step(income: &Moving, phi: &Element, inverse: &mut Inverse) -> Option<Element
     }
 }
 
-/// One layer a·M² + b·M + c = Z: M = (−b ± √(b² − 4a(c − Z)))/(2a), with the sign of 2aM + b before the root.
+/// One layer (a₂M² + a₁M + a₀)/(b₂M² + b₁M + b₀) = Z: with aₖ − Z bₖ = qₖ, M = (−q₁ ± √(q₁² − 4q₂q₀))/(2q₂), with the
+/// sign of 2q₂M + q₁ before the root.
 fn quadratic(income: &Moving, phi: &Element, inverse: &mut Inverse) -> Option<Element> {
     let field = income.field;
     let cleared = income.clear(phi);
-    if !cleared.denominator.is_empty() {
-        return None;
-    }
-    let mut terms = income.collect(&cleared.numerator);
-    let rest = terms.remove(&Monomial::one()).unwrap_or_default();
-    let [(first, at_first), (second, at_second)] = &terms.into_iter().collect::<Vec<_>>()[..] else { return None };
-    let (own, b, a) = if first.pow(2) == *second {
-        (first, at_first, at_second)
-    } else if second.pow(2) == *first {
-        (second, at_second, at_first)
-    } else {
-        return None;
+    let unit = Cleared { numerator: Poly::one(), denominator: BTreeMap::new() };
+    let below = income.collect(&income.raise(&unit, &cleared.denominator));
+    let above = income.collect(&cleared.numerator);
+    let (own, powers) = progression(above.keys().chain(below.keys()))?;
+    let coefficient = |z: &Element, k: usize| {
+        let of = |terms: &BTreeMap<Monomial, Element>| terms.get(&powers[k]).cloned().unwrap_or_default();
+        field.reduce(&(&of(&above) - &field.product(z, &of(&below))))
     };
     let target = field.current(&inverse.value);
-    let doubled = field.product(a, &Poly::monomial(own.clone())).scale(&rational(2, 1));
-    let sign = field.sign(&(&field.current(&doubled) + b));
-    let outer = match sign {
+    let doubled = field.product(&coefficient(phi, 2), &Poly::monomial(own.clone())).scale(&rational(2, 1));
+    let outer = match field.sign(&field.reduce(&(&field.current(&doubled) + &coefficient(phi, 1)))) {
         Sign::Positive => rational(1, 1),
         Sign::Negative => rational(-1, 1),
         _ => return None,
     };
-    let squares = &field.product(b, b) - &field.product(a, &(&rest - &target)).scale(&rational(4, 1));
+    let [c, b, a] = [0, 1, 2].map(|k| coefficient(&target, k));
+    let squares = &field.product(&b, &b) - &field.product(&a, &c).scale(&rational(4, 1));
     let squares = field.reduce(&squares);
     require_positive(field, inverse, &squares);
     let facts: Vec<(Element, Relation)> = inverse.positive.iter().map(|e| (e.clone(), Relation::Positive)).collect();
     let root = field.suppose(&facts, || field.sqrt(&squares)).ok()?.scale(&outer);
-    let above = &root - &field.current(b);
-    inverse.value = field.quotient(&above, &field.current(a).scale(&rational(2, 1))).ok()?;
+    let above = &root - &field.current(&b);
+    inverse.value = field.quotient(&above, &field.current(&a).scale(&rational(2, 1))).ok()?;
     let mut factors = own.iter();
     match (factors.next(), factors.next()) {
         (Some((var, 1)), None) => inside(income, var, inverse),
-        _ => inside_product(income, own, inverse),
+        _ => inside_product(income, &own, inverse),
     }
+}
+
+/// M and L, LM, LM² where these are all the monomials, M to a positive power where it is a single one.
+fn progression<'x>(monomials: impl Iterator<Item = &'x Monomial>) -> Option<(Monomial, [Monomial; 3])> {
+    let mut all: Vec<&Monomial> = monomials.collect();
+    all.sort_unstable();
+    all.dedup();
+    let [x, y, z] = all[..] else { return None };
+    let (first, middle, last) = [(x, y, z), (y, x, z), (x, z, y)].into_iter().find(|(a, b, c)| b.pow(2) == a.mul(c))?;
+    let ratio = middle.div(first);
+    let falls = ratio.iter().all(|(_, k)| k < 0);
+    let (first, last, own) = if falls { (last, first, ratio.inverse()) } else { (first, last, ratio) };
+    Some((own, [first.clone(), middle.clone(), last.clone()]))
 }
 
 /// From M = target to what is inside M, for M a power of one positive thing.

@@ -16,6 +16,7 @@ pub mod given;
 pub mod integrating_factor;
 pub mod inverse_factor;
 pub mod invert;
+pub mod lambert;
 pub mod linear;
 pub mod linear_solve;
 pub mod potential;
