@@ -6,6 +6,7 @@
 use std::collections::BTreeSet;
 
 use crate::algebra::factor::factor;
+use crate::algebra::field::Field;
 use crate::algebra::gcd::gcd;
 use crate::algebra::generator::{Base, Built, Element, Kind};
 use crate::algebra::monomial::Var;
@@ -93,12 +94,13 @@ pub fn propose(system: &System, utility: Var) -> Vec<Proposal> {
     found
 }
 
-/// Tries growing sets of factors: symbols, everything in sight, exponentials of ratios.
+/// Tries growing sets of factors: symbols, everything in sight, exponentials of ratios, factors of coefficients.
 fn from_sight(form: &Form) -> Option<(Element, Element)> {
     let mut factors: Vec<Cofactored> = Vec::new();
     let symbols = form.moving.symbols.iter().map(|x| Factor::Power(Poly::var(*x))).collect();
     let ratios = ratios(form.moving).into_iter().map(Factor::Exponential).collect();
-    let sets: [&dyn Fn() -> Vec<Factor>; 3] = [&|| Vec::clone(&symbols), &|| candidates(form), &|| Vec::clone(&ratios)];
+    let sets: [&dyn Fn() -> Vec<Factor>; 4] =
+        [&|| Vec::clone(&symbols), &|| candidates(form), &|| Vec::clone(&ratios), &|| of_coefficients(form)];
     for set in sets {
         for factor in set() {
             if factors.iter().all(|known| known.factor != factor) {
@@ -132,19 +134,24 @@ pub fn integral(form: &Form, multiplier: &Element) -> Option<Element> {
     value_or_exponential(moving, &potential(moving, &slopes?)?)
 }
 
-/// F, or e^(F/κ) where F is a sum of logarithms with commensurable coefficients.
+/// F, or e^(F/κ) where F is a sum of logarithms: with the coefficient of a base of unknown sign for κ, or another that
+/// makes the exponents of such bases whole.
 fn value_or_exponential(moving: &Moving, found: &Potential) -> Option<Element> {
     let field = moving.field;
-    let polynomial = |found: &Potential| {
-        let (scale, _) = found.logs.first()?;
+    let only_logs = found.regular.vars().into_iter().all(|v| !moving.moves(v));
+    if !only_logs || found.logs.is_empty() {
+        return found.value(field).ok().or_else(|| exponential(field, found));
+    }
+    exponential(field, found)
+}
+
+fn exponential(field: &Field, found: &Potential) -> Option<Element> {
+    let (settled, unknown): (Vec<_>, Vec<_>) =
+        found.logs.iter().partition(|(_, base)| matches!(field.sign(base), Sign::Positive | Sign::Negative));
+    unknown.into_iter().chain(settled).find_map(|(scale, _)| {
         let inverse = field.inverse(scale).ok()?;
         found.scaled(field, &inverse).exponential(field).ok()
-    };
-    let only_logs = found.regular.vars().into_iter().all(|v| !moving.moves(v));
-    if only_logs && !found.logs.is_empty() {
-        return polynomial(found);
-    }
-    found.value(field).ok().or_else(|| polynomial(found))
+    })
 }
 
 fn candidates(form: &Form) -> Vec<Factor> {
@@ -202,6 +209,21 @@ fn candidates(form: &Form) -> Vec<Factor> {
     found
 }
 
+/// Factors of the coefficients of logarithms and roots in the components: for v = A·ln B, of B.
+fn of_coefficients(form: &Form) -> Vec<Factor> {
+    let moving = form.moving;
+    let apart = |v: Var| moving.moves(v) && !matches!(*moving.field.kind(v), Kind::Symbol(_) | Kind::Exp(_));
+    let mut found = Vec::new();
+    for component in form.components.iter().filter(|c| c.vars().into_iter().any(apart)) {
+        for (_, coefficient) in component.collect(apart).into_iter().filter(|(_, c)| c.len() > 1) {
+            let parts = factor(&coefficient).factors.into_iter();
+            let parts = parts.filter(|(part, _)| part.vars().into_iter().any(|v| moving.moves(v)));
+            found.extend(parts.map(|(part, _)| Factor::Power(moving.field.named(&part, None))));
+        }
+    }
+    found
+}
+
 /// Quotients of two symbols: exponentials of them are the factors of equations that are linear in a price.
 fn ratios(moving: &Moving) -> Vec<Element> {
     let field = moving.field;
@@ -231,12 +253,35 @@ fn cofactored(form: &Form, factor: Factor) -> Option<Cofactored> {
         let forth = field.product(&rates[n], &form.components[index]);
         let back = field.product(&rates[index], form.last());
         let cofactor = field.reduce(&(&field.current(&forth) - &field.current(&back)));
-        if pole.is_some_and(|f| cofactor.low_degree(f) < 0 && !matches!(*field.kind(f), Kind::Symbol(_))) {
+        if pole.is_some_and(|f| has_pole(moving, &cofactor, f)) {
             return None;
         }
         cofactors.push(cofactor);
     }
     Some(Cofactored { factor, cofactors })
+}
+
+/// Whether the cofactor of f is not polynomial at f. The form may hold a root to a fraction of its order, and the
+/// derivative of that is a pole of less than the order.
+fn has_pole(moving: &Moving, cofactor: &Element, f: Var) -> bool {
+    let field = moving.field;
+    let Kind::Sum { root, .. } = &*field.kind(f) else {
+        return cofactor.low_degree(f) < 0 && !matches!(*field.kind(f), Kind::Symbol(_));
+    };
+    if cofactor.low_degree(f) >= 0 {
+        return false;
+    }
+    let (numerator, denominator) = field.fraction(cofactor);
+    let power = denominator.iter().find(|(sum, _)| *sum == f).map_or(0, |(_, power)| *power);
+    match (power, root) {
+        (0, _) => false,
+        (1, 2..) => {
+            let terms = numerator.coefficients(f);
+            let lowest = terms.iter().find(|(k, _)| *k == 0);
+            lowest.is_some_and(|(_, lowest)| lowest.div_exact(&moving.value(f)).is_none())
+        }
+        _ => true,
+    }
 }
 
 /// The constants nₖ and cⱼ with d ln μ ∧ Ω + dΩ = 0.

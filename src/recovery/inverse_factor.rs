@@ -7,7 +7,7 @@ use std::collections::{BTreeMap, BTreeSet};
 
 use crate::algebra::budget;
 use crate::algebra::generator::Element;
-use crate::algebra::monomial::Monomial;
+use crate::algebra::monomial::{Monomial, Var};
 use crate::algebra::number::rational;
 use crate::algebra::polynomial::Poly;
 
@@ -43,21 +43,80 @@ pub fn integrals(form: &Form) -> Vec<(Element, Option<Element>)> {
     Vec::new()
 }
 
-/// The monomials of M, in growing sets: those of the form; then also those of sums in sight and geometric means.
+/// The monomials of M, in growing sets: those of the form; then also those of sums in sight and geometric means; then
+/// those in which prices stand for income, as under a logarithm ln(m + X) that the form shows by its slopes alone; then
+/// what is like them between the least and the greatest powers.
 fn supports(form: &Form) -> Vec<Vec<Monomial>> {
     let moving = form.moving;
     let own: BTreeSet<Monomial> = form.components.iter().flat_map(|c| support(moving, c)).collect();
-    let mut more = own.clone();
+    let mut means = own.clone();
     for first in &own {
         for second in &own {
-            more.extend(mean(first, second));
+            means.extend(mean(first, second));
         }
     }
-    let mut all = vec![own.into_iter().collect::<Vec<_>>()];
-    if more.len() > all[0].len() {
-        all.push(more.into_iter().collect());
+    let traded = traded(moving, &means);
+    let between = between(&own);
+    let exchanged = exchanged(moving, &exchanged(moving, &own));
+    let mut all: Vec<Vec<Monomial>> = Vec::new();
+    for set in [own, means, traded, between, exchanged] {
+        let set: Vec<Monomial> = set.into_iter().collect();
+        if set.len() <= MOST_UNKNOWNS && all.iter().all(|known| *known != set) {
+            all.push(set);
+        }
     }
-    all.retain(|s| s.len() <= MOST_UNKNOWNS);
+    all
+}
+
+/// The monomials, and those with a price in place of income.
+fn traded(moving: &Moving, own: &BTreeSet<Monomial>) -> BTreeSet<Monomial> {
+    let symbols = symbols(moving);
+    let Some((income, prices)) = symbols.split_last() else { return own.clone() };
+    own.iter().flat_map(|m| prices.iter().chain([income]).map(|price| m.mul(&price.div(income)))).collect()
+}
+
+/// The monomials, and those with one price or income in place of another.
+fn exchanged(moving: &Moving, own: &BTreeSet<Monomial>) -> BTreeSet<Monomial> {
+    let symbols = symbols(moving);
+    let mut all = own.clone();
+    for (k, above) in symbols.iter().enumerate() {
+        for below in symbols.iter().enumerate().filter(|(j, _)| *j != k).map(|(_, below)| below) {
+            if all.len() > MOST_UNKNOWNS {
+                return all;
+            }
+            all.extend(own.iter().map(|m| m.mul(&above.div(below))));
+        }
+    }
+    all
+}
+
+/// Prices and income, in variables that are still in use.
+fn symbols(moving: &Moving) -> Vec<Monomial> {
+    let powers = |symbol: &Var| {
+        let e = moving.field.current(&Poly::var(*symbol));
+        e.as_monomial().map(|(_, m)| m.clone())
+    };
+    moving.symbols.iter().filter_map(powers).collect()
+}
+
+/// Products of two monomials over a third within the least and the greatest powers of all.
+fn between(own: &BTreeSet<Monomial>) -> BTreeSet<Monomial> {
+    let Some(first) = own.first() else { return BTreeSet::new() };
+    let (low, high) = own.iter().fold((first.clone(), first.clone()), |(low, high), m| (low.meet(m), high.join(m)));
+    let mut all = own.clone();
+    let ratios: BTreeSet<Monomial> = own.iter().flat_map(|a| own.iter().map(|b| a.div(b))).collect();
+    for monomial in own {
+        for ratio in &ratios {
+            if all.len() > MOST_UNKNOWNS {
+                return all;
+            }
+            let candidate = monomial.mul(ratio);
+            if candidate.meet(&low) == low && candidate.join(&high) == high {
+                all.insert(candidate);
+            }
+        }
+        budget::spend(ratios.len() as u64);
+    }
     all
 }
 
