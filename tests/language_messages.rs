@@ -186,7 +186,6 @@ fn forms_of_later_versions() {
     let files = [
         "goods 1..n",
         "scenario \"Dear bread\": p_b from 1 to 5/4",
-        "demand bread = $\\frac{\\alpha m}{p}$",
         "claim symmetry iff g12 = g21",
         "claim symmetry if g12 = g21",
         "claim curvature only if a > 0",

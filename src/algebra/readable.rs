@@ -273,8 +273,8 @@ impl Field {
     /// The value of a named sum: by the author's name for it, if there is one.
     fn value_formula(&self, value: &Element) -> Formula {
         let named = self.tables.borrow().sums.get(value).cloned();
-        let name = named.and_then(|n| n.as_var()).and_then(|v| self.name(v));
-        name.map_or_else(|| self.formula(value), Formula::symbol)
+        let named = named.and_then(|n| n.as_var()).filter(|var| self.name(*var).is_some());
+        named.map_or_else(|| self.formula(value), |var| self.variable_formula(var))
     }
 
     fn power_formula(&self, base: Formula, exponent: &Element) -> Formula {

@@ -16,14 +16,21 @@ pub const MAX_NESTING: usize = 200;
 pub fn check(text: &str, offset: usize) -> Result<(), Diagnostic> {
     let mut open: Vec<(char, Span)> = Vec::new();
     let mut quote: Option<(char, usize)> = None;
+    // a comment in LaTeX, up to the end of its line
+    let mut in_remark = false;
     for (at, letter) in text.char_indices() {
         let span = Span::new(offset + at, offset + at + letter.len_utf8());
         if unprintable(letter) && !letter.is_whitespace() {
             return Err(unprintable_letter(letter, span));
         }
+        if in_remark {
+            in_remark = letter != '\n';
+            continue;
+        }
         match (quote, letter) {
             (Some((mark, _)), _) if letter == mark => quote = None,
             (Some(('"', start)), '\n') => return Err(unclosed_quote('"', start, text, offset)),
+            (Some(('$', _)), '%') => in_remark = true,
             (Some(_), _) => {}
             (None, '"' | '$') => quote = Some((letter, at)),
             (None, '(' | '[' | '{') => {

@@ -5,6 +5,7 @@ use pest::iterators::Pair;
 use super::diagnostic::Diagnostic;
 use super::expression::Builder;
 use super::grammar::Rule;
+use super::latex;
 use super::latex_form::latex_form;
 use super::letters::leading_word;
 use super::syntax::*;
@@ -14,11 +15,11 @@ pub fn statement(pair: Pair<Rule>, builder: &mut Builder) -> Option<Statement> {
     Reader { builder }.statement(pair)
 }
 
-struct Reader<'a> {
-    builder: &'a mut Builder,
+struct Reader<'a, 'b> {
+    builder: &'a mut Builder<'b>,
 }
 
-impl Reader<'_> {
+impl Reader<'_, '_> {
     fn statement(&mut self, pair: Pair<Rule>) -> Option<Statement> {
         let rule = pair.as_rule();
         let whole = self.builder.span(&pair);
@@ -37,7 +38,7 @@ impl Reader<'_> {
             Rule::income => Statement::Income(self.single(parts.next()?)?),
             Rule::utility => Statement::Utility(self.single(parts.next()?)?),
             Rule::others => Statement::Others(self.others(parts)),
-            Rule::assume => Statement::Assume(parts.filter_map(|part| self.relation(part)).collect()),
+            Rule::assume => Statement::Assume(parts.flat_map(|part| self.assumed(part)).collect()),
             Rule::claim => Statement::Claim(self.claim(parts)?),
             Rule::given => {
                 let kind = preferences(parts.next()?.as_str());
@@ -166,6 +167,17 @@ impl Reader<'_> {
                 )
             }
         }
+    }
+
+    /// A relation, or those in LaTeX.
+    fn assumed(&mut self, pair: Pair<Rule>) -> Vec<Relation> {
+        if pair.as_rule() == Rule::relation {
+            return self.relation(pair).into_iter().collect();
+        }
+        let Some(lexicon) = self.builder.lexicon else { return Vec::new() };
+        let start = self.builder.span(&pair).start + 1;
+        let reading = latex::relations(pair.as_str().trim_matches('$'), start, lexicon);
+        self.builder.taken(reading).unwrap_or_default()
     }
 
     fn relation(&mut self, pair: Pair<Rule>) -> Option<Relation> {

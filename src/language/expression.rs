@@ -14,10 +14,10 @@ use super::brackets::MAX_NESTING;
 use super::constant::{self, Constant};
 use super::diagnostic::{Diagnostic, MAX_MISTAKES};
 use super::grammar::Rule;
+use super::latex::{self, Lexicon};
 use super::letters::normal_name;
 use super::nearest::nearest;
 use super::syntax::*;
-use super::unsupported;
 
 /// The most digits of a number.
 const MAX_DIGITS: usize = 1000;
@@ -27,14 +27,18 @@ const MAX_NAME_BYTES: usize = 200;
 
 /// Builds trees, and keeps what is wrong with them.
 #[derive(Debug, Default)]
-pub struct Builder {
+pub struct Builder<'a> {
     offset: usize,
+    /// What is declared, where that is known already; else formulas in LaTeX are left for later.
+    pub lexicon: Option<&'a Lexicon>,
     /// The mistakes so far.
     pub mistakes: Vec<Diagnostic>,
     /// The warnings so far.
     pub warnings: Vec<Diagnostic>,
     /// Where a bare `e` is raised to a power.
     pub exponentials: Vec<Span>,
+    /// How plain names are set in LaTeX.
+    pub observed: Vec<(String, String)>,
 }
 
 /// One operand of a flat list, with what stands before it.
@@ -79,10 +83,26 @@ impl Part {
     }
 }
 
-impl Builder {
+impl<'a> Builder<'a> {
     /// A builder for a statement that starts at `offset` of its file.
-    pub fn new(offset: usize) -> Builder {
-        Builder { offset, ..Builder::default() }
+    pub fn new(offset: usize, lexicon: Option<&'a Lexicon>) -> Builder<'a> {
+        Builder { offset, lexicon, ..Builder::default() }
+    }
+
+    /// What came of a text in LaTeX, its messages taken down.
+    pub fn taken<T>(&mut self, reading: latex::Reading<T>) -> Option<T> {
+        reading.mistakes.into_iter().for_each(|mistake| self.report(mistake));
+        self.warnings.extend(reading.warnings);
+        self.observed.extend(reading.observed);
+        reading.content
+    }
+
+    /// The formula between `$` signs.
+    fn latex(&mut self, part: &Pair<Rule>, span: Span) -> Expr {
+        let Some(lexicon) = self.lexicon else { return placeholder(span) };
+        let inner = part.as_str().trim_matches('$');
+        let reading = latex::formula(inner, span.start + 1, lexicon);
+        self.taken(reading).unwrap_or_else(|| placeholder(span))
     }
 
     /// Takes a mistake down, unless there are more than anyone will read.
@@ -231,10 +251,7 @@ impl Builder {
             Rule::number => Expr { kind: ExprKind::Number(self.number(&part)), span },
             Rule::reference => self.reference(part, span, depth),
             Rule::aggregate => self.aggregate(part, span, depth),
-            Rule::formula => {
-                self.report(unsupported::latex_formula(span));
-                placeholder(span)
-            }
+            Rule::formula => self.latex(&part, span),
             _ => self.inside(part, depth),
         }
     }
@@ -249,20 +266,12 @@ impl Builder {
     }
 
     fn number(&mut self, pair: &Pair<Rule>) -> Rational {
-        let written = pair.as_str();
-        let (whole, fraction) = written.split_once('.').unwrap_or((written, ""));
-        let digits = whole.len() + fraction.len();
-        if digits > MAX_DIGITS {
-            let message = format!("this number has {digits} digits; a number may have at most {MAX_DIGITS}");
-            self.report(Diagnostic::error(self.span(pair), message).remedy("write a parameter in its place"));
-            return Rational::from_integer(BigInt::ZERO);
-        }
-        let numerator = format!("{whole}{fraction}").parse().unwrap_or(BigInt::ZERO);
-        let places = u32::try_from(fraction.len()).unwrap_or(0);
-        if places == 0 {
-            Rational::from_integer(numerator)
-        } else {
-            Rational::new(numerator, BigInt::from(10).pow(places))
+        match decimal(pair.as_str()) {
+            Ok(value) => value,
+            Err(message) => {
+                self.report(Diagnostic::error(self.span(pair), message).remedy("write a parameter in its place"));
+                Rational::from_integer(BigInt::ZERO)
+            }
         }
     }
 
@@ -367,6 +376,25 @@ impl Builder {
             }
         }
     }
+}
+
+/// The exact value of an integer or a decimal: `0.1` is 1/10.
+///
+/// # Errors
+/// Says that the number is too long.
+pub fn decimal(written: &str) -> Result<Rational, String> {
+    let (whole, fraction) = written.split_once('.').unwrap_or((written, ""));
+    let digits = whole.len() + fraction.len();
+    if digits > MAX_DIGITS {
+        return Err(format!("this number has {digits} digits; a number may have at most {MAX_DIGITS}"));
+    }
+    let numerator = format!("{whole}{fraction}").parse().unwrap_or(BigInt::ZERO);
+    let places = u32::try_from(fraction.len()).unwrap_or(0);
+    Ok(if places == 0 {
+        Rational::from_integer(numerator)
+    } else {
+        Rational::new(numerator, BigInt::from(10).pow(places))
+    })
 }
 
 /// One part as it is; more than one as a node.

@@ -4,6 +4,8 @@ use std::borrow::Cow;
 
 use super::diagnostic::Diagnostic;
 use super::keywords::is_keyword;
+use super::latex::display::begins_display;
+use super::latex::macros::begins_definition;
 use super::letters::{begins_word, leading_word};
 use super::syntax::Span;
 
@@ -54,10 +56,15 @@ struct Open {
     excused: usize,
     comments: Vec<Span>,
     in_formula: bool,
+    /// Where a display ends that is open.
+    display: usize,
 }
 
 impl Splitter<'_> {
     fn line(&mut self, start: usize, line: &str) {
+        if self.open.as_ref().is_some_and(|open| open.display > start) {
+            return self.extend(Span::new(start, start + line.trim_end().len()));
+        }
         let content = line.trim_start();
         let in_formula = self.open.as_ref().is_some_and(|open| open.in_formula);
         if content.is_empty() || content.starts_with('#') && !(in_formula && content.len() < line.len()) {
@@ -66,6 +73,7 @@ impl Splitter<'_> {
         let first = Span::new(start + line.len() - content.len(), start + line.trim_end().len());
         if content.len() == line.len() {
             match self.break_of_layout(content, first) {
+                None if self.awaits_display(content) => {}
                 None => self.begin(first),
                 Some(mistake) => self.report(mistake, first),
             }
@@ -85,6 +93,13 @@ impl Splitter<'_> {
         }
     }
 
+    /// Whether the statement above is no more than the words in front of a display, and the line begins one.
+    fn awaits_display(&self, content: &str) -> bool {
+        let words = self.open.as_ref().map(|open| &self.text[open.span.start..open.span.end]);
+        let lone = |words: &str| DISPLAYED.contains(&words.split_whitespace().collect::<Vec<_>>().join(" ").as_str());
+        begins_display(content) && words.is_some_and(lone)
+    }
+
     /// What is wrong with a line in the first column that cannot begin a statement.
     fn break_of_layout(&self, content: &str, line: Span) -> Option<Diagnostic> {
         let word = leading_word(content);
@@ -99,7 +114,7 @@ impl Splitter<'_> {
                 Diagnostic::error(line, message).remedy("put white space before it, or `#` if it is a comment"),
             );
         }
-        if content.starts_with(begins_word) {
+        if content.starts_with(begins_word) || begins_display(content) || begins_definition(content) {
             return None;
         }
         let message = "a statement begins with a word, such as `goods`, `let` or `demand`";
@@ -109,7 +124,8 @@ impl Splitter<'_> {
     fn begin(&mut self, line: Span) {
         self.close();
         let empty = Span::new(line.start, line.start);
-        self.open = Some(Open { span: empty, excused: usize::MAX, comments: Vec::new(), in_formula: false });
+        self.open =
+            Some(Open { span: empty, excused: usize::MAX, comments: Vec::new(), in_formula: false, display: 0 });
     }
 
     /// Reports a line and reads it as part of the statement above, whose further mistakes in it are not reported.
@@ -123,11 +139,17 @@ impl Splitter<'_> {
     /// Takes a line into the open statement.
     fn extend(&mut self, line: Span) {
         let Some(open) = &mut self.open else { return };
-        let (content, in_formula) = without_comment(&self.text[line.start..line.end], open.in_formula);
-        open.in_formula = in_formula;
-        open.span.end = line.start + content.trim_end().len();
-        if content.len() < line.end - line.start {
-            open.comments.push(Span::new(line.start + content.len(), line.end));
+        let from = line.start.max(open.display);
+        if from >= line.end || begins_definition(&self.text[open.span.start..]) {
+            open.span.end = line.end;
+            return;
+        }
+        let scan = scan(self.text, Span::new(from, line.end), open.in_formula);
+        open.in_formula = scan.in_formula;
+        open.display = scan.display;
+        open.span.end = line.start + self.text[line.start..scan.end].trim_end().len();
+        if scan.end < line.end {
+            open.comments.push(Span::new(scan.end, line.end));
         }
     }
 
@@ -144,18 +166,85 @@ impl Splitter<'_> {
 /// What a statement cannot end with, nor begin with.
 const JOINTS: [char; 11] = ['+', '-', '*', '/', '^', '=', '<', '>', ',', '(', '['];
 
-/// A line without its comment, and whether a formula between `$` signs is still open at its end.
-fn without_comment(line: &str, mut in_formula: bool) -> (&str, bool) {
+/// The words that may stand alone in front of a display.
+const DISPLAYED: [&str; 9] = ["demand", "share", "outlay", "log demand", "let", "given", "claim", "assume", "inverse"];
+
+/// What a look over a line found.
+struct Scan {
+    /// Where its comment begins, or its end.
+    end: usize,
+    /// Whether a formula between `$` signs is still open there.
+    in_formula: bool,
+    /// Where the display ends that is still open there; 0 where none is.
+    display: usize,
+}
+
+/// Looks for the comment of a line, and for what stands open at its end.
+fn scan(text: &str, line: Span, mut in_formula: bool) -> Scan {
     let mut in_string = false;
-    for (at, byte) in line.bytes().enumerate() {
-        match byte {
-            b'"' if !in_formula => in_string = !in_string,
-            b'$' if !in_string => in_formula = !in_formula,
-            b'#' if !in_string && !in_formula => return (&line[..at], in_formula),
-            _ => {}
+    let mut at = line.start;
+    while at < line.end {
+        if !text.is_char_boundary(at) {
+            at += 1;
+            continue;
         }
+        let rest = &text[at..line.end];
+        let outside = !in_string && !in_formula;
+        let single = rest.starts_with('$') && !rest.starts_with("$$");
+        if outside && begins_display(rest) && !single {
+            match display_end(text, at) {
+                Some(end) if end > line.end => return Scan { end: line.end, in_formula, display: end },
+                Some(end) => {
+                    at = end;
+                    continue;
+                }
+                None => at += 1,
+            }
+        } else {
+            match rest.as_bytes()[0] {
+                b'"' if !in_formula => in_string = !in_string,
+                b'$' if !in_string => in_formula = !in_formula,
+                b'#' if outside => return Scan { end: at, in_formula, display: 0 },
+                b'%' if in_formula && !text[..at].ends_with('\\') => break,
+                _ => {}
+            }
+        }
+        at += 1;
     }
-    (line, in_formula)
+    Scan { end: line.end, in_formula, display: 0 }
+}
+
+/// Behind where the display closes that opens at `at`; none where it does not, or where an empty line stands in it.
+fn display_end(text: &str, at: usize) -> Option<usize> {
+    let rest = &text[at..];
+    let length = if let Some(inside) = rest.strip_prefix("$$") {
+        2 + inside.find("$$")? + 2
+    } else if rest.starts_with("\\[") {
+        rest.find("\\]")? + 2
+    } else {
+        environment_length(rest)?
+    };
+    let mut lines = rest[..length].lines().skip(1);
+    (!lines.any(|line| line.trim().is_empty())).then_some(at + length)
+}
+
+/// The length of the environment that a text begins with, those inside it counted.
+fn environment_length(text: &str) -> Option<usize> {
+    let mut depth = 0usize;
+    let mut at = 0;
+    loop {
+        let next = at + text[at..].find('\\')?;
+        let rest = &text[next..];
+        if rest.starts_with("\\begin") {
+            depth += 1;
+        } else if rest.starts_with("\\end") {
+            depth = depth.checked_sub(1)?;
+            if depth == 0 {
+                return Some(next + rest.find('}')? + 1);
+            }
+        }
+        at = next + 1;
+    }
 }
 
 /// The text of a span with spaces in place of its comments, byte for byte.

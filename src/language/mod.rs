@@ -9,8 +9,10 @@ mod build;
 mod constant;
 pub mod diagnostic;
 mod expression;
+mod first_look;
 mod grammar;
 mod keywords;
+pub mod latex;
 mod latex_form;
 mod layout;
 mod letters;
@@ -22,13 +24,16 @@ pub mod source;
 mod statement;
 pub mod syntax;
 mod unsupported;
+mod wording;
 
 use diagnostic::MAX_MISTAKES;
 pub use diagnostic::{Diagnostic, Severity};
+use latex::Lexicon;
 pub use letters::normal_name;
 pub use nearest::nearest;
 pub use source::Source;
 pub use syntax::*;
+pub use wording::{claim_wording, relation_wording, wording};
 
 /// A model file as it was written.
 #[derive(Clone, Debug, Default, PartialEq)]
@@ -37,6 +42,15 @@ pub struct Model {
     pub statements: Vec<Located>,
     /// What is read, but perhaps not as its author meant it.
     pub warnings: Vec<Diagnostic>,
+    /// The statements in which something is in LaTeX.
+    pub latex: Vec<Span>,
+}
+
+impl Model {
+    /// Whether a stretch of the file is in LaTeX, or beside it in one statement.
+    pub fn is_latex(&self, span: Span) -> bool {
+        self.latex.iter().any(|statement| statement.meets(span))
+    }
 }
 
 /// Everything that could be read of a file, mistakes or not: for a caller that looks for further mistakes in the rest.
@@ -62,13 +76,18 @@ pub fn examine(source: &Source) -> Reading {
     let declarations_lost = !layout.mistakes.is_empty();
     let mut reading = Reading { mistakes: layout.mistakes, declarations_lost, ..Reading::default() };
     let mut exponentials = Vec::new();
+    let lexicon = first_look::lexicon(&layout.drafts, &mut reading.mistakes);
+    let mut observed = Vec::new();
     for draft in &layout.drafts {
         if reading.mistakes.len() > MAX_MISTAKES {
             reading.declarations_lost = true;
             break;
         }
-        take(draft, &mut reading, &mut exponentials);
+        take(draft, &lexicon, &mut reading, &mut exponentials, &mut observed);
     }
+    let in_latex = |draft: &&layout::Draft| draft.text.contains('$') || latex::display::begins_display(&draft.text);
+    reading.model.latex = layout.drafts.iter().filter(in_latex).map(|draft| draft.span).collect();
+    first_look::set_as_written(&mut reading.model, &observed);
     if reading.model.statements.is_empty() && reading.mistakes.is_empty() {
         reading.mistakes.push(nothing_there(source));
     }
@@ -91,17 +110,24 @@ pub fn read(source: &Source) -> Result<Model, Vec<Diagnostic>> {
 }
 
 /// Reads one statement into the reading.
-fn take(draft: &layout::Draft, reading: &mut Reading, exponentials: &mut Vec<Span>) {
+fn take(
+    draft: &layout::Draft,
+    lexicon: &Lexicon,
+    reading: &mut Reading,
+    exponentials: &mut Vec<Span>,
+    observed: &mut Vec<(String, String)>,
+) {
     if draft.text.len() > MAX_STATEMENT_BYTES {
         reading.declarations_lost = true;
         reading.mistakes.push(too_long(draft));
         return;
     }
-    let outcome = statement::read(&draft.text, draft.span.start);
+    let outcome = statement::read(&draft.text, draft.span.start, Some(lexicon));
+    observed.extend(outcome.observed);
     reading.declarations_lost |= outcome.declarations_lost;
     reading.mistakes.extend(outcome.mistakes.into_iter().filter(|mistake| mistake.span.end <= draft.excused));
     reading.model.warnings.extend(outcome.warnings);
-    reading.model.statements.extend(outcome.statement);
+    reading.model.statements.extend(outcome.statements);
     exponentials.extend(outcome.exponentials);
 }
 

@@ -9,18 +9,20 @@ use super::diagnostic::Diagnostic;
 use super::expression::Builder;
 use super::grammar::{ModelParser, Rule};
 use super::keywords::{self, KEYWORDS, Keyword};
+use super::latex::display::{self, Word};
+use super::latex::{Lexicon, macros};
 use super::letters::leading_word;
 use super::nearest::nearest;
 use super::place::Place;
 use super::slips;
-use super::syntax::{Located, Span};
+use super::syntax::{Form, Located, Span};
 use super::unsupported;
 
 /// What came of one statement.
 #[derive(Debug, Default)]
 pub struct Outcome {
-    /// The statement, where it has no mistakes.
-    pub statement: Option<Located>,
+    /// The statement, where it has no mistakes; a display may hold several.
+    pub statements: Vec<Located>,
     /// Its mistakes.
     pub mistakes: Vec<Diagnostic>,
     /// What may not be meant.
@@ -29,6 +31,8 @@ pub struct Outcome {
     pub exponentials: Vec<Span>,
     /// Whether names that it may have declared are lost.
     pub declarations_lost: bool,
+    /// How plain names are set in LaTeX.
+    pub observed: Vec<(String, String)>,
 }
 
 impl Outcome {
@@ -37,8 +41,72 @@ impl Outcome {
     }
 }
 
-/// Reads the statement that starts at `offset` of its file.
-pub fn read(text: &str, offset: usize) -> Outcome {
+/// The word in front of a display, and where the display begins, where a statement is one.
+pub fn display_of(text: &str) -> Option<(Word, usize)> {
+    if display::begins_display(text) {
+        return Some((Word::Bare, 0));
+    }
+    let (phrase, word) = WORDS.iter().find(|(phrase, _)| leads(text, phrase))?;
+    let at = text.len() - after(text, phrase).trim_start().len();
+    let rest = text.get(at..).filter(|rest| display::begins_display(rest))?;
+    let single = !rest.starts_with("$$") && rest.starts_with('$');
+    let closes = rest.get(1..).and_then(|inner| inner.find('$')).map(|end| end + 2);
+    let equation = rest.contains('=') || *word == Word::Claim;
+    let whole = !single || closes == Some(rest.trim_end().len()) && *word != Word::Assume && equation;
+    whole.then_some((*word, at))
+}
+
+/// The words that may stand before a display.
+const WORDS: [(&str, Word); 9] = [
+    ("demand", Word::Form(Form::Demand)),
+    ("share", Word::Form(Form::Share)),
+    ("outlay", Word::Form(Form::Outlay)),
+    ("log demand", Word::Form(Form::LogDemand)),
+    ("let", Word::Let),
+    ("given", Word::Given),
+    ("claim", Word::Claim),
+    ("assume", Word::Assume),
+    ("inverse", Word::Inverse),
+];
+
+/// Whether a text begins with the words of a phrase, whatever white space is between them.
+fn leads(text: &str, phrase: &str) -> bool {
+    let mut rest = text;
+    phrase.split(' ').all(|wanted| {
+        let word = leading_word(rest.trim_start());
+        rest = &rest.trim_start()[word.len()..];
+        word == wanted
+    })
+}
+
+fn after<'a>(text: &'a str, phrase: &str) -> &'a str {
+    phrase.split(' ').fold(text, |rest, _| &rest.trim_start()[leading_word(rest.trim_start()).len()..])
+}
+
+/// Reads a display.
+fn read_display(text: &str, offset: usize, word: Word, at: usize, lexicon: Option<&Lexicon>) -> Outcome {
+    let Some(lexicon) = lexicon else { return Outcome::default() };
+    let reading = display::statements(&text[at..], offset + at, word, lexicon);
+    let keyword = Span::new(offset, offset + text[..at].trim_end().len().max(1));
+    let statements = reading.content.unwrap_or_default().into_iter();
+    Outcome {
+        statements: statements.map(|(statement, span)| Located { statement, span, keyword }).collect(),
+        declarations_lost: !reading.mistakes.is_empty() && matches!(word, Word::Bare | Word::Let),
+        mistakes: reading.mistakes,
+        warnings: reading.warnings,
+        observed: reading.observed,
+        ..Outcome::default()
+    }
+}
+
+/// Reads the statement that starts at `offset` of its file. Without a lexicon, what stands in LaTeX is left unread.
+pub fn read(text: &str, offset: usize, lexicon: Option<&Lexicon>) -> Outcome {
+    if macros::begins_definition(text) {
+        return Outcome::default();
+    }
+    if let Some((word, at)) = display_of(text) {
+        return read_display(text, offset, word, at, lexicon);
+    }
     let word = leading_word(text);
     let span = Span::new(offset, offset + word.len());
     let Some(keyword) = keywords::find(word) else {
@@ -54,9 +122,9 @@ pub fn read(text: &str, offset: usize) -> Outcome {
         return Outcome::refused(malformed(keyword, span), keyword.declares);
     };
     match ModelParser::parse(rule, text) {
-        Ok(pairs) => build(pairs, text, offset, keyword),
+        Ok(pairs) => build(pairs, text, offset, keyword, lexicon),
         Err(error) => Outcome {
-            mistakes: mistakes(rule, Place::of(&error, text, offset), offset, keyword),
+            mistakes: mistakes(rule, Place::of(&error, text, offset), offset, keyword, lexicon),
             declarations_lost: keyword.declares,
             ..Outcome::default()
         },
@@ -64,14 +132,14 @@ pub fn read(text: &str, offset: usize) -> Outcome {
 }
 
 /// The mistakes of a statement that the grammar refuses: the first, and in a list those of the items behind it.
-fn mistakes(rule: Rule, first: Place, offset: usize, keyword: &Keyword) -> Vec<Diagnostic> {
+fn mistakes(rule: Rule, first: Place, offset: usize, keyword: &Keyword, lexicon: Option<&Lexicon>) -> Vec<Diagnostic> {
     let mut mistakes = vec![slips::explain(&first, keyword)];
     let mut rest = without_item(first.text(), keyword.word.len(), first.at());
     for _ in 0..MAX_ITEMS {
         let Some(text) = rest.filter(|_| LISTS.contains(&rule)) else { break };
         match ModelParser::parse(rule, &text) {
             Ok(pairs) => {
-                mistakes.extend(build(pairs, &text, offset, keyword).mistakes);
+                mistakes.extend(build(pairs, &text, offset, keyword, lexicon).mistakes);
                 break;
             }
             Err(error) => {
@@ -130,14 +198,14 @@ fn unknown_keyword(word: &str, text: &str, span: Span) -> Diagnostic {
 /// The most bytes of a left-hand side that are quoted in a remedy.
 const MAX_SHOWN: usize = 24;
 
-fn build(pairs: Pairs<Rule>, text: &str, offset: usize, keyword: &Keyword) -> Outcome {
-    let mut builder = Builder::new(offset);
+fn build(pairs: Pairs<Rule>, text: &str, offset: usize, keyword: &Keyword, lexicon: Option<&Lexicon>) -> Outcome {
+    let mut builder = Builder::new(offset, lexicon);
     let statement = pairs.into_iter().next().and_then(|pair| build::statement(pair, &mut builder));
-    let Builder { mistakes, warnings, exponentials, .. } = builder;
+    let Builder { mistakes, warnings, exponentials, observed, .. } = builder;
     let span = Span::new(offset, offset + text.len());
     let statement = statement.filter(|_| mistakes.is_empty());
     let declarations_lost = keyword.declares && statement.is_none();
     let keyword = Span::new(offset, offset + keyword.word.len());
-    let statement = statement.map(|statement| Located { statement, span, keyword });
-    Outcome { statement, mistakes, warnings, exponentials, declarations_lost }
+    let statements = statement.map(|statement| Located { statement, span, keyword }).into_iter().collect();
+    Outcome { statements, mistakes, warnings, exponentials, declarations_lost, observed }
 }

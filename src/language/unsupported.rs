@@ -22,12 +22,6 @@ pub fn refusal(text: &str, offset: usize) -> Option<Diagnostic> {
     Some(Diagnostic::error(form_span(text, offset), message).remedy(remedy))
 }
 
-/// The refusal of a formula between `$` signs.
-pub fn latex_formula(span: Span) -> Diagnostic {
-    let message = "formulas in LaTeX, between `$` signs, are not supported yet by this version";
-    Diagnostic::error(span, message).remedy("write the formula in the model file's own signs: a_b * m / p_b")
-}
-
 const TAKE_OUT: &str = "take the statement out, or put `#` before its lines";
 const PLAIN_CLAIMS: &str =
     "claims may be identities and inequalities, and formulas for the functions of the theory: claim expenditure = …";

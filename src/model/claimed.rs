@@ -2,7 +2,7 @@
 
 use crate::algebra::generator::Role;
 use crate::language::{
-    Claim, Claimed, Diagnostic, Expr, Form, Index, Mover, Name, Preferences, Reference, Span, Target,
+    Claim, Claimed, Diagnostic, Expr, Form, Index, Mover, Name, Preferences, Reference, Span, Target, claim_wording,
 };
 
 use super::names::{FamilyId, Meaning};
@@ -67,8 +67,11 @@ impl Writer<'_> {
         }
         self.doubt_indices(&free);
         let side = self.resolve(&free, value);
+        let text = match self.tree.is_latex(span) {
+            true => claim_wording(function, value),
+            false => plain_text(self.source.slice(span)),
+        };
         let function = self.wanted(&free, function);
-        let text = plain_text(self.source.slice(span));
         Stated { text, free, sides: vec![side], signs: Vec::new(), function, span }
     }
 

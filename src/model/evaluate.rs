@@ -110,19 +110,25 @@ impl<'s> Evaluator<'s> {
     pub fn replace(&self, var: Var, element: Element) {
         let name = self.field.name(var);
         let element = self.field.named(&element, name.as_deref());
-        self.shorten(name.as_deref(), &element);
+        self.shorten(name.as_deref(), self.field.latex(var).as_deref(), &element);
         self.replaced.borrow_mut().insert(var, Rc::new(element));
     }
 
     /// Lets reports write an element by the author's name for it: a named sum by itself, a product of powers by a symbol
     /// that stands for it in print only.
-    fn shorten(&self, name: Option<&str>, element: &Element) {
+    fn shorten(&self, name: Option<&str>, latex: Option<&str>, element: &Element) {
         let Some(name) = name else { return };
         match element.as_var() {
-            Some(var) if matches!(*self.field.kind(var), Kind::Sum { .. }) => self.field.shorthand(var, element),
+            Some(var) if matches!(*self.field.kind(var), Kind::Sum { .. }) => {
+                if self.field.name(var).as_deref() == Some(name) {
+                    latex.iter().for_each(|latex| self.field.set_latex(var, latex));
+                }
+                self.field.shorthand(var, element);
+            }
             Some(var) if matches!(*self.field.kind(var), Kind::Symbol(_)) => {}
             _ if element.as_monomial().is_some_and(|(c, _)| num_traits::One::is_one(&c)) => {
                 let symbol = self.field.symbol(name, Role::Unknown);
+                latex.iter().for_each(|latex| self.field.set_latex(symbol, latex));
                 self.field.shorthand(symbol, element);
             }
             _ => {}
@@ -317,7 +323,7 @@ impl<'s> Evaluator<'s> {
             }
             let name = names.member_name(&names.abbreviations[id.0].name, goods);
             let value = self.field.named(&value, Some(&name));
-            self.shorten(Some(&name), &value);
+            self.shorten(Some(&name), names.abbreviations[id.0].latex.as_deref(), &value);
             Rc::new(value)
         });
         self.frames.set(self.frames.get() - FRAMES_OF_REFERENCE);

@@ -1,7 +1,7 @@
 //! Messages for formulas that cannot be computed, in the author's own words.
 
 use crate::algebra::generator::Blocked;
-use crate::language::{Diagnostic, Function, Source, Span};
+use crate::language::{Diagnostic, Function, Span};
 
 use super::evaluate::Evaluator;
 use super::resolve::Node;
@@ -18,8 +18,12 @@ fn place(evaluator: &Evaluator<'_>, environment: &[usize]) -> String {
     }
 }
 
-fn written(source: &Source, node: &Node) -> String {
-    plain_text(source.slice(node.span))
+/// A formula as it is written; one in LaTeX between `$` signs, so that it can be put back into the file.
+fn written(evaluator: &Evaluator<'_>, node: &Node) -> String {
+    let text = plain_text(evaluator.source.slice(node.span));
+    let in_latex = evaluator.script.latex.iter().any(|statement| statement.meets(node.span));
+    let marked = text.contains(['\\', '{']) || text.contains("_") && text.contains(' ');
+    if in_latex && marked && !text.contains('$') { format!("${text}$") } else { text }
 }
 
 pub(super) fn too_deep(span: Span) -> Diagnostic {
@@ -42,7 +46,7 @@ pub(super) fn utility_in_demand(span: Span) -> Diagnostic {
 }
 
 pub(super) fn division_by_zero(evaluator: &Evaluator<'_>, divisor: &Node) -> Diagnostic {
-    let text = written(evaluator.source, divisor);
+    let text = written(evaluator, divisor);
     Diagnostic::error(divisor.span, format!("the divisor `{text}` is zero"))
         .remedy("divide by something that is not zero")
 }
@@ -55,7 +59,7 @@ pub(super) fn power(
     base: &Node,
     environment: &[usize],
 ) -> Diagnostic {
-    let (whole, text) = (written(evaluator.source, node), written(evaluator.source, base));
+    let (whole, text) = (written(evaluator, node), written(evaluator, base));
     let place = place(evaluator, environment);
     match blocked {
         Blocked::SignUnknown(_) => {
@@ -80,7 +84,7 @@ pub(super) fn call(
     argument: &Node,
     environment: &[usize],
 ) -> Diagnostic {
-    let text = written(evaluator.source, argument);
+    let text = written(evaluator, argument);
     let (word, place) = (function.word(), place(evaluator, environment));
     match blocked {
         Blocked::SignUnknown(_) => {
@@ -102,7 +106,7 @@ pub(super) fn nowhere_defined(
     argument: &Node,
     environment: &[usize],
 ) -> Diagnostic {
-    let text = written(evaluator.source, argument);
+    let text = written(evaluator, argument);
     let (word, place) = (function.word(), place(evaluator, environment));
     let message = match function {
         Function::LambertW => format!("`{word}` is defined from -1/e on, and `{text}` lies below{place}"),
@@ -113,7 +117,7 @@ pub(super) fn nowhere_defined(
 
 /// An argument at which the function has no value.
 pub(super) fn outside_domain(evaluator: &Evaluator<'_>, function: Function, argument: &Node) -> Diagnostic {
-    let text = written(evaluator.source, argument);
+    let text = written(evaluator, argument);
     Diagnostic::error(argument.span, format!("`{}` is not defined for `{text}`", function.word()))
         .remedy("check the argument")
 }
@@ -127,7 +131,7 @@ pub(super) fn blocked(evaluator: &Evaluator<'_>, blocked: &Blocked, node: &Node,
 }
 
 fn blocked_anyway(evaluator: &Evaluator<'_>, blocked: &Blocked, node: &Node, environment: &[usize]) -> Diagnostic {
-    let text = written(evaluator.source, node);
+    let text = written(evaluator, node);
     let place = place(evaluator, environment);
     let (message, remedy) = match blocked {
         Blocked::DivisionByZero => (format!("a divisor in `{text}` is zero{place}"), "check its divisors"),

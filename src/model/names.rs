@@ -32,6 +32,7 @@ pub(super) struct Family {
 pub(super) struct Abbreviation {
     pub name: String,
     pub arity: usize,
+    pub latex: Option<String>,
     pub span: Span,
     pub used: Cell<bool>,
 }
@@ -164,6 +165,7 @@ impl Names {
         self.abbreviations.push(Abbreviation {
             name: declared.name.text.clone(),
             arity,
+            latex: declared.latex.clone(),
             span: declared.name.span,
             used: Cell::new(false),
         });

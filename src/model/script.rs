@@ -67,6 +67,8 @@ pub(super) struct Script {
     pub covered: Covered,
     /// The order in which abbreviations and demands are computed.
     pub order: Vec<Item>,
+    /// The statements in which something is in LaTeX.
+    pub latex: Vec<Span>,
 }
 
 /// Looks up everything. Of a tree from which statements may be missing (it is not `whole`), only mistakes that no
@@ -81,7 +83,7 @@ pub(super) fn script(source: &Source, tree: &language::Model, whole: bool) -> Re
     if whole {
         declarations::missing(&outline, &mut mistakes);
     }
-    let mut writer = Writer { source, declarations: &declarations, mistakes: &mut mistakes };
+    let mut writer = Writer { source, tree, declarations: &declarations, mistakes: &mut mistakes };
     let abbreviations = outline.abbreviations.iter().map(|(name, value)| writer.abbreviation(name, value)).collect();
     let assumed = outline.assumed.iter().map(|relation| writer.stated(relation)).collect();
     let claims = outline.claims.iter().map(|claim| writer.claim(claim)).collect();
@@ -111,6 +113,7 @@ pub(super) fn script(source: &Source, tree: &language::Model, whole: bool) -> Re
         given,
         covered,
         order: Vec::new(),
+        latex: tree.latex.clone(),
     };
     let order = computing_order(&script)?;
     Ok(Script { order, ..script })
@@ -118,6 +121,7 @@ pub(super) fn script(source: &Source, tree: &language::Model, whole: bool) -> Re
 
 pub(super) struct Writer<'a> {
     pub source: &'a Source,
+    pub tree: &'a language::Model,
     pub declarations: &'a Declarations,
     pub mistakes: &'a mut Vec<Diagnostic>,
 }
@@ -143,7 +147,10 @@ impl Writer<'_> {
         let mut resolver = Resolver::new(&self.declarations.names, &free, self.mistakes);
         let sides = exprs.into_iter().map(|expr| resolver.resolve(expr)).collect();
         let signs = relation.rest.iter().map(|(sign, _)| *sign).collect();
-        let text = plain_text(self.source.slice(relation.span));
+        let text = match self.tree.is_latex(relation.span) {
+            true => language::relation_wording(relation),
+            false => plain_text(self.source.slice(relation.span)),
+        };
         Stated { text, free, sides, signs, function: None, span: relation.span }
     }
 

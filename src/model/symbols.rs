@@ -28,7 +28,12 @@ impl Symbols {
             .iter()
             .map(|family| {
                 let members = tuples(goods, family.arity);
-                members.map(|at| field.symbol(&names.member_name(&family.name, &at), family.role)).collect()
+                let member = |at: Vec<usize>| {
+                    let var = field.symbol(&names.member_name(&family.name, &at), family.role);
+                    family.latex.iter().for_each(|latex| field.set_latex(var, latex));
+                    var
+                };
+                members.map(member).collect()
             })
             .collect();
         let first = |id: &FamilyId| families.get(id.0).and_then(|family| family.first()).copied();

@@ -108,7 +108,7 @@ fn product(factors: &[Expression], style: Style) -> Piece {
 /// A factor; the argument of a logarithm stands in brackets where what follows could be taken for part of it.
 pub fn factor_piece(factor: &Expression, next: Option<&Expression>, style: Style) -> Piece {
     if let (Expression::Call(Function::Ln, argument), Some(next)) = (factor, next)
-        && !matches!(next, Expression::Call(function, _) if *function != Function::Sqrt)
+        && !matches!(next, Expression::Call(function, _) if !matches!(function, Function::Sqrt | Function::Exp))
         && stands_without_brackets(argument)
     {
         return applied(Function::Ln, typeset(argument, style).bracketed());

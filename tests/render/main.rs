@@ -6,6 +6,7 @@ mod documents;
 mod formulas;
 mod pages;
 mod reader;
+mod reading_back;
 mod samples;
 mod scrambled;
 mod shared;

@@ -4,7 +4,7 @@ use mainspring::algebra::formula::{Formula, Function};
 use mainspring::render::document::{Block, Document, Equation, Inline};
 use mainspring::render::expression::{Expression, Object};
 
-struct Dice(u64);
+pub struct Dice(pub u64);
 
 impl Dice {
     fn below(&mut self, bound: usize) -> usize {
@@ -21,7 +21,7 @@ impl Dice {
         (0..2 + self.below(most - 1)).map(|_| self.formula(depth)).collect()
     }
 
-    fn formula(&mut self, depth: usize) -> Formula {
+    pub fn formula(&mut self, depth: usize) -> Formula {
         if depth == 0 {
             return match self.below(5) {
                 0 => Formula::integer(1 + self.below(4) as i64),

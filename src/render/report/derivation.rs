@@ -9,7 +9,7 @@ use crate::render::notation::Notation;
 use crate::render::report::starting::Start;
 use crate::render::report::words::{short, text};
 use crate::render::report::working::{Scribe, square, sum, term};
-use crate::render::report::{conditions, recovery, system, verdicts};
+use crate::render::report::{claims, conditions, recovery, system};
 use crate::vetting::Vetting;
 use crate::vetting::appendix::Appendix;
 
@@ -33,7 +33,7 @@ pub fn derivation(vetting: &Vetting, appendix: &Appendix) -> Document {
     }
     if !vetting.claims.is_empty() {
         blocks.push(heading("Claims"));
-        blocks.push(Block::Verdicts(verdicts::claim_lines(&notation, vetting)));
+        blocks.push(Block::Verdicts(claims::claim_lines(&notation, vetting)));
     }
     Document { title: vetting.model.title.clone(), blocks }
 }

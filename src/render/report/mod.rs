@@ -1,5 +1,6 @@
 //! What a run found, as a document: the answer of one screen, and the appendix.
 
+mod claims;
 mod conditions;
 mod derivation;
 mod preferences;

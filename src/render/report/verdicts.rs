@@ -1,13 +1,14 @@
 //! The answer of one screen: verdicts, and what was recovered.
 
 use crate::algebra::generator::Element;
-use crate::conditions::{Branch, ClaimFinding, Condition, Finding, Verdict, Witness};
+use crate::conditions::{Branch, Condition, Finding, Verdict, Witness};
 use crate::model::Coverage;
 use crate::proof::Label;
 use crate::recovery::Recovered;
 use crate::render::document::{Block, Document, Inline, Relation, Tone, VerdictLine};
 use crate::render::expression::Expression;
 use crate::render::notation::Notation;
+use crate::render::report::claims::claim_lines;
 use crate::render::report::conditions::quadratic_form;
 use crate::render::report::preferences;
 use crate::render::report::words::{enumerated, listed, point, relation, short, text, value};
@@ -34,7 +35,8 @@ pub fn answer(vetting: &Vetting) -> Document {
     Document { title: vetting.model.title.clone(), blocks }
 }
 
-fn tone(verdict: Verdict) -> Tone {
+/// How a verdict is to be taken.
+pub fn tone(verdict: Verdict) -> Tone {
     match verdict {
         Verdict::Proven => Tone::Holds,
         Verdict::Refuted => Tone::Fails,
@@ -138,7 +140,8 @@ fn bounds(notation: &Notation<'_>, elements: &[Element]) -> Option<Vec<Inline>> 
 }
 
 /// The longest side of an inequality on the screen, in characters.
-const LONGEST_BOUND: usize = 160;
+/// The longest formula that stands within a line.
+pub const LONGEST_BOUND: usize = 160;
 
 /// Where and how a condition fails.
 pub fn failure(notation: &Notation<'_>, condition: Condition, witness: &Witness) -> Vec<Inline> {
@@ -233,31 +236,4 @@ fn remarks(vetting: &Vetting) -> Vec<Block> {
         }
     }
     remarks.into_iter().map(|words| Block::Note(vec![text(words)])).collect()
-}
-
-/// The claims, one a line.
-pub fn claim_lines(notation: &Notation<'_>, vetting: &Vetting) -> Vec<VerdictLine> {
-    let claims = vetting.model.claims.iter().zip(&vetting.claims).enumerate();
-    let line = |(number, (claim, finding)): (usize, (&crate::model::Claim, &ClaimFinding))| {
-        let mut note = vec![Inline::Code(claim.text.clone())];
-        if let Some(witness) = &finding.witness {
-            note.push(text(" fails at "));
-            note.extend(point(notation, &witness.point));
-            note.push(text(": "));
-            note.extend(value(Expression::symbol("left - right"), &witness.value));
-        }
-        if let Some(correct) = finding.correct.as_ref().and_then(|e| short(notation, e, LONGEST_BOUND)) {
-            note.extend([text("; right is "), Inline::math(correct)]);
-        }
-        if let Some(reason) = &finding.reason {
-            note.push(text(format!(": {reason}")));
-        }
-        VerdictLine {
-            name: format!("claim {}", number + 1),
-            verdict: vocabulary::verdict(finding.verdict).to_string(),
-            tone: tone(finding.verdict),
-            note,
-        }
-    };
-    claims.map(line).collect()
 }
