@@ -124,7 +124,7 @@ demand y = 3*m/(2*q)
 }
 
 #[test]
-fn three_goods_are_decided_by_characteristic_coefficients_where_goods_may_be_complements() {
+fn goods_that_may_be_complements_are_decided_by_elimination() {
     let text = "
 goods coat, glove, hat
 prices p, q, r
@@ -135,7 +135,7 @@ demand hat = m/r - (p/r)*(10 - 2*p/r - q/r) - (q/r)*(8 - p/r - 3*q/r)
 ";
     let vetted = vet(text);
     assert_eq!(vetted.verdicts(), [Proven; 4]);
-    assert_eq!(curvature(&vetted).method, "characteristic coefficients");
+    assert_eq!(curvature(&vetted).method, "sum of squares");
 }
 
 #[test]

@@ -28,4 +28,5 @@ pub mod relation;
 pub mod retirement;
 pub mod sign;
 pub mod sign_rules;
+pub mod sign_shift;
 pub mod square_sign;

@@ -23,6 +23,8 @@ pub use super::sign_rules::Sign;
 const MOST_TRIALS: u32 = 150;
 /// How many facts one identity may use.
 const MOST_FACTS: u32 = 5;
+/// How many facts may be used as bounds for a symbol, one after the other.
+const MOST_SHIFTS: u32 = 1;
 /// The longest polynomial whose sign is looked for coefficient by coefficient.
 const MOST_TERMS: usize = 400;
 
@@ -73,6 +75,11 @@ impl Field {
 
     /// The sign of e on the whole domain, as far as the facts give it.
     pub fn sign(&self, e: &Element) -> Sign {
+        self.sign_with(e, MOST_SHIFTS)
+    }
+
+    /// The sign, by at most so many facts used as bounds one after the other.
+    pub(super) fn sign_with(&self, e: &Element, shifts: u32) -> Sign {
         let e = self.current(e);
         if let Some((coefficient, monomial)) = e.as_monomial() {
             return Sign::of(&coefficient).times(self.product_sign(monomial));
@@ -88,13 +95,13 @@ impl Field {
             return sign;
         }
         if !self.has_sums(&e) {
-            return self.polynomial_sign(&e);
+            return self.polynomial_or_shifted(&e, shifts);
         }
         let (numerator, denominator) = self.fraction(&e);
         let below =
             denominator.iter().fold(Sign::Positive, |s, (v, k)| s.times(self.variable_sign(*v).to_power(*k as i32)));
         if below != Sign::Unknown {
-            return self.polynomial_sign(&numerator).times(below);
+            return self.polynomial_or_shifted(&numerator, shifts).times(below);
         }
         if denominator.iter().any(|(v, k)| k % 2 == 0 && !self.variable_sign(*v).excludes_zero()) {
             return Sign::Unknown;
@@ -109,6 +116,24 @@ impl Field {
             sign @ (Sign::Positive | Sign::Negative | Sign::NonZero) => sign,
             _ => Sign::Unknown,
         }
+    }
+
+    /// The sign of a polynomial; where it is not seen at once, by its factors, each around the bounds that facts give.
+    fn polynomial_or_shifted(&self, f: &Poly, shifts: u32) -> Sign {
+        let direct = self.polynomial_sign(f);
+        if shifts == 0 || f.len() > MOST_TERMS || !matches!(direct, Sign::Unknown | Sign::NonZero) {
+            return direct;
+        }
+        let factored = factor(f);
+        let outside = Sign::of(&factored.content).times(self.monomial_sign(&factored.monomial));
+        let by_factors = factored.factors.iter().fold(outside, |total, (part, k)| {
+            let own = match self.polynomial_sign(part) {
+                Sign::Unknown | Sign::NonZero if k % 2 != 0 => self.shifted_sign(part, shifts),
+                known => known,
+            };
+            total.times(own.to_power(*k as i32))
+        });
+        if by_factors == Sign::Unknown { direct } else { by_factors }
     }
 
     /// The sign of an element without symbols, from an enclosure.
@@ -278,7 +303,7 @@ impl Field {
     }
 
     /// The facts, written in variables that are still in use.
-    fn current_facts(&self) -> Vec<Rc<Fact>> {
+    pub(super) fn current_facts(&self) -> Vec<Rc<Fact>> {
         let facts = self.facts();
         if self.tables.borrow().retired.is_empty() {
             return facts;

@@ -8,6 +8,7 @@ use crate::algebra::generator::Element;
 
 use super::bound::Combination;
 use super::claim::{Balanced, Bounded, Expression, FunctionId, Identities, Label, Semidefinite, SemidefiniteAt};
+use super::decomposition::Decomposition;
 use super::witness::Failure;
 
 /// A step, by its number in the derivation.
@@ -59,6 +60,8 @@ pub enum Rule {
     },
     /// The symmetric part vanishes off the diagonal and is nowhere positive on it.
     Diagonal,
+    /// The matrix is a combination of negative semidefinite ones, less squares.
+    Decomposition(Decomposition),
     /// Evaluation at a point.
     Evaluation,
     /// Not established, but assumed by the author or the language.

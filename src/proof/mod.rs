@@ -4,8 +4,8 @@
 //!
 //! - *identity*: every equation of a family has a difference whose normal form is zero ([`Prover::identities`]);
 //! - *bound*: a sign that follows from the facts of the domain ([`Prover::bound`], [`Prover::bound_by`]);
-//! - *balance, Laplacian, characteristic coefficients*: negative semidefiniteness ([`Prover::laplacian`],
-//!   [`Prover::characteristic`]);
+//! - *balance, Laplacian, characteristic coefficients, decomposition*: negative semidefiniteness
+//!   ([`Prover::laplacian`], [`Prover::characteristic`], [`Prover::decomposed`]);
 //! - *witness*: a point that satisfies every fact, evaluated exactly or in intervals that exclude zero
 //!   ([`Prover::refute`], [`Prover::refute_bound`], [`Prover::refute_semidefinite`], [`Prover::semidefinite_at`]).
 //!
@@ -15,6 +15,7 @@
 
 mod bound;
 pub mod claim;
+mod decomposition;
 pub mod derivation;
 mod identity;
 mod prover;
@@ -27,6 +28,7 @@ pub use claim::{
     Balanced, Bounded, Equation, Expression, Factor, FunctionId, Identities, Label, Matrix, Product, Semidefinite,
     SemidefiniteAt,
 };
+pub use decomposition::Decomposition;
 pub use derivation::{Derivation, Proved, Refuted, Residual, Rule, SideCondition, Statement, Step, StepId};
 pub use prover::Prover;
 pub use stored::{Rejected, StoredDerivation, replay, store};

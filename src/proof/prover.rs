@@ -24,7 +24,7 @@ pub struct Prover<'f> {
     pub(super) derivation: Derivation,
     slopes: FxHashMap<(FunctionId, Var, bool), Rc<Element>>,
     scales: Vec<(Rc<Vec<Var>>, Scale)>,
-    supposing: Rc<Vec<(Expression, Relation)>>,
+    pub(super) supposing: Rc<Vec<(Expression, Relation)>>,
 }
 
 impl<'f> Prover<'f> {

@@ -149,7 +149,7 @@ impl Prover<'_> {
         fits.then(|| self.semidefinite(subject, matrix.clone(), Rule::Diagonal, &[]))
     }
 
-    fn semidefinite(
+    pub(super) fn semidefinite(
         &mut self,
         subject: &str,
         matrix: Rc<Matrix>,

@@ -14,6 +14,7 @@ use crate::algebra::number::Rational;
 
 use super::bound::Combination;
 use super::claim::{Bounded, Equation, Expression, Factor, FunctionId, Label, Matrix, Product};
+use super::decomposition::{Decomposition, semidefinite_premises};
 use super::derivation::{Derivation, Proved, Rule, SideCondition, Statement, StepId};
 use super::prover::Prover;
 use super::witness::{Failed, Value};
@@ -119,6 +120,8 @@ pub enum StoredClaim {
     },
     /// A diagonal matrix without positive entries.
     Diagonal(StoredMatrix),
+    /// Multiples of the matrices of the premises, less squares (scale, vector).
+    Decomposition(StoredMatrix, Vec<String>, Vec<(String, Vec<String>)>),
     /// A matrix whose symmetric part is zero.
     ZeroMatrix(StoredMatrix),
     /// Negative semidefinite at a point.
@@ -196,6 +199,7 @@ impl Writer<'_> {
                     StoredClaim::Characteristic { matrix: self.matrix(&claim.matrix), without: *without }
                 }
                 Rule::Diagonal => StoredClaim::Diagonal(self.matrix(&claim.matrix)),
+                Rule::Decomposition(parts) => self.decomposition(&claim.matrix, parts),
                 _ => StoredClaim::ZeroMatrix(self.matrix(&claim.matrix)),
             },
             Statement::SemidefiniteAt(claim) => {
@@ -220,6 +224,12 @@ impl Writer<'_> {
             }
             Statement::Assumed(words) => StoredClaim::Assumed(words.clone()),
         }
+    }
+
+    fn decomposition(&self, matrix: &Matrix, of: &Decomposition) -> StoredClaim {
+        let print = |elements: &[Element]| elements.iter().map(self.print).collect::<Vec<String>>();
+        let squares = of.squares.iter().map(|(scale, u)| ((self.print)(scale), print(u))).collect();
+        StoredClaim::Decomposition(self.matrix(matrix), print(&of.multipliers), squares)
     }
 
     fn bound(&self, claim: &Bounded, rule: &Rule) -> StoredClaim {
@@ -423,6 +433,14 @@ impl Rebuild<'_, '_> {
             StoredClaim::ZeroMatrix(matrix) => {
                 let matrix = self.matrix(matrix)?;
                 Ok(self.prover.zero_matrix(subject, &matrix).map(|p| p.step()))
+            }
+            StoredClaim::Decomposition(matrix, multipliers, squares) => {
+                let read = |texts: &[String]| texts.iter().map(|text| (self.read)(text)).collect::<Read<Vec<_>>>();
+                let squares = squares.iter().map(|(scale, u)| Ok(((self.read)(scale)?, read(u)?)));
+                let of = Decomposition { multipliers: read(multipliers)?, squares: squares.collect::<Read<_>>()? };
+                let matrix = self.matrix(matrix)?;
+                let parts = semidefinite_premises(self.prover, self.premises)?;
+                Ok(self.prover.decomposed(subject, &matrix, &parts, of).map(|p| p.step()))
             }
             StoredClaim::SemidefiniteAt(matrix, point) => {
                 let (matrix, point) = (self.matrix(matrix)?, self.point(point)?);

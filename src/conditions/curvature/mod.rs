@@ -8,7 +8,10 @@
 mod certificates;
 mod direction;
 mod failure;
+mod nests;
 mod search;
+mod split;
+mod squares;
 
 use std::rc::Rc;
 
@@ -20,6 +23,7 @@ use crate::proof::{Balanced, Expression, Factor, Matrix, Proved, Prover};
 
 use super::finding::{Condition, Finding, Verdict};
 use super::slutsky::System;
+use squares::Symmetric;
 
 /// The work that one rung may take.
 const RUNG_WORK: u64 = 300_000_000;
@@ -34,10 +38,14 @@ struct Question<'a> {
     matrix: Rc<Matrix>,
     /// Its entries, reduced where that was not too much work.
     entries: Vec<Element>,
+    /// The symmetric part of it, with its values at one point.
+    symmetric: Symmetric,
     /// That its rows and columns sum to zero, if they do.
     balance: Option<Proved<Balanced>>,
     /// What must be positive for the quantities demanded to be.
     quantities: Vec<Element>,
+    /// The share of each good in what all functions sum to, long ones named.
+    shares: Vec<Element>,
 }
 
 /// Climbs the ladder.
@@ -53,7 +61,9 @@ pub(super) fn examine(model: &Model, system: &System, prover: &mut Prover<'_>, e
         let reduced = budget::attempt(RUNG_WORK, || entries.iter().map(|e| model.field.reduce(e)).collect());
         let entries = reduced.unwrap_or(entries);
         let balance = budget::attempt(RUNG_WORK, || prover.balanced(SUBJECT, &matrix, &[])).ok().flatten();
-        let question = Question { model, system, matrix, entries, balance, quantities };
+        let shares = budget::attempt(RUNG_WORK, || shares(model, system, prover)).ok().flatten().unwrap_or_default();
+        let symmetric = split::symmetric(model, &entries, &quantities);
+        let question = Question { symmetric, model, system, matrix, entries, balance, quantities, shares };
         certificates::prove(&question, prover).unwrap_or_else(|| by_points(&question, prover))
     });
     let symmetry = earlier.iter().find(|f| f.condition == Condition::Symmetry);
@@ -61,6 +71,17 @@ pub(super) fn examine(model: &Model, system: &System, prover: &mut Prover<'_>, e
         finding.method.push_str("; symmetry is not proven, so the question is about the symmetric part, v'Sv");
     }
     finding
+}
+
+/// Each function over what all of them sum to.
+fn shares(model: &Model, system: &System, prover: &mut Prover<'_>) -> Option<Vec<Element>> {
+    let field = &model.field;
+    let whole = prover.value(&system.whole());
+    let each = system.functions.iter().map(|f| {
+        let value = prover.value(&Expression::from(Factor::Function(*f)));
+        field.quotient(&value, &whole).ok().map(|e| field.named(&field.reduce(&e), None))
+    });
+    each.collect()
 }
 
 /// The part of the domain that curvature is about: every quantity positive, and less than all of income spent on the

@@ -6,6 +6,7 @@ use num_traits::{Signed, ToPrimitive, Zero};
 
 use crate::algebra::budget;
 use crate::algebra::evaluation::Point;
+use crate::algebra::field::Field;
 use crate::algebra::generator::Element;
 use crate::algebra::interval::Interval;
 use crate::algebra::number::{Rational, rational};
@@ -71,7 +72,7 @@ pub(super) fn look(question: &Question<'_>, prover: &mut Prover<'_>) -> Seen {
 }
 
 fn look_at(question: &Question<'_>, prover: &mut Prover<'_>, point: &Point, seen: &mut Seen) {
-    let Some(a) = rounded(question, point) else { return };
+    let Some(a) = rounded(&question.model.field, &question.entries, point) else { return };
     match clearly_rising(question, &a) {
         Some(v) if seen.failing.is_none() => seen.failing = refute(question, prover, point, &a, &v),
         None if seen.regular.is_none() => {
@@ -119,11 +120,9 @@ fn refute(
 }
 
 /// The symmetric part of the matrix at a point, rounded; entries that are small beside the largest become zero.
-fn rounded(question: &Question<'_>, point: &Point) -> Option<Vec<Rational>> {
-    let field = &question.model.field;
-    let n = question.system.size();
-    let enclosed: Vec<Interval> =
-        question.entries.iter().map(|e| field.enclose(e, point, BITS)).collect::<Option<_>>()?;
+fn rounded(field: &Field, entries: &[Element], point: &Point) -> Option<Vec<Rational>> {
+    let n = entries.len().isqrt();
+    let enclosed: Vec<Interval> = entries.iter().map(|e| field.enclose(e, point, BITS)).collect::<Option<_>>()?;
     let middle: Vec<Rational> = enclosed.iter().map(|i| (i.lo_rational() + i.hi_rational()) / rational(2, 1)).collect();
     let largest = middle.iter().map(|q| q.abs()).max()?;
     if !largest.is_positive() {

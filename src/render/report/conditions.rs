@@ -181,6 +181,13 @@ fn reason(scribe: &Scribe<'_>, id: crate::proof::StepId) -> Option<Block> {
         (Statement::Semidefinite(_), Rule::Diagonal) => {
             "The Hessian matrix of utility is diagonal, and no entry on its diagonal is positive."
         }
+        (Statement::Semidefinite(_), Rule::Decomposition(of)) if of.multipliers.is_empty() => {
+            "Minus the matrix is a sum of squares of linear forms with nonnegative weights."
+        }
+        (Statement::Semidefinite(_), Rule::Decomposition(_)) => {
+            "The matrix is a combination, with nonnegative weights, of matrices shown to be negative semidefinite, less a \
+             sum of squares of linear forms with nonnegative weights."
+        }
         (Statement::Semidefinite(_), Rule::NormalForm) => "The matrix is zero.",
         (Statement::Assumed(words), _) => return Some(paragraph(format!("By assumption: {words}."))),
         _ => return None,
