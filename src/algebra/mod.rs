@@ -25,6 +25,7 @@ pub mod radical;
 pub mod readable;
 pub mod reading_order;
 pub mod relation;
+mod residue;
 pub mod retirement;
 pub mod sign;
 pub mod sign_rules;

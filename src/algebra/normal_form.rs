@@ -14,9 +14,6 @@ use super::polynomial::Poly;
 /// value: (R, k) stands for 1/value(R)ᵏ. Monomial denominators stay in the numerator as negative exponents.
 pub type Fraction = (Poly, Vec<(Var, u32)>);
 
-/// A small prime field in which non-zero elements are recognised quickly.
-const PRIME: u64 = (1 << 61) - 1;
-
 impl Field {
     /// All named sums with a positive power put back, highest first; exponents of roots below N. Negative powers stay.
     pub fn expand(&self, e: &Element) -> Element {
@@ -217,38 +214,6 @@ impl Field {
             _ => false,
         })
     }
-
-    /// Whether the element is non-zero at a fixed point of a prime field, its free variables chosen at will: then it is
-    /// not the zero of the field. Inconclusive (`false`) where a root would have to be taken.
-    fn is_visibly_nonzero(&self, e: &Element) -> bool {
-        let mut values = FxHashMap::default();
-        self.residue(e, &mut values).is_some_and(|r| r != 0)
-    }
-
-    fn residue(&self, e: &Element, values: &mut FxHashMap<Var, Option<u64>>) -> Option<u64> {
-        for var in e.vars() {
-            if values.contains_key(&var) {
-                continue;
-            }
-            let value = match &*self.kind(var) {
-                Kind::Sum { value, root: 1 } => {
-                    let value = self.current(value);
-                    self.residue(&value, values)
-                }
-                Kind::Sum { .. } => None,
-                _ => Some(scatter(var)),
-            };
-            values.insert(var, value);
-        }
-        let mut missing = false;
-        let result = e.eval_mod(PRIME, &mut |var| {
-            values.get(&var).copied().flatten().unwrap_or_else(|| {
-                missing = true;
-                1
-            })
-        });
-        if missing { None } else { result }
-    }
 }
 
 /// Puts value back for Rᴺ in every non-negative power of R.
@@ -270,12 +235,4 @@ fn put_back(e: &Element, var: Var, value: &Element, root: i32) -> Element {
         parts.push(product.mul_term(&Rational::one(), &Monomial::power(var, rest)));
     }
     Poly::sum(parts)
-}
-
-/// A fixed, well-spread residue for each variable.
-fn scatter(var: Var) -> u64 {
-    let mut x = (var.index() as u64 + 1).wrapping_mul(0x9E37_79B9_7F4A_7C15);
-    x ^= x >> 31;
-    x = x.wrapping_mul(0xBF58_476D_1CE4_E5B9);
-    (x ^ (x >> 29)) % (PRIME - 2) + 1
 }

@@ -21,6 +21,7 @@ use super::linear_solve;
 use super::potential::{Potential, potential};
 use super::proposal::{Proposal, Working};
 use super::system::System;
+use super::uniform::Uniform;
 
 /// Ω in θ = x ∂/∂x: components over prices, then income.
 pub struct Form<'m, 'f> {
@@ -28,6 +29,10 @@ pub struct Form<'m, 'f> {
     pub moving: &'m Moving<'f>,
     /// −pᵢNᵢ for each price, then m·D: polynomials without a common factor.
     pub components: Vec<Poly>,
+    /// The factors of the components.
+    parts: Vec<Poly>,
+    /// What the demands are written in: their named sums may be factors that cancel in the components.
+    written: Vec<Var>,
 }
 
 impl<'m, 'f> Form<'m, 'f> {
@@ -42,12 +47,15 @@ impl<'m, 'f> Form<'m, 'f> {
             .map(|(n, p)| field.expand(&(n * &field.current(&Poly::var(*p))).neg()))
             .collect();
         components.push(field.expand(&(&field.expand(&below) * &field.current(&Poly::var(system.income)))));
-        let common = components.iter().fold(Poly::zero(), |g, c| gcd(&g, c));
-        if !common.is_constant() {
-            let divided: Option<Vec<Poly>> = components.iter().map(|c| c.div_exact(&common)).collect();
-            components = divided.unwrap_or(components);
-        }
-        Form { moving, components }
+        let uniform = Uniform::of(field, &components);
+        components = match uniform.as_ref().and_then(Uniform::primitive) {
+            Some(primitive) => primitive,
+            None => primitive(components),
+        };
+        let mut parts = uniform.map_or_else(Vec::new, |uniform| uniform.factors());
+        parts.extend(components.iter().flat_map(|c| factor(c).factors).map(|(part, _)| part));
+        let written: BTreeSet<Var> = system.demands.iter().flat_map(|x| field.current(x).vars()).collect();
+        Form { moving, components, parts, written: written.into_iter().collect() }
     }
 
     /// The income component, m·D.
@@ -61,6 +69,16 @@ impl<'m, 'f> Form<'m, 'f> {
         let (price, income) = (self.moving.symbols[index], self.moving.symbols[self.components.len() - 1]);
         &field.log_derivative(&self.components[index], income) - &field.log_derivative(self.last(), price)
     }
+}
+
+/// The polynomials without what they have in common.
+fn primitive(polynomials: Vec<Poly>) -> Vec<Poly> {
+    let common = polynomials.iter().fold(Poly::zero(), |g, c| gcd(&g, c));
+    if common.is_constant() {
+        return polynomials;
+    }
+    let divided: Option<Vec<Poly>> = polynomials.iter().map(|c| c.div_exact(&common)).collect();
+    divided.unwrap_or(polynomials)
 }
 
 /// A function whose logarithm, or which itself, may enter the logarithm of the factor.
@@ -158,7 +176,8 @@ fn candidates(form: &Form) -> Vec<Factor> {
     let moving = form.moving;
     let field = moving.field;
     let mut seen: BTreeSet<Var> = BTreeSet::new();
-    let mut waiting: Vec<Var> = form.components.iter().flat_map(Poly::vars).collect();
+    let mut waiting: Vec<Var> =
+        form.components.iter().flat_map(Poly::vars).chain(form.written.iter().copied()).collect();
     waiting.extend(moving.symbols.iter().flat_map(|s| field.current(&Poly::var(*s)).vars()));
     let mut found: Vec<Factor> = Vec::new();
     let mut offer = |f: Factor| {
@@ -199,12 +218,8 @@ fn candidates(form: &Form) -> Vec<Factor> {
             }
         }
     }
-    for component in &form.components {
-        for (part, _) in factor(component).factors {
-            if part.vars().into_iter().any(|v| moving.moves(v)) {
-                offer(Factor::Power(field.named(&part, None)));
-            }
-        }
+    for part in form.parts.iter().filter(|part| part.vars().into_iter().any(|v| moving.moves(v))) {
+        offer(Factor::Power(field.named(part, None)));
     }
     found
 }
@@ -244,8 +259,9 @@ fn cofactored(form: &Form, factor: Factor) -> Option<Cofactored> {
     let n = form.components.len() - 1;
     let rates: Option<Vec<Element>> = moving.symbols.iter().map(|x| log_rate(moving, &factor, *x).ok()).collect();
     let rates = rates?;
+    // at a root the form itself is ramified, and the pole is needed
     let pole = match &factor {
-        Factor::Power(f) => f.as_var(),
+        Factor::Power(f) => f.as_var().filter(|f| !matches!(*field.kind(*f), Kind::Sum { root: 2.., .. })),
         Factor::Exponential(_) => None,
     };
     let mut cofactors = Vec::with_capacity(n);

@@ -27,6 +27,7 @@ pub mod search;
 pub mod span;
 pub mod special_integrals;
 pub mod system;
+mod uniform;
 
 use crate::algebra::field::Field;
 use crate::algebra::generator::Element;

@@ -7,7 +7,7 @@ use std::collections::BTreeMap;
 
 use crate::algebra::generator::{Element, Kind};
 use crate::algebra::monomial::{Monomial, Var};
-use crate::algebra::number::rational;
+use crate::algebra::number::{Rational, rational};
 use crate::algebra::polynomial::Poly;
 
 use super::fractions::Moving;
@@ -26,10 +26,17 @@ pub fn solve(system: &System, reduced: &Reduced, utility: Var) -> Option<Proposa
 }
 
 fn particular_solution(system: &System, prices: &Moving, reduced: &Reduced) -> Option<Element> {
-    let mut candidates = vec![Poly::zero()];
-    candidates.extend(in_sight(system, reduced));
-    candidates.extend(from_midpoints(prices, reduced));
-    candidates.into_iter().map(|z| prices.field.reduce(&z)).find(|z| is_solution(prices, reduced, z))
+    let midpoints = midpoints(prices, reduced);
+    let sources: [&dyn Fn() -> Vec<Element>; 4] = [
+        &|| vec![Poly::zero()],
+        &|| in_sight(system, reduced),
+        &|| midpoints.iter().map(|midpoint| with_logarithms(prices, midpoint)).collect(),
+        &|| from_midpoints(prices, &midpoints),
+    ];
+    let field = prices.field;
+    sources
+        .iter()
+        .find_map(|source| source().into_iter().map(|z| field.reduce(&z)).find(|z| is_solution(prices, reduced, z)))
 }
 
 /// Whether dz₀ = a + b z₀ + c z₀².
@@ -72,37 +79,48 @@ fn in_sight(system: &System, reduced: &Reduced) -> Vec<Element> {
     found
 }
 
-/// −bᵢ/(2cᵢ) = z₀ − (∂B/∂pᵢ)/(2cᵢ): what these midpoints have in common, and their parts with unlike powers.
-fn from_midpoints(prices: &Moving, reduced: &Reduced) -> Vec<Element> {
+/// −bᵢ/(2cᵢ) = z₀ − (∂B/∂pᵢ)/(2cᵢ).
+fn midpoints(prices: &Moving, reduced: &Reduced) -> Vec<Element> {
     let field = prices.field;
     let [_, b, c] = &reduced.coefficients;
-    let midpoints: Vec<Element> = b
-        .iter()
-        .zip(c)
-        .filter(|(_, c)| !c.is_zero())
-        .filter_map(|(b, c)| Some(field.reduce(&field.quotient(b, c).ok()?.scale(&rational(-1, 2)))))
-        .collect();
-    let (numerators, denominator) = prices.over_one_denominator(&midpoints);
+    let ratios = b.iter().zip(c).filter(|(_, c)| !c.is_zero()).filter_map(|(b, c)| field.quotient(b, c).ok());
+    ratios.map(|ratio| field.reduce(&ratio.scale(&rational(-1, 2)))).collect()
+}
+
+/// The terms of a midpoint with logarithms: where B is algebraic, these are those of z₀.
+fn with_logarithms(prices: &Moving, midpoint: &Element) -> Element {
+    let cleared = prices.clear(midpoint);
+    let part = Poly::from_terms(
+        cleared.numerator.terms().filter(|(m, _)| is_logarithmic(prices, m)).map(|(m, c)| (m.clone(), c)).collect(),
+    );
+    &part * &prices.below(&cleared.denominator)
+}
+
+fn is_logarithmic(prices: &Moving, monomial: &Monomial) -> bool {
+    monomial.iter().any(|(v, k)| k > 0 && matches!(*prices.field.kind(v), Kind::Ln(_)))
+}
+
+/// What the midpoints have in common, alone and with their logarithms; and their parts with unlike powers.
+fn from_midpoints(prices: &Moving, midpoints: &[Element]) -> Vec<Element> {
+    let field = prices.field;
+    let (numerators, denominator) = prices.over_one_denominator(midpoints);
     let below = prices.below(&denominator);
-    let mut found = Vec::new();
-    if let [first, rest @ ..] = &numerators[..]
-        && !rest.is_empty()
-    {
-        let common = first.terms().filter(|(m, c)| rest.iter().all(|n| n.coefficient(m) == *c));
-        let common = Poly::from_terms(common.map(|(m, c)| (m.clone(), c)).collect());
-        found.push(field.reduce(&(&common * &below)));
+    let [first, rest @ ..] = &numerators[..] else { return Vec::new() };
+    let shared = |m: &Monomial, c: &Rational| rest.iter().all(|n| n.coefficient(m) == *c);
+    let picked = |wanted: &dyn Fn(&Monomial, &Rational) -> bool| {
+        let terms = first.terms().filter(|(m, c)| wanted(m, c)).map(|(m, c)| (m.clone(), c));
+        field.reduce(&(&Poly::from_terms(terms.collect()) * &below))
+    };
+    let mut found = vec![picked(&|m, c| shared(m, c)), picked(&|m, c| is_logarithmic(prices, m) || shared(m, c))];
+    let whole = field.reduce(&(first * &below));
+    let mut classes: BTreeMap<Monomial, Poly> = BTreeMap::new();
+    let eigen = |v: Var| prices.moves(v) && matches!(*field.kind(v), Kind::Exp(_) | Kind::Sum { .. });
+    for (key, part) in whole.collect(eigen) {
+        classes.insert(key.clone(), part.mul_monomial(&key));
     }
-    if let Some(first) = numerators.first() {
-        let whole = field.reduce(&(first * &below));
-        let mut classes: BTreeMap<Monomial, Poly> = BTreeMap::new();
-        let eigen = |v: Var| prices.moves(v) && matches!(*field.kind(v), Kind::Exp(_) | Kind::Sum { .. });
-        for (key, part) in whole.collect(eigen) {
-            classes.insert(key.clone(), part.mul_monomial(&key));
-        }
-        for part in classes.into_values() {
-            found.push(&whole - &part);
-            found.push(part);
-        }
+    for part in classes.into_values() {
+        found.push(&whole - &part);
+        found.push(part);
     }
     found
 }
