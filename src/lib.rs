@@ -64,6 +64,6 @@ pub fn read(source: &Source, values: &[(String, Rational)], allowance: Allowance
 /// The time and the memory are for everything; running out leaves what was found until then.
 pub fn restrict(model: Rc<Model>, request: &Request, allowance: Allowance) -> Restrictions {
     let limits = Limits::new(u64::MAX, allowance.time, allowance.memory_mib);
-    let outcome = budget::within(limits, || restrictions::restrict(model.clone(), request));
+    let outcome = budget::within(limits, || restrictions::restrict(model.clone(), request, allowance.time));
     outcome.unwrap_or_else(|stopped| Restrictions::unknown(model, stopped.describe()))
 }

@@ -290,3 +290,57 @@ let lnP = a0 + sum over k of (a[k] * ln(p[k])) + 1/2 * sum over k, h of (g[k,h] 
 let B = product over k of (p[k]^b[k])
 share[i] = a[i] + sum over j of (g[i,j] * ln(p[j])) + b[i] * (ln(m) - lnP) + l[i] / B * (ln(m) - lnP)^2
 ";
+
+/// Linear demands of an incomplete system.
+const LINEAR: &str = "goods x, y\nprices p, q\nincome m\nothers deflated\nparameters a, b, g[i]\n\
+                      demand x = a*q + g[x]*m\ndemand y = b*p + g[y]*m\n";
+
+fn restricted(arguments: &[&str]) -> (i32, serde_json::Value) {
+    let output = run_with_input(&[&["restrict", "-", "--as", "json"], arguments].concat(), LINEAR);
+    (code(&output), serde_json::from_str(&out(&output)).unwrap())
+}
+
+fn equations(found: &serde_json::Value) -> Vec<String> {
+    let branches = found["branches"].as_array().unwrap().iter();
+    let mut all: Vec<String> = branches
+        .map(|branch| {
+            let sides = branch["side_conditions"].as_array().unwrap();
+            let words = branch["equations"].as_array().unwrap().iter().chain(sides);
+            words.map(|word| word.as_str().unwrap()).collect::<Vec<_>>().join(", ")
+        })
+        .collect();
+    all.sort();
+    all
+}
+
+#[test]
+fn restrictions_as_data() {
+    let (status, found) = restricted(&["--only", "symmetry"]);
+    assert_eq!((status, &found["branches_complete"]), (1, &true.into()));
+    assert_eq!(equations(&found), ["a = 0, b = 0", "b = a, g[x] = 0, g[y] = 0"]);
+    assert_eq!(found["branches"][0]["conditions"]["symmetry"]["verdict"], "proven");
+    assert!(found["failures"]["symmetry"]["point"].is_object());
+}
+
+#[test]
+fn parameters_that_must_stay_free() {
+    let (_, found) = restricted(&["--only", "symmetry", "--keep", "a"]);
+    assert_eq!(equations(&found), ["b = a, g[x] = 0, g[y] = 0"]);
+    let (_, found) = restricted(&["--only", "symmetry", "--keep", "g"]);
+    assert_eq!(equations(&found), ["a = 0, b = 0"]);
+    let (_, found) = restricted(&["--only", "symmetry", "--keep", "a,g[x]"]);
+    assert_eq!((equations(&found).len(), &found["branches_complete"]), (0, &true.into()));
+    let output = run_with_input(&["restrict", "-", "--keep", "h"], LINEAR);
+    assert_eq!(code(&output), 2);
+    assert!(err(&output).contains("`h`"));
+}
+
+/// Curvature is no equation: without being named it is told of each branch, and named it cuts the list down.
+#[test]
+fn curvature_among_the_conditions() {
+    let (_, found) = restricted(&[]);
+    assert_eq!(found["only"], serde_json::json!(["symmetry"]));
+    let (_, found) = restricted(&["--only", "curvature"]);
+    assert_eq!(found["branches_complete"], false);
+    assert!(equations(&found).iter().all(|words| !words.is_empty()));
+}

@@ -171,6 +171,10 @@ fn statement_text(statement: &Statement) -> String {
         Statement::Claim(Claim::Function { function, value, .. }) => {
             format!("claim {} = {}", function_text(function), shape(value))
         }
+        Statement::Claim(Claim::Under { condition, link, relations, .. }) => {
+            let relations: Vec<String> = relations.iter().map(relation_text).collect();
+            format!("claim {condition:?} {link:?} {}", relations.join(", "))
+        }
     }
 }
 
@@ -201,6 +205,9 @@ fn function_text(function: &Claimed) -> String {
 fn functions_of_the_theory() {
     for (text, read_as) in [
         ("given utility = x^a", "given Utility = (x ^ a)"),
+        ("claim symmetry iff g12 = g21, 0 < b", "claim Symmetry Iff g12 = g21, 0 < b"),
+        ("claim adding-up only  if a = 1", "claim AddingUp OnlyIf a = 1"),
+        ("claim curvature if a >= 0", "claim Curvature If a >= 0"),
         ("given indirect  utility = v", "given IndirectUtility = v"),
         ("given expenditure = e", "given Expenditure = e"),
         ("inverse bread = a", "inverse bread = a"),

@@ -63,7 +63,7 @@ pub enum Command {
         help_template = EXAMPLES_FIRST,
         after_help = STATUS
     )]
-    Restrict(Options),
+    Restrict(Restrict),
     /// A commented model file to start from
     #[command(
         before_help = "Example: mainspring new --goods bread,fish,cloth --shape shares --out paper.demand",
@@ -97,6 +97,17 @@ pub struct Vet {
     /// Vet again whenever a model is saved
     #[arg(long, conflicts_with = "check")]
     pub watch: bool,
+}
+
+/// What `restrict` takes.
+#[derive(Args, Debug, Clone)]
+pub struct Restrict {
+    /// What every command that works models takes.
+    #[command(flatten)]
+    pub options: Options,
+    /// Parameters that must stay free: branches that would restrict them alone are left out
+    #[arg(long, value_name = "NAME,…")]
+    pub keep: Vec<String>,
 }
 
 /// What `new` takes.

@@ -27,9 +27,11 @@ pub fn main() -> ExitCode {
     internal::silence();
     let status = match arguments.command {
         Command::Vet(vet) if vet.watch => watch::watch(&vet.options),
-        Command::Vet(vet) => Task { kind: Kind::Vet, options: vet.options }.run(),
-        Command::Derive(options) => Task { kind: Kind::Derive, options }.run(),
-        Command::Restrict(options) => Task { kind: Kind::Restrict, options }.run(),
+        Command::Vet(vet) => Task::new(Kind::Vet, vet.options).run(),
+        Command::Derive(options) => Task::new(Kind::Derive, options).run(),
+        Command::Restrict(restrict) => {
+            Task { keep: restrict.keep, ..Task::new(Kind::Restrict, restrict.options) }.run()
+        }
         Command::New(new) => begun(&new),
         Command::Completions { shell } => completions(shell),
         Command::Manual { command } => manual(command.as_deref()),

@@ -4,6 +4,7 @@ use std::io::IsTerminal;
 use std::rc::Rc;
 use std::time::{Duration, Instant};
 
+use mainspring::algebra::monomial::Var;
 use mainspring::algebra::number::Rational;
 use mainspring::conditions::{Condition, Verdict};
 use mainspring::language::Source;
@@ -80,7 +81,13 @@ pub fn report(task: &Task, input: &Input, values: &[(String, Rational)]) -> Outc
     clock.lap("read");
     let mut messages: Vec<String> = model.warnings.iter().map(|warning| warning.render(&source)).collect();
     let (report, status) = match task.kind {
-        Kind::Restrict => branches(task, input, &source, model, &mut clock),
+        Kind::Restrict => match kept(&model, &task.keep) {
+            Ok(kept) => branches(task, input, &source, model, kept, &mut clock),
+            Err(unknown) => {
+                let message = format!("{}: --keep names `{unknown}`, which is no parameter of the model", source.name);
+                return Outcome::without_report(&message, Status::Usage);
+            }
+        },
         Kind::Vet | Kind::Derive => verdicts(task, input, &source, model, &mut clock),
     };
     messages.append(&mut clock.told);
@@ -88,9 +95,16 @@ pub fn report(task: &Task, input: &Input, values: &[(String, Rational)]) -> Outc
 }
 
 /// The report of `restrict`.
-fn branches(task: &Task, input: &Input, source: &Source, model: Rc<Model>, clock: &mut Clock) -> (Report, Status) {
+fn branches(
+    task: &Task,
+    input: &Input,
+    source: &Source,
+    model: Rc<Model>,
+    kept: Vec<Var>,
+    clock: &mut Clock,
+) -> (Report, Status) {
     let options = &task.options;
-    let found = restrict(model, &request(options), allowance(options));
+    let found = restrict(model, &Request { only: wanted(options), kept }, allowance(options));
     clock.lap("restrictions");
     let report = match options.form {
         Form::Json => Report::Json(json_restrictions::restrictions(&found)),
@@ -136,13 +150,47 @@ fn asked(options: &Options) -> Vec<Part> {
     Part::ALL.into_iter().filter(|part| options.only.iter().any(|only| named(*only) == *part)).collect()
 }
 
-/// The conditions that are to hold together.
-fn request(options: &Options) -> Request {
-    let condition = |part: &Part| match part {
+/// The conditions that are to hold together. Curvature, which is no equation, is among them where it is named.
+fn wanted(options: &Options) -> Vec<Condition> {
+    let named_or_equation = |part: &Part| match part {
+        Part::Condition(Condition::Curvature) if options.only.is_empty() => None,
         Part::Condition(condition) => Some(*condition),
         Part::Recovery | Part::Claims => None,
     };
-    Request { only: asked(options).iter().filter_map(condition).collect(), kept: Vec::new() }
+    asked(options).iter().filter_map(named_or_equation).collect()
+}
+
+/// The parameters that names stand for, a family for all its members; or the first name that is none.
+fn kept(model: &Model, names: &[String]) -> Result<Vec<Var>, String> {
+    let mut kept = Vec::new();
+    for name in names.iter().flat_map(|list| separated(list)) {
+        let head = |full: &str| full.split_once('[').is_some_and(|(head, _)| head == name);
+        let known: Vec<Var> =
+            model.parameters.iter().filter(|p| p.name == name || head(&p.name)).map(|p| p.var).collect();
+        if known.is_empty() {
+            return Err(name);
+        }
+        kept.extend(known);
+    }
+    Ok(kept)
+}
+
+/// The names of a list, at the commas outside brackets.
+fn separated(list: &str) -> Vec<String> {
+    let mut names = vec![String::new()];
+    let mut depth = 0_usize;
+    for letter in list.chars().filter(|c| !c.is_whitespace()) {
+        depth = match letter {
+            '[' => depth + 1,
+            ']' => depth.saturating_sub(1),
+            _ => depth,
+        };
+        match names.last_mut() {
+            Some(name) if letter != ',' || depth > 0 => name.push(letter),
+            _ => names.push(String::new()),
+        }
+    }
+    names
 }
 
 /// The status that a list of branches calls for.

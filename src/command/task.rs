@@ -40,9 +40,16 @@ pub struct Task {
     pub kind: Kind,
     /// The options.
     pub options: Options,
+    /// For restrictions: the parameters, or families of them, that must stay free.
+    pub keep: Vec<String>,
 }
 
 impl Task {
+    /// A task without parameters that must stay free.
+    pub fn new(kind: Kind, options: Options) -> Task {
+        Task { kind, options, keep: Vec::new() }
+    }
+
     /// Works all models: reports go where they are wanted, messages to standard error.
     pub fn run(self) -> Status {
         let values = match values::read(&self.options.values) {

@@ -197,10 +197,32 @@ impl Reader<'_, '_> {
             return Some(Claim::Relation(self.relation(first)?));
         }
         let start = self.builder.span(&first);
+        if first.as_rule() == Rule::under {
+            return self.under(first);
+        }
         let function = self.claimed(first)?;
         let value = self.builder.expression(parts.next()?, 0);
         let span = start.join(value.span);
         Some(Claim::Function { function, value, span })
+    }
+
+    fn under(&mut self, pair: Pair<Rule>) -> Option<Claim> {
+        let span = self.builder.span(&pair);
+        let mut parts = pair.into_inner();
+        let condition = match parts.next()?.as_str() {
+            "homogeneity" => Property::Homogeneity,
+            "adding-up" => Property::AddingUp,
+            "symmetry" => Property::Symmetry,
+            _ => Property::Curvature,
+        };
+        let link = match leading_word(parts.next()?.as_str()) {
+            "iff" => Link::Iff,
+            "if" => Link::If,
+            _ => Link::OnlyIf,
+        };
+        let relations = parts.filter(|part| matches!(part.as_rule(), Rule::relation | Rule::formula));
+        let relations = relations.flat_map(|part| self.assumed(part)).collect();
+        Some(Claim::Under { condition, link, relations, span })
     }
 
     fn claimed(&mut self, pair: Pair<Rule>) -> Option<Claimed> {

@@ -335,6 +335,41 @@ pub enum Claim {
         /// The whole of it.
         span: Span,
     },
+    /// A condition on the system holds if, only if, or exactly if, all relations hold.
+    Under {
+        /// The condition.
+        condition: Property,
+        /// How it depends on the relations.
+        link: Link,
+        /// The relations.
+        relations: Vec<Relation>,
+        /// The whole of it.
+        span: Span,
+    },
+}
+
+/// A condition on the system as a whole, as claims name it.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Property {
+    /// `homogeneity`
+    Homogeneity,
+    /// `adding-up`
+    AddingUp,
+    /// `symmetry`
+    Symmetry,
+    /// `curvature`
+    Curvature,
+}
+
+/// How a condition depends on relations.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Link {
+    /// `if`: they are sufficient.
+    If,
+    /// `only if`: they are necessary.
+    OnlyIf,
+    /// `iff`: both.
+    Iff,
 }
 
 /// One statement of a model file.

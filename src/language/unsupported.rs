@@ -58,11 +58,5 @@ fn claim(rest: &str) -> Option<String> {
     if let ["separable", _] = words(rest)[..] {
         return Some("claim separable GROUP".to_string());
     }
-    let condition = rest.split_whitespace().next()?;
-    let tail = rest.get(condition.len()..)?.trim_start();
-    match words(tail)[..] {
-        [link @ ("iff" | "if"), ..] => Some(format!("claim {condition} {link} …")),
-        ["only", "if", ..] => Some(format!("claim {condition} only if …")),
-        _ => None,
-    }
+    None
 }

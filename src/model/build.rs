@@ -7,7 +7,7 @@ use rustc_hash::FxHashMap;
 use crate::algebra::field::Field;
 use crate::algebra::generator::{Element, Role};
 use crate::algebra::monomial::Var;
-use crate::language::{self, Diagnostic, Source, Span};
+use crate::language::{self, Comparison, Diagnostic, Source, Span};
 
 use super::evaluate::{Evaluator, Failed};
 use super::given::{self, Derived};
@@ -15,7 +15,7 @@ use super::ground::{Conflict, Ground, establish};
 use super::names::{AbbreviationId, FamilyId, Names};
 use super::order::Item;
 use super::resolve::tuples;
-use super::script::{Covered, Defined, Script, Stated, plain_text, script};
+use super::script::{Covered, Defined, Script, Stated, Under, plain_text, script};
 use super::symbols::Symbols;
 use super::system::{Claim, Coverage, Demand, Given, Good, InverseDemand, Parameter, Statement, Value};
 use super::{Model, Text};
@@ -165,6 +165,13 @@ fn claims(evaluator: &Evaluator<'_>) -> Result<Vec<Claim>, Failed> {
     let mut all = Vec::new();
     let mut outcome = Ok(());
     for stated in &script.claims {
+        if let Some(under) = &stated.under {
+            match conditional(evaluator, stated, under) {
+                Ok(claim) => all.push(claim),
+                Err(failed) => outcome = Err(failed),
+            }
+            continue;
+        }
         for mut environment in tuples(goods, stated.free.len()) {
             match instances(evaluator, stated, &mut environment) {
                 Ok(claims) => all.extend(claims),
@@ -173,6 +180,28 @@ fn claims(evaluator: &Evaluator<'_>) -> Result<Vec<Claim>, Failed> {
         }
     }
     outcome.map(|()| all)
+}
+
+/// A claim about a condition: one, with its relations for all values of their indices.
+fn conditional(evaluator: &Evaluator<'_>, stated: &Stated, under: &Under) -> Result<Claim, Failed> {
+    let goods = evaluator.script.declarations.names.goods.len();
+    let mut relations: Vec<(Element, Comparison, Element)> = Vec::new();
+    for part in &under.relations {
+        for mut environment in tuples(goods, part.free.len()) {
+            let links = instances(evaluator, part, &mut environment)?;
+            let links = links.into_iter().filter_map(|link| match link.statement {
+                Statement::Relation { left, relation, right } => Some((left, relation, right)),
+                _ => None,
+            });
+            links.for_each(|link| {
+                if !relations.contains(&link) {
+                    relations.push(link)
+                }
+            });
+        }
+    }
+    let statement = Statement::Under { condition: under.condition, link: under.link, relations };
+    Ok(Claim { text: stated.text.clone(), statement, span: stated.span })
 }
 
 /// The claims that a stated one makes under an environment: one for each link of a chain.
@@ -189,7 +218,7 @@ fn instances(evaluator: &Evaluator<'_>, stated: &Stated, environment: &mut Vec<u
     let sides: Vec<_> = stated.sides.iter().map(|side| evaluator.compute(side, environment)).collect();
     let sides = sides.into_iter().collect::<Result<Vec<_>, Failed>>()?;
     let links = stated.signs.iter().zip(sides.windows(2)).enumerate();
-    let claim = |(index, (sign, pair)): (usize, (&crate::language::Comparison, &[std::rc::Rc<Element>]))| {
+    let claim = |(index, (sign, pair)): (usize, (&Comparison, &[std::rc::Rc<Element>]))| {
         let (left, right) = (Element::clone(pair.first()?), Element::clone(pair.last()?));
         let text = claim_text(evaluator, stated, index, environment);
         Some(Claim { text, statement: Statement::Relation { left, relation: *sign, right }, span: stated.span })
@@ -264,6 +293,9 @@ fn assemble(
     content.claims.iter_mut().for_each(|claim| match &mut claim.statement {
         Statement::Relation { left, right, .. } => (*left, *right) = (fresh(left), fresh(right)),
         Statement::Function { value, .. } => *value = fresh(value),
+        Statement::Under { relations, .. } => {
+            relations.iter_mut().for_each(|(left, _, right)| (*left, *right) = (fresh(left), fresh(right)));
+        }
     });
     content.given.iter_mut().for_each(|given| given.value = fresh(&given.value));
     content.inverse.iter_mut().for_each(|i| (i.formula, i.share) = (fresh(&i.formula), fresh(&i.share)));

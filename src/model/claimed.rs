@@ -2,13 +2,14 @@
 
 use crate::algebra::generator::Role;
 use crate::language::{
-    Claim, Claimed, Diagnostic, Expr, Form, Index, Mover, Name, Preferences, Reference, Span, Target, claim_wording,
+    Claim, Claimed, Diagnostic, Expr, Form, Index, Link, Mover, Name, Preferences, Property, Reference, Relation, Span,
+    Target, claim_wording,
 };
 
 use super::names::{FamilyId, Meaning};
 use super::outline::Outline;
 use super::resolve::{Node, Resolver, Slot, free_indices};
-use super::script::{Defined, Stated, Writer, plain_text, whole_target};
+use super::script::{Defined, Stated, Under, Writer, plain_text, whole_target};
 use super::system::Function;
 
 /// A function of the theory whose goods may be those of an environment.
@@ -58,6 +59,9 @@ impl Writer<'_> {
         let (function, value, span) = match claim {
             Claim::Relation(relation) => return self.stated(relation),
             Claim::Function { function, value, span } => (function, value, *span),
+            Claim::Under { condition, link, relations, span } => {
+                return self.under(*condition, *link, relations, *span);
+            }
         };
         let mut free = self.own_indices(function);
         for index in free_indices(&[value], self.names()) {
@@ -72,7 +76,15 @@ impl Writer<'_> {
             false => plain_text(self.source.slice(span)),
         };
         let function = self.wanted(&free, function);
-        Stated { text, free, sides: vec![side], signs: Vec::new(), function, span }
+        Stated { text, free, sides: vec![side], signs: Vec::new(), function, under: None, span }
+    }
+
+    /// A claim about a condition: its sides are those of its relations.
+    fn under(&mut self, condition: Property, link: Link, relations: &[Relation], span: Span) -> Stated {
+        let relations = relations.iter().map(|relation| self.stated(relation)).collect();
+        let text = plain_text(self.source.slice(span));
+        let under = Some(Under { condition, link, relations });
+        Stated { text, free: Vec::new(), sides: Vec::new(), signs: Vec::new(), function: None, under, span }
     }
 
     /// The free indices on the left of a claim.
@@ -230,7 +242,7 @@ impl Writer<'_> {
     /// A claim about a function of the theory needs a system, or preferences, that the function is one of.
     pub fn claims_have_an_object(&mut self, outline: &Outline<'_>, system: bool) {
         let first = outline.claims.iter().find_map(|claim| match claim {
-            Claim::Function { span, .. } => Some(*span),
+            Claim::Function { span, .. } | Claim::Under { span, .. } => Some(*span),
             Claim::Relation(_) => None,
         });
         if let (Some(span), false, true) = (first, system, self.mistakes.is_empty()) {

@@ -168,7 +168,7 @@ impl Model {
 
     /// Whether the file speaks of the utility level.
     pub fn speaks_of_utility(&self) -> bool {
-        self.given.is_some() || self.claims.iter().any(|claim| claim.sides().is_none())
+        self.given.is_some() || self.claims.iter().any(Claim::is_of_function)
     }
 
     /// The syntax tree that the model was made from.

@@ -93,7 +93,9 @@ impl<'s> Survey<'s> {
         if let Some((_, node, _)) = &self.script.given {
             self.walk(node, &mut Vec::new(), &mut found);
         }
-        for stated in self.script.assumed.iter().chain(&self.script.claims) {
+        let under = self.script.claims.iter().filter_map(|claim| claim.under.as_ref());
+        let related = under.flat_map(|under| &under.relations);
+        for stated in self.script.assumed.iter().chain(&self.script.claims).chain(related) {
             stated.sides.iter().for_each(|side| self.search(side, stated.free.len(), &mut found));
         }
         found

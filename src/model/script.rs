@@ -1,8 +1,8 @@
 //! The statements of a model with all names looked up, before any of it is computed.
 
 use crate::language::{
-    self, Comparison, Declared, Diagnostic, Equation, Expr, Index, Name, Others, Preferences, Relation, Source, Span,
-    Target,
+    self, Comparison, Declared, Diagnostic, Equation, Expr, Index, Link, Name, Others, Preferences, Property, Relation,
+    Source, Span, Target,
 };
 
 use super::claimed::Wanted;
@@ -22,7 +22,17 @@ pub(super) struct Stated {
     pub signs: Vec<Comparison>,
     /// The function of the theory that the only side is claimed to be.
     pub function: Option<Wanted>,
+    /// The condition on the system that depends on the relations between the sides.
+    pub under: Option<Under>,
     pub span: Span,
+}
+
+/// A condition on the system, and the relations that it is claimed to depend on.
+pub(super) struct Under {
+    pub condition: Property,
+    pub link: Link,
+    /// Each with its own free indices.
+    pub relations: Vec<Stated>,
 }
 
 /// The right-hand side of a demand statement.
@@ -151,7 +161,7 @@ impl Writer<'_> {
             true => language::relation_wording(relation),
             false => plain_text(self.source.slice(relation.span)),
         };
-        Stated { text, free, sides, signs, function: None, span: relation.span }
+        Stated { text, free, sides, signs, function: None, under: None, span: relation.span }
     }
 
     /// A free index that looks like the name of a good is more likely a slip of the pen.

@@ -3,7 +3,7 @@
 use crate::algebra::field::Field;
 use crate::algebra::generator::Element;
 use crate::algebra::monomial::Var;
-use crate::language::{Comparison, Preferences, Span};
+use crate::language::{Comparison, Link, Preferences, Property, Span};
 
 use crate::language::Form as WrittenForm;
 
@@ -154,6 +154,15 @@ pub enum Statement {
         /// What it is claimed to be.
         value: Element,
     },
+    /// A condition on the system holds if, only if, or exactly if, all relations hold.
+    Under {
+        /// The condition.
+        condition: Property,
+        /// How it depends on the relations.
+        link: Link,
+        /// The relations between elements of the parameters.
+        relations: Vec<(Element, Comparison, Element)>,
+    },
 }
 
 /// A claim of the author; each value of free indices is one of its own.
@@ -172,8 +181,13 @@ impl Claim {
     pub fn sides(&self) -> Option<(&Element, &Element)> {
         match &self.statement {
             Statement::Relation { left, right, .. } => Some((left, right)),
-            Statement::Function { .. } => None,
+            Statement::Function { .. } | Statement::Under { .. } => None,
         }
+    }
+
+    /// Whether the claim is about a function of the theory.
+    pub fn is_of_function(&self) -> bool {
+        matches!(self.statement, Statement::Function { .. })
     }
 }
 

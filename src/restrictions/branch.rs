@@ -2,6 +2,7 @@
 
 use std::rc::Rc;
 
+use crate::algebra::budget;
 use crate::algebra::field::Relation;
 use crate::algebra::generator::Element;
 use crate::algebra::monomial::Var;
@@ -13,9 +14,10 @@ use crate::recovery::{self, Recovered};
 
 use super::node::Node;
 use super::search::Tested;
+use super::terms::put_in;
 
 /// How many points are looked at for one that satisfies the side conditions.
-const MOST_POINTS: usize = 24;
+const MOST_POINTS: usize = 96;
 
 /// Parameter values for which the conditions hold: where all equations hold and no side condition vanishes.
 pub struct Branch {
@@ -23,6 +25,8 @@ pub struct Branch {
     pub equations: Vec<(Var, Element)>,
     /// Elements of the general model's field that do not vanish.
     pub side_conditions: Vec<Element>,
+    /// Elements of the field of `model` that are not negative; only where curvature is asked for.
+    pub inequalities: Vec<Element>,
     /// The parameters that stay free, in declared order. Their number is the dimension of the branch.
     pub free: Vec<Var>,
     /// The model with the values put in.
@@ -70,8 +74,8 @@ pub fn test(model: &Model, only: &[Condition], leaf: &Node) -> Tested {
 }
 
 /// The model with the values put in, its side conditions part of its domain, and these in its field.
-fn special(model: &Model, leaf: &Node) -> Option<(Model, Vec<Element>)> {
-    let mut special = model.respecialised(&leaf.solved).ok()?;
+pub(super) fn special(model: &Model, leaf: &Node) -> Option<(Model, Vec<Element>)> {
+    let mut special = model.respecialised(&values(model, leaf)).ok()?;
     let sides: Option<Vec<Element>> = leaf.sides.iter().map(|e| transfer(model, &special, e)).collect();
     let sides = sides?;
     for side in &sides {
@@ -79,6 +83,19 @@ fn special(model: &Model, leaf: &Node) -> Option<(Model, Vec<Element>)> {
         special.domain.push(DomainCondition::NonZero(side.clone()));
     }
     Some((special, sides))
+}
+
+/// The values of a leaf, with those that the assumed equations then give to the parameters that they eliminate: solving
+/// these equations anew might need a divisor that is not known.
+fn values(model: &Model, leaf: &Node) -> Vec<(Var, Element)> {
+    let mut values = leaf.solved.clone();
+    for parameter in &model.parameters {
+        let Some(eliminated) = &parameter.eliminated else { continue };
+        if let Ok(value) = put_in(&model.field, eliminated, &leaf.solved) {
+            values.push((parameter.var, value));
+        }
+    }
+    values
 }
 
 /// The branch that a confirmed leaf is, without findings yet. `None` where the model cannot be built.
@@ -93,6 +110,7 @@ pub fn branch(model: &Model, leaf: &Node) -> Option<Branch> {
     Some(Branch {
         equations,
         side_conditions: leaf.sides.clone(),
+        inequalities: Vec::new(),
         free,
         model: special,
         findings: Vec::new(),
@@ -102,17 +120,18 @@ pub fn branch(model: &Model, leaf: &Node) -> Option<Branch> {
 }
 
 /// Examines the system that the branch leaves: all conditions, and the preferences where symmetry is proven.
-pub fn examine(branch: &mut Branch) {
+/// Each part of the work may take `work`.
+pub fn examine(branch: &mut Branch, work: u64) {
     let model = branch.model.clone();
     let mut prover = Prover::new(&model.field);
     let mut findings = Vec::new();
     for condition in Condition::ALL.into_iter().filter(|c| conditions::applies(*c, &model)) {
-        let found = super::limited(|| conditions::examine(condition, &model, &mut prover, &findings));
+        let found = budget::attempt(work, || conditions::examine(condition, &model, &mut prover, &findings));
         findings.push(found.unwrap_or_else(|stopped| Finding::undecided(condition, stopped.describe())));
     }
     branch.findings = findings;
     if branch.finding(Condition::Symmetry).is_some_and(|f| f.verdict == Verdict::Proven) {
-        let found = super::limited(|| recovery::recover(&model, &mut prover));
+        let found = budget::attempt(work, || recovery::recover(&model, &mut prover));
         branch.recovered =
             Some(found.unwrap_or_else(|stopped| Recovered::NotFound {
                 reason: stopped.describe().to_string(),

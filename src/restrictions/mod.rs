@@ -5,15 +5,19 @@
 //! is proven by building the model anew ([`branch`]).
 
 pub mod branch;
+pub mod claimed;
+mod curvature;
 mod equations;
 pub mod indexed;
 mod node;
 mod search;
+mod sums;
 mod terms;
 
 use std::rc::Rc;
+use std::time::Duration;
 
-use crate::algebra::budget::{self, Stopped};
+use crate::algebra::budget::{self, Limits, Stopped};
 use crate::algebra::monomial::Var;
 use crate::conditions::{self, Condition, Witness};
 use crate::model::Model;
@@ -39,6 +43,8 @@ pub struct Restrictions {
     pub model: Rc<Model>,
     /// The conditions that are to hold, as far as they make sense for the model.
     pub only: Vec<Condition>,
+    /// The parameters that stay free.
+    pub kept: Vec<Var>,
     /// The branches, none inside another, the largest first.
     pub branches: Vec<Branch>,
     /// Whether they are shown to be all.
@@ -53,7 +59,16 @@ impl Restrictions {
     /// Nothing was found.
     pub fn unknown(model: Rc<Model>, reason: &str) -> Restrictions {
         let reason = Some(reason.to_string());
-        Restrictions { model, only: Vec::new(), branches: Vec::new(), complete: false, reason, failures: Vec::new() }
+        let kept = Vec::new();
+        Restrictions {
+            model,
+            only: Vec::new(),
+            kept,
+            branches: Vec::new(),
+            complete: false,
+            reason,
+            failures: Vec::new(),
+        }
     }
 
     /// Whether the conditions hold for all parameter values.
@@ -66,23 +81,39 @@ impl Restrictions {
 const SEARCH_WORK: u64 = 8_000_000_000;
 /// The work that one part of the examination of a branch may take; the table has many.
 const PART_WORK: u64 = 20_000_000;
+/// The work that the examination of all branches may take.
+const TABLE_WORK: u64 = 240_000_000;
 
-/// Finds the branches, and examines each.
-pub fn restrict(model: Rc<Model>, request: &Request) -> Restrictions {
+/// Finds the branches, and examines each. The search may take most of the time, the examination most of what is left:
+/// each ends within its own part of it, so that what was found until then can be kept.
+pub fn restrict(model: Rc<Model>, request: &Request, time: Duration) -> Restrictions {
     let only: Vec<Condition> =
         Condition::ALL.into_iter().filter(|c| request.only.contains(c) && conditions::applies(*c, &model)).collect();
-    let mut found = branches(model, only, &request.kept);
-    found.branches.iter_mut().for_each(branch::examine);
+    let mut found = branches(model, only, &request.kept, time * 3 / 5);
+    let share = TABLE_WORK / (2 * found.branches.len().max(1) as u64);
+    let part = PART_WORK.min(share);
+    let limits = Limits::new(u64::MAX, time * 3 / 10, u64::MAX);
+    // what a limit cuts off stays unexamined: the list of branches does not depend on it
+    let _ = budget::within(limits, || found.branches.iter_mut().for_each(|branch| branch::examine(branch, part)));
+    if found.only.contains(&Condition::Curvature) {
+        curvature::settle(&mut found);
+    }
     found
 }
 
 /// Finds the branches without examining what they leave.
-pub fn branches(model: Rc<Model>, only: Vec<Condition>, kept: &[Var]) -> Restrictions {
-    let mut out = Restrictions { only: only.clone(), reason: None, ..Restrictions::unknown(model.clone(), "") };
+pub fn branches(model: Rc<Model>, only: Vec<Condition>, kept: &[Var], time: Duration) -> Restrictions {
+    let mut out = Restrictions {
+        only: only.clone(),
+        kept: kept.to_vec(),
+        reason: None,
+        ..Restrictions::unknown(model.clone(), "")
+    };
     let Some(differences) = differences(&model, &only, &mut out) else { return out };
     let test = |leaf: &Node| branch::test(&model, &only, leaf);
     let mut search = Search::new(&model.field, kept, &test);
-    let ended = budget::attempt(SEARCH_WORK, || begin(&model, &differences, &mut search));
+    let limits = Limits::new(SEARCH_WORK, time, u64::MAX);
+    let ended = budget::within(limits, || begin(&model, &differences, &mut search));
     if let Err(stopped) = ended {
         search.leave_out(stopped.describe());
     }
@@ -128,10 +159,11 @@ fn begin(model: &Model, differences: &[Residual], search: &mut Search<'_>) {
     let mut root = Node::default();
     for residual in differences {
         let sum = terms::terms_of(&model.field, &residual.element);
-        if !sum.understood {
+        let terms = terms::merged(&model.field, sum.terms);
+        if !sum.understood || !sums::are_independent(&model.field, &terms) {
             search.leave_out("functions of prices and parameters whose coincidences are not known");
         }
-        root.sums.push(terms::merged(&model.field, sum.terms));
+        root.sums.push(terms);
     }
     search.follow(root);
 }

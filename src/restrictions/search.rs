@@ -35,6 +35,8 @@ pub struct Search<'a> {
     /// Parameters that are not to be restricted.
     kept: &'a [Var],
     test: &'a dyn Fn(&Node) -> Tested,
+    /// Parameters that assumptions speak of: solved for last, since a value has to satisfy these.
+    assumed: Vec<Var>,
     /// The leaves that passed the test.
     pub found: Vec<Node>,
     /// Whether everything that was left out is known to hold no solutions.
@@ -47,7 +49,8 @@ pub struct Search<'a> {
 impl<'a> Search<'a> {
     /// A search that has not begun.
     pub fn new(field: &'a Field, kept: &'a [Var], test: &'a dyn Fn(&Node) -> Tested) -> Search<'a> {
-        Search { field, kept, test, found: Vec::new(), exhaustive: true, reason: None, opened: 0 }
+        let assumed = field.facts().iter().flat_map(|fact| field.symbols_of(&fact.element)).collect();
+        Search { field, kept, test, assumed, found: Vec::new(), exhaustive: true, reason: None, opened: 0 }
     }
 
     /// Says that solutions may be missing.
@@ -162,7 +165,9 @@ impl<'a> Search<'a> {
     fn solvable(&self, node: &Node, equations: &[Element]) -> Option<Linear> {
         let mut readings: Vec<Linear> =
             equations.iter().flat_map(|e| linear_readings(self.field, e, self.kept)).collect();
-        readings.sort_by_key(|linear| (!is_plain(linear), linear.rest.len() + linear.coefficient.len()));
+        readings.sort_by_key(|linear| {
+            (self.assumed.contains(&linear.v), !is_plain(linear), linear.rest.len() + linear.coefficient.len())
+        });
         readings.into_iter().find(|linear| is_plain(linear) || node.excludes_zero(self.field, &linear.coefficient))
     }
 
@@ -195,7 +200,8 @@ impl<'a> Search<'a> {
             readings.iter().filter(|all| all.iter().any(|(_, other)| other.as_slice() == divisor)).count()
         };
         let cost = |(linear, divisor): &(Linear, Vec<Element>)| {
-            (linear.coefficient.len(), std::cmp::Reverse(serves(divisor)), divisor.len(), linear.rest.len())
+            let assumed = self.assumed.contains(&linear.v);
+            (linear.coefficient.len(), assumed, std::cmp::Reverse(serves(divisor)), divisor.len(), linear.rest.len())
         };
         readings.iter().flatten().min_by_key(|each| cost(each)).map(|(linear, _)| linear.clone())
     }
@@ -205,7 +211,8 @@ impl<'a> Search<'a> {
         let best = self.best_divisor(equations);
         if let Some(linear) = best {
             let mut main = node.clone();
-            main.sides.extend(parts(self.field, &linear.coefficient));
+            let divisor = parts(self.field, &linear.coefficient);
+            main.sides.extend(divisor.into_iter().filter(|part| !node.sides.contains(part)));
             let mut next = self.solved(&main, &linear);
             let apart = [numerator(self.field, &linear.coefficient), numerator(self.field, &linear.rest)];
             let possible = apart.iter().all(|e| e.is_zero() || !e.is_constant());

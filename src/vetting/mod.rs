@@ -9,9 +9,10 @@ use std::time::{Duration, Instant};
 
 use crate::algebra::budget::{self, Limits, Stopped};
 use crate::conditions::{self, Charts, ClaimFinding, Condition, Finding, Verdict};
-use crate::model::Model;
+use crate::model::{Claim, Model, Statement};
 use crate::proof::{Derivation, Prover};
 use crate::recovery::{self, Recovered, given};
+use crate::restrictions;
 
 /// A part of the work that can be asked for by itself.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -111,7 +112,7 @@ pub fn vet(model: Rc<Model>, asked: &[Part], allowance: Allowance) -> Vetting {
         findings.push(found.unwrap_or_else(|stopped| Finding::undecided(condition, stopped.describe())));
     }
     let mut recovered = None;
-    let of_functions = model.claims.iter().any(|claim| claim.sides().is_none());
+    let of_functions = model.claims.iter().any(Claim::is_of_function);
     if model.given.is_none()
         && !model.demands.is_empty()
         && (asked.contains(&Part::Recovery) || asked.contains(&Part::Claims) && of_functions)
@@ -136,7 +137,12 @@ pub fn vet(model: Rc<Model>, asked: &[Part], allowance: Allowance) -> Vetting {
                 claims.push(settled.clone());
                 continue;
             }
-            let found = run.part(Part::Claims, || conditions::examine_claim(&model, claim, &charts, &mut prover));
+            let found = run.part(Part::Claims, || match &claim.statement {
+                Statement::Under { condition, link, relations } => {
+                    restrictions::claimed::judge(&model, *condition, *link, relations)
+                }
+                _ => conditions::examine_claim(&model, claim, &charts, &mut prover),
+            });
             claims.push(found.unwrap_or_else(|stopped| ClaimFinding::undecided(stopped.describe())));
         }
     }

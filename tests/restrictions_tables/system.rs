@@ -19,7 +19,7 @@ pub fn model(text: &str) -> Rc<Model> {
 }
 
 pub fn restricted(text: &str, only: &[Condition]) -> Restrictions {
-    branches(model(text), only.to_vec(), &[])
+    branches(model(text), only.to_vec(), &[], Duration::from_secs(600))
 }
 
 /// The branches as sorted lists of equations and side conditions, in the syntax of model files.

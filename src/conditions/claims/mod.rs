@@ -23,5 +23,7 @@ pub fn examine_claim(model: &Model, claim: &Claim, charts: &Charts, prover: &mut
         Statement::Function { function, value } => {
             judgement::judge(model, prover, &claim.text, *function, value, charts)
         }
+        // the floor of restrictions judges these
+        Statement::Under { .. } => ClaimFinding::undecided("the parameter restrictions were not looked for"),
     }
 }

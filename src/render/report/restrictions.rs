@@ -37,6 +37,11 @@ fn summary(found: &Restrictions) -> String {
         1 => (enumerated(&names), "holds"),
         _ => (enumerated(&names), "hold together"),
     };
+    let kept: Vec<String> = found.kept.iter().filter_map(|v| found.model.field.name(*v)).collect();
+    let subject = match kept.len() {
+        0 => subject,
+        _ => format!("where {} must stay free, {subject}", enumerated(&kept)),
+    };
     let open = match &found.reason {
         Some(reason) => format!("this list is not known to be complete ({reason})"),
         None => "this list is not known to be complete".to_string(),
@@ -101,7 +106,10 @@ fn restrictions_of(notation: &Notation<'_>, branch: &Branch) -> Vec<Vec<Inline>>
             .get(*place)
             .map(|(v, value)| vec![relation(notation.variable(*v), Relation::Equal, notation.element(value))]),
     });
-    said.chain(branch.side_conditions.iter().map(not_zero)).collect()
+    let own = Notation::new(&branch.model);
+    let not_negative = |e: &Element| vec![relation(own.element(e), Relation::GreaterEqual, zero.clone())];
+    let inequalities = branch.inequalities.iter().map(not_negative);
+    said.chain(branch.side_conditions.iter().map(not_zero)).chain(inequalities).collect()
 }
 
 /// A general statement about a family, with what its indices run over.
