@@ -85,7 +85,7 @@ fn sufficient(model: &Model, condition: Condition, relations: &[Related]) -> Cla
         match holds(&special, condition) {
             Ok(()) => {}
             Err(Some(witness)) if same_names(model, &special, &witness.point) => {
-                return refuted(witness, "the relations hold there, and the condition does not");
+                return refuted(*witness, "the relations hold there, and the condition does not");
             }
             Err(_) => {
                 open.get_or_insert_with(|| "the condition is not proven under the relations".to_string());
@@ -97,20 +97,17 @@ fn sufficient(model: &Model, condition: Condition, relations: &[Related]) -> Cla
 
 /// Adds the inequalities to the facts of a special model; whether all could be added.
 fn assume(model: &Model, special: &Model, leaf: &Node, relations: &[Related]) -> bool {
-    relations.iter().all(|(left, sign, right)| match fact(model, special, leaf, left, *sign, right) {
-        Some(Some((e, relation))) => {
-            special.field.assume(&e, relation);
-            true
-        }
-        Some(None) => true,
-        None => false,
+    relations.iter().filter(|related| related.1 != Comparison::Equal).all(|related| {
+        let found = fact(model, special, leaf, related);
+        found.iter().for_each(|(e, relation)| special.field.assume(e, *relation));
+        found.is_some()
     })
 }
 
 /// The special model with the inequalities in its domain, so that its points satisfy them.
 fn restricted(model: &Model, mut special: Model, leaf: &Node, relations: &[Related]) -> Model {
-    for (left, sign, right) in relations {
-        let Some(Some((e, relation))) = fact(model, &special, leaf, left, *sign, right) else { continue };
+    for related in relations {
+        let Some((e, relation)) = fact(model, &special, leaf, related) else { continue };
         special.domain.push(match relation {
             Relation::NonZero => DomainCondition::NonZero(e),
             Relation::Positive | Relation::NonNegative => DomainCondition::Positive(e),
@@ -119,19 +116,11 @@ fn restricted(model: &Model, mut special: Model, leaf: &Node, relations: &[Relat
     special
 }
 
-/// An inequality as a fact of the special model; the inner `None` for an equation, the outer one where it has no meaning
-/// there.
-#[expect(clippy::option_option, reason = "an equation is no fact, and no failure either")]
-fn fact(
-    model: &Model,
-    special: &Model,
-    leaf: &Node,
-    left: &Element,
-    sign: Comparison,
-    right: &Element,
-) -> Option<Option<(Element, Relation)>> {
+/// An inequality as a fact of the special model. `None` for an equation, and where it has no meaning there.
+fn fact(model: &Model, special: &Model, leaf: &Node, related: &Related) -> Option<(Element, Relation)> {
+    let (left, sign, right) = related;
     let (e, relation) = match sign {
-        Comparison::Equal => return Some(None),
+        Comparison::Equal => return None,
         Comparison::NotEqual => (left - right, Relation::NonZero),
         Comparison::Greater => (left - right, Relation::Positive),
         Comparison::GreaterEqual => (left - right, Relation::NonNegative),
@@ -139,18 +128,18 @@ fn fact(
         Comparison::LessEqual => (right - left, Relation::NonNegative),
     };
     let e = put_in(&model.field, &e, &leaf.solved).ok()?;
-    Some(Some((transfer(model, special, &e)?, relation)))
+    Some((transfer(model, special, &e)?, relation))
 }
 
 /// Whether the condition holds in a model; else a point at which it fails, where one is found.
-fn holds(model: &Model, condition: Condition) -> Result<(), Option<Witness>> {
+fn holds(model: &Model, condition: Condition) -> Result<(), Option<Box<Witness>>> {
     let mut prover = Prover::new(&model.field);
     match conditions::differences(condition, model, &mut prover) {
         Some(differences) if differences.is_empty() => Ok(()),
-        Some(differences) => Err(conditions::failure(condition, model, &mut prover, &differences)),
+        Some(differences) => Err(conditions::failure(condition, model, &mut prover, &differences).map(Box::new)),
         None => {
             let finding = conditions::examine(condition, model, &mut prover, &[]);
-            if finding.verdict == Verdict::Proven { Ok(()) } else { Err(finding.witness) }
+            if finding.verdict == Verdict::Proven { Ok(()) } else { Err(finding.witness.map(Box::new)) }
         }
     }
 }
@@ -164,7 +153,7 @@ fn necessary(model: &Rc<Model>, condition: Condition, relations: &[Related]) -> 
         for (left, sign, right) in relations {
             match on_branch(model, branch, &(left - right), *sign) {
                 Ok(()) => {}
-                Err(Some(witness)) => return refuted(witness, "the condition holds there, and the relations do not"),
+                Err(Some(witness)) => return refuted(*witness, "the condition holds there, and the relations do not"),
                 Err(None) => {
                     open.get_or_insert_with(|| "a relation is not decided where the condition holds".to_string());
                 }
@@ -185,7 +174,7 @@ fn restrict_quietly(model: &Rc<Model>, condition: Condition) -> super::Restricti
 }
 
 /// Whether a relation holds on all of a branch; else a point of the branch at which it does not.
-fn on_branch(model: &Model, branch: &Branch, gap: &Element, sign: Comparison) -> Result<(), Option<Witness>> {
+fn on_branch(model: &Model, branch: &Branch, gap: &Element, sign: Comparison) -> Result<(), Option<Box<Witness>>> {
     let special = &branch.model;
     let here = put_in(&model.field, gap, &branch.equations).ok().and_then(|e| transfer(model, special, &e));
     let Some(here) = here else { return Err(None) };
@@ -214,7 +203,7 @@ fn on_branch(model: &Model, branch: &Branch, gap: &Element, sign: Comparison) ->
         let fails = value.sign().is_some_and(fails) && inside(special, branch, &point);
         fails.then_some(Witness { point, place: Label::Whole, value, vector: None })
     });
-    Err(witness.filter(|witness| same_names(model, special, &witness.point)))
+    Err(witness.filter(|witness| same_names(model, special, &witness.point)).map(Box::new))
 }
 
 /// Whether the inequalities of a branch hold at a point.
