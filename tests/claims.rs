@@ -9,6 +9,8 @@ use mainspring::model::{self, Model};
 use mainspring::proof::Value;
 use mainspring::recovery::Recovered;
 use mainspring::render::formula_text::plain;
+use mainspring::render::report::answer;
+use mainspring::render::text::{Layout, text};
 use mainspring::vetting::{Allowance, Part, Vetting, vet};
 
 fn vetted(text: &str) -> Vetting {
@@ -245,4 +247,40 @@ fn what_cannot_be_claimed_is_refused() {
     assert!(message(&slutsky).contains("compensated"));
     let price = format!("{TWO_GOODS}given utility = x_b*x_f\nclaim elasticity[bread, p_c] = 0\n");
     assert!(message(&price).contains("neither a price nor income"));
+}
+
+/// Two goods with a constant elasticity of substitution, and claims that a hurried author might make.
+#[test]
+fn a_refuted_claim_points_at_the_sign_the_factor_or_the_term() {
+    let system = "goods 1..2
+prices p[i]
+income m
+parameters a, s, c
+assume 0 < a < 1, s > 0, s != 1, c > 0
+let D = a*p[1]^(1-s) + (1-a)*p[2]^(1-s)
+demand[1] = a*m*p[1]^(-s)/D
+demand[2] = (1-a)*m*p[2]^(-s)/D
+";
+    for (claim, pointed_at) in [
+        ("elasticity[1,income] = -1", "the claim has the wrong sign"),
+        ("elasticity[1,income] = 2", "the claim has the factor 2 too much"),
+        ("slutsky[1,2] = a*(1-a)*m*p[1]^(-s)*p[2]^(-s)/D^2", "the claim lacks the factor s"),
+        ("slutsky[1,2] = -s*a*(1-a)*m*p[1]^(-s)*p[2]^(-s)/D^2", "the claim has the wrong sign"),
+        ("slutsky[1,2] = s*(1-s)*a*(1-a)*m*p[1]^(-s)*p[2]^(-s)/D^2", "the claim has the factor 1 - s too much"),
+        ("elasticity[1,2] = a*(s-1)*p[2]^(1-s)/D", "the factor a should be 1 - a"),
+        ("elasticity[1,1] = -s + (1-s)*a*p[1]^(1-s)/D", "the term a*p[1]^(1 - s)*(1 - s)/D has the wrong sign"),
+        ("share[1] = a*p[1]^(1-s)/D + c", "the claim has the term c too much"),
+        ("hicksian[1] = a*u*p[1]^(-s)*D^(1/(1-s))", "the claim has the factor D too much"),
+        ("(a + s)^2 = a^2 + s^2", "the right-hand side lacks the term 2*a*s"),
+        ("ln(a*p[1]) = ln(a) - ln(p[1])", "the term -ln(p[1]) has the wrong sign"),
+        ("a*s + c*s = a*s + 2*c*s", "the term 2*s*c has the factor 2 too much"),
+        ("1 - c = 1 + s*c", "the term s*c lacks the factor -1/s"),
+    ] {
+        let vetting = vetted(&format!("{system}claim expenditure = u*D^(1/(1-s))\nclaim {claim}\n"));
+        assert_eq!(vetting.claims[1].verdict, Verdict::Refuted, "{claim}");
+        refuted(&vetting.claims[1], claim);
+        let words = text(&answer(&vetting), Layout { width: 80, colour: false });
+        let words = words.split_whitespace().collect::<Vec<_>>().join(" ");
+        assert!(words.contains(&format!(": {pointed_at}; correct is ")), "{claim}\n{words}");
+    }
 }

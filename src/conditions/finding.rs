@@ -1,5 +1,6 @@
 //! What is found of a condition or a claim.
 
+use super::claims::difference::Difference;
 use crate::algebra::evaluation::Point;
 use crate::algebra::generator::Element;
 use crate::algebra::number::Rational;
@@ -145,6 +146,8 @@ pub struct ClaimFinding {
     pub witness: Option<Witness>,
     /// For a claim about a function of the theory: what the function is, in its own arguments, where that is known.
     pub correct: Option<Element>,
+    /// Where the claim is wrong: the sign, the factor or the term in which it differs from what is right.
+    pub difference: Option<Difference>,
     /// The steps that establish the verdict.
     pub steps: Vec<StepId>,
     /// Where nothing could be shown: what is left, and why.
@@ -154,12 +157,19 @@ pub struct ClaimFinding {
 impl ClaimFinding {
     /// A finding that a step establishes.
     pub fn settled(verdict: Verdict, witness: Option<Witness>, step: StepId) -> ClaimFinding {
-        ClaimFinding { verdict, witness, correct: None, steps: vec![step], reason: None }
+        ClaimFinding { verdict, witness, correct: None, difference: None, steps: vec![step], reason: None }
     }
 
     /// Nothing could be shown.
     pub fn undecided(reason: &str) -> ClaimFinding {
         let reason = Some(reason.to_string());
-        ClaimFinding { verdict: Verdict::Undecided, witness: None, correct: None, steps: Vec::new(), reason }
+        ClaimFinding {
+            verdict: Verdict::Undecided,
+            witness: None,
+            correct: None,
+            difference: None,
+            steps: Vec::new(),
+            reason,
+        }
     }
 }

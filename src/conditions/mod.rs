@@ -25,6 +25,7 @@ use crate::model::{Coverage, Model};
 use crate::proof::{Prover, Residual};
 
 pub use claims::chart::{Chart, Charts};
+pub use claims::difference::Difference;
 pub use claims::examine_claim;
 pub use concavity::{by_concavity, maximised};
 pub use finding::{Branch, ClaimFinding, Condition, Finding, Verdict, Witness};

@@ -8,7 +8,7 @@ use crate::algebra::evaluation::Point;
 use crate::algebra::field::Field;
 use crate::algebra::generator::Element;
 use crate::algebra::monomial::Var;
-use crate::conditions::{Branch, ClaimFinding, Condition, Finding, Witness};
+use crate::conditions::{Branch, ClaimFinding, Condition, Difference, Finding, Witness};
 use crate::model::{Claim, Coverage, Model};
 use crate::proof::{Label, Value, store};
 use crate::recovery::{Case, Preferences, Recovered};
@@ -176,8 +176,26 @@ fn claim(model: &Model, claim: &Claim, finding: &ClaimFinding) -> Json {
         "verdict": vocabulary::verdict(finding.verdict),
         "witness": witness,
         "correct": finding.correct.as_ref().map(|e| formula(&model.field, e)),
+        "difference": finding.difference.as_ref().map(|difference| pointed(model, difference)),
         "reason": finding.reason,
     })
+}
+
+/// Where a refuted claim and what is right differ.
+fn pointed(model: &Model, difference: &Difference) -> Json {
+    let (kind, claimed, right) = match difference {
+        Difference::Sign => ("sign", None, None),
+        Difference::LacksFactor(e) => ("lacks_factor", None, Some(e)),
+        Difference::ExtraFactor(e) => ("extra_factor", Some(e), None),
+        Difference::OtherFactor { claimed, right } => ("other_factor", Some(claimed), Some(right)),
+        Difference::LacksTerm(e) => ("lacks_term", None, Some(e)),
+        Difference::ExtraTerm(e) => ("extra_term", Some(e), None),
+        Difference::TermSign(e) => ("term_sign", Some(e), None),
+        Difference::TermFactor { term, factor } => ("term_lacks_factor", Some(term), Some(factor)),
+        Difference::OtherTerm { claimed, right } => ("other_term", Some(claimed), Some(right)),
+    };
+    let print = |e: Option<&Element>| e.map(|e| formula(&model.field, e));
+    json!({"kind": kind, "claimed": print(claimed), "right": print(right)})
 }
 
 /// What steps lean on that does not follow from the domain, each once, in the order of the derivation.

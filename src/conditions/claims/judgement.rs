@@ -11,6 +11,7 @@ use crate::proof::{Equation, Expression, Identities, Label, Prover, Refuted, Res
 
 use super::super::finding::{ClaimFinding, Verdict, Witness};
 use super::chart::{Chart, Charts, Coordinates};
+use super::difference::difference;
 
 /// How many points are looked at in one chart.
 const MOST_POINTS: usize = 200;
@@ -56,6 +57,9 @@ pub(super) fn judge(
     }
     if finding.verdict != Verdict::Proven {
         finding.correct = correct(model, function, charts);
+    }
+    if let (Verdict::Refuted, Some(right)) = (finding.verdict, &finding.correct) {
+        finding.difference = difference(&model.field, value, right);
     }
     finding
 }

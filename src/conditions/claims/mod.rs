@@ -5,6 +5,7 @@
 //! proven by its normal form or refuted at a point ([`judgement`]).
 
 pub mod chart;
+pub mod difference;
 pub mod judgement;
 mod relation;
 

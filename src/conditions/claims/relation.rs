@@ -10,6 +10,7 @@ use crate::proof::{Bounded, Equation, Expression, Label, Prover, Residual};
 
 use super::super::finding::{ClaimFinding, Verdict, Witness};
 use super::super::witness;
+use super::difference::difference;
 
 /// How many points are looked at against an inequality.
 const MOST_POINTS: usize = 400;
@@ -36,6 +37,7 @@ pub(super) fn examine(
 }
 
 fn identity(model: &Model, prover: &mut Prover<'_>, text: &str, left: Element, right: Element) -> ClaimFinding {
+    let sides = (left.clone(), right.clone());
     let equation = Equation { label: Label::Whole, left: Expression::element(left), right: Expression::element(right) };
     let residuals = match prover.identities(text, vec![equation.clone()], &[]) {
         Ok(proof) => return ClaimFinding::settled(Verdict::Proven, None, proof.step()),
@@ -43,7 +45,11 @@ fn identity(model: &Model, prover: &mut Prover<'_>, text: &str, left: Element, r
     };
     match witness::against(model, prover, text, &residuals, &|_: &Residual| Some(equation.clone())) {
         Some(refuted) => {
-            ClaimFinding::settled(Verdict::Refuted, Some(Witness::of(refuted.failure(), None)), refuted.step())
+            let settled =
+                ClaimFinding::settled(Verdict::Refuted, Some(Witness::of(refuted.failure(), None)), refuted.step());
+            let difference = difference(&model.field, &sides.1, &sides.0);
+            let left = || budget::attempt(WORK, || model.field.reduce(&sides.0)).ok();
+            ClaimFinding { correct: difference.as_ref().and_then(|_| left()), difference, ..settled }
         }
         None => ClaimFinding::undecided(
             "the normal form of the difference is not zero, and no admissible point was found that shows it",
