@@ -55,12 +55,26 @@ pub fn judge(model: &Rc<Model>, condition: Property, link: Link, relations: &[Re
 }
 
 fn proven() -> ClaimFinding {
-    ClaimFinding { verdict: Verdict::Proven, witness: None, correct: None, steps: Vec::new(), reason: None }
+    ClaimFinding {
+        verdict: Verdict::Proven,
+        witness: None,
+        correct: None,
+        difference: None,
+        steps: Vec::new(),
+        reason: None,
+    }
 }
 
 fn refuted(witness: Witness, reason: &str) -> ClaimFinding {
     let reason = Some(reason.to_string());
-    ClaimFinding { verdict: Verdict::Refuted, witness: Some(witness), correct: None, steps: Vec::new(), reason }
+    ClaimFinding {
+        verdict: Verdict::Refuted,
+        witness: Some(witness),
+        correct: None,
+        difference: None,
+        steps: Vec::new(),
+        reason,
+    }
 }
 
 /// Whether the condition holds wherever the relations do.
