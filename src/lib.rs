@@ -15,6 +15,7 @@ pub mod proof;
 pub mod recovery;
 pub mod render;
 pub mod restrictions;
+pub mod structure;
 pub mod vetting;
 
 use algebra::budget::{self, Limits, Stopped};

@@ -175,6 +175,7 @@ fn statement_text(statement: &Statement) -> String {
             let relations: Vec<String> = relations.iter().map(relation_text).collect();
             format!("claim {condition:?} {link:?} {}", relations.join(", "))
         }
+        Statement::Claim(Claim::Separable { group, .. }) => format!("claim separable {}", group.text),
     }
 }
 
@@ -220,6 +221,8 @@ fn functions_of_the_theory() {
         ("claim expenditure = u", "claim Expenditure = u"),
         ("claim indirect utility = m", "claim IndirectUtility = m"),
         ("claim utility = x", "claim Utility = x"),
+        ("claim separable food", "claim separable food"),
+        ("claim separable = food", "claim separable = food"),
         ("claim slutsky[bread, fish] = 0", "claim Slutsky[bread, fish] = 0"),
         ("claim elasticity[1, p[2]] = a", "claim Elasticity[1, p[2]] = a"),
         ("claim elasticity[bread, income] = 1", "claim Elasticity[bread, income] = 1"),

@@ -197,6 +197,10 @@ pub enum Part {
     Recovery,
     /// The author's claims
     Claims,
+    /// The structure of the preferences behind the demands: homothetic, additive, separable
+    Structure,
+    /// How demands respond to income and prices: signs and elasticities
+    Responses,
 }
 
 /// Verdicts that may be counted as passed.

@@ -104,7 +104,7 @@ fn branches(
     clock: &mut Clock,
 ) -> (Report, Status) {
     let options = &task.options;
-    let found = restrict(model, &Request { only: wanted(options), kept }, allowance(options));
+    let found = restrict(model, &Request { only: wanted(task), kept }, allowance(options));
     clock.lap("restrictions");
     let report = match options.form {
         Form::Json => Report::Json(json_restrictions::restrictions(&found)),
@@ -116,7 +116,7 @@ fn branches(
 /// The reports of `vet` and `derive`.
 fn verdicts(task: &Task, input: &Input, source: &Source, model: Rc<Model>, clock: &mut Clock) -> (Report, Status) {
     let options = &task.options;
-    let vetting = vet(model, &asked(options), allowance(options));
+    let vetting = vet(model, &asked(task), allowance(options));
     for (part, time) in &vetting.timings {
         clock.tell(part.word(), *time);
     }
@@ -143,21 +143,24 @@ fn allowance(options: &Options) -> Allowance {
     Allowance { time: Duration::from_secs(options.time), memory_mib: options.memory, ..Allowance::default() }
 }
 
-fn asked(options: &Options) -> Vec<Part> {
+/// The parts of the work that are asked for; where none is named, all that the report has room for.
+fn asked(task: &Task) -> Vec<Part> {
+    let options = &task.options;
+    let short = task.kind == Kind::Vet && options.form != Form::Json;
     if options.only.is_empty() {
-        return Part::ALL.to_vec();
+        return Part::ALL.into_iter().filter(|part| !short || *part != Part::Responses).collect();
     }
     Part::ALL.into_iter().filter(|part| options.only.iter().any(|only| named(*only) == *part)).collect()
 }
 
 /// The conditions that are to hold together. Curvature, which is no equation, is among them where it is named.
-fn wanted(options: &Options) -> Vec<Condition> {
+fn wanted(task: &Task) -> Vec<Condition> {
     let named_or_equation = |part: &Part| match part {
-        Part::Condition(Condition::Curvature) if options.only.is_empty() => None,
+        Part::Condition(Condition::Curvature) if task.options.only.is_empty() => None,
         Part::Condition(condition) => Some(*condition),
-        Part::Recovery | Part::Claims => None,
+        Part::Recovery | Part::Claims | Part::Structure | Part::Responses => None,
     };
-    asked(options).iter().filter_map(named_or_equation).collect()
+    asked(task).iter().filter_map(named_or_equation).collect()
 }
 
 /// The parameters that names stand for, a family for all its members; or the first name that is none.
@@ -212,6 +215,8 @@ fn named(part: arguments::Part) -> Part {
         arguments::Part::Curvature => Part::Condition(Condition::Curvature),
         arguments::Part::Recovery => Part::Recovery,
         arguments::Part::Claims => Part::Claims,
+        arguments::Part::Structure => Part::Structure,
+        arguments::Part::Responses => Part::Responses,
     }
 }
 

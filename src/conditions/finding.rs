@@ -76,7 +76,7 @@ pub struct Witness {
 
 impl Witness {
     /// The witness that a failure is; `vector` is in the quantities' own coordinates.
-    pub(super) fn of(failure: &Failure, vector: Option<Vec<Rational>>) -> Witness {
+    pub fn of(failure: &Failure, vector: Option<Vec<Rational>>) -> Witness {
         Witness { point: failure.point.clone(), place: failure.place(), value: failure.value.clone(), vector }
     }
 }

@@ -29,10 +29,22 @@ pub(super) fn against(
     residuals: &[Residual],
     shown: &dyn Fn(&Residual) -> Option<Equation>,
 ) -> Option<Refuted<Identities>> {
+    among(&mut model.points(), model, prover, subject, residuals, shown)
+}
+
+/// The same among given points.
+pub(super) fn among(
+    points: &mut dyn Iterator<Item = Point>,
+    model: &Model,
+    prover: &mut Prover<'_>,
+    subject: &str,
+    residuals: &[Residual],
+    shown: &dyn Fn(&Residual) -> Option<Equation>,
+) -> Option<Refuted<Identities>> {
     let mut shortest: Vec<&Residual> = residuals.iter().collect();
     shortest.sort_by_key(|r| r.element.len());
     shortest.truncate(MOST_RESIDUALS);
-    let candidates = failures(model, &shortest);
+    let candidates = failures(points, model, &shortest);
     let is_exact = |(residual, point): &&(&Residual, Point)| {
         let value = budget::attempt(WORK, || exact_value(&model.field, &residual.element, point));
         matches!(value, Ok(Some(Value::Exact(_))))
@@ -44,9 +56,13 @@ pub(super) fn against(
 }
 
 /// Differences with admissible points at which they are seen not to vanish.
-fn failures<'r>(model: &Model, residuals: &[&'r Residual]) -> Vec<(&'r Residual, Point)> {
+fn failures<'r>(
+    points: &mut dyn Iterator<Item = Point>,
+    model: &Model,
+    residuals: &[&'r Residual],
+) -> Vec<(&'r Residual, Point)> {
     let mut found = Vec::new();
-    for (count, point) in model.points().take(MOST_POINTS).enumerate() {
+    for (count, point) in points.take(MOST_POINTS).enumerate() {
         let failing = residuals.iter().find(|r| quickly_nonzero(model, r, &point));
         let failing = failing.or_else(|| {
             let stubborn = count < STUBBORN_POINTS;

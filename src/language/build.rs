@@ -196,6 +196,11 @@ impl Reader<'_, '_> {
         if first.as_rule() == Rule::relation {
             return Some(Claim::Relation(self.relation(first)?));
         }
+        if first.as_rule() == Rule::separable {
+            let span = self.builder.span(&first);
+            let group = first.into_inner().find(|part| part.as_rule() == Rule::group_name)?;
+            return Some(Claim::Separable { group: self.builder.name(&group), span });
+        }
         let start = self.builder.span(&first);
         if first.as_rule() == Rule::under {
             return self.under(first);

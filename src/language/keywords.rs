@@ -40,7 +40,7 @@ pub const KEYWORDS: [Keyword; 20] = [
     keyword(
         "claim",
         Some(Rule::claim),
-        "claim FORMULA = FORMULA, claim FORMULA > FORMULA or claim hicksian GOOD = FORMULA",
+        "claim FORMULA = FORMULA, claim FORMULA > FORMULA, claim hicksian GOOD = FORMULA or claim separable GROUP",
         false,
     ),
     keyword("inverse", Some(Rule::inverse), "inverse GOOD = FORMULA or inverse[i] = FORMULA", false),

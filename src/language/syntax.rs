@@ -346,6 +346,13 @@ pub enum Claim {
         /// The whole of it.
         span: Span,
     },
+    /// `claim separable food`
+    Separable {
+        /// The group of goods.
+        group: Name,
+        /// The whole of it.
+        span: Span,
+    },
 }
 
 /// A condition on the system as a whole, as claims name it.

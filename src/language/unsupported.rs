@@ -15,7 +15,6 @@ pub fn refusal(text: &str, offset: usize) -> Option<Diagnostic> {
             let range = symbolic_range(rest)?;
             (format!("a number of goods that is left open (`{range}`) is"), "write a number, as in goods 1..4")
         }
-        "claim" => (format!("claims of the form `{}` are", claim(rest)?), PLAIN_CLAIMS),
         _ => return None,
     };
     let message = format!("{subject} not supported yet by this version");
@@ -23,8 +22,6 @@ pub fn refusal(text: &str, offset: usize) -> Option<Diagnostic> {
 }
 
 const TAKE_OUT: &str = "take the statement out, or put `#` before its lines";
-const PLAIN_CLAIMS: &str =
-    "claims may be identities and inequalities, and formulas for the functions of the theory: claim expenditure = …";
 
 /// What comes before `=` or `:`, at most the first line.
 fn form_span(text: &str, offset: usize) -> Span {
@@ -33,30 +30,8 @@ fn form_span(text: &str, offset: usize) -> Span {
     Span::new(offset, offset + text[..end].trim_end().len())
 }
 
-/// The words at the beginning of a text, up to the first sign.
-fn words(text: &str) -> Vec<&str> {
-    let mut words = Vec::new();
-    let mut rest = text.trim_start();
-    loop {
-        let word = leading_word(rest);
-        if word.is_empty() || words.len() == 4 {
-            return words;
-        }
-        words.push(word);
-        rest = rest[word.len()..].trim_start();
-    }
-}
-
 fn symbolic_range(rest: &str) -> Option<String> {
     let first = leading_number(rest);
     let last = leading_word(rest[first.len()..].trim_start().strip_prefix("..")?.trim_start());
     if first.is_empty() || last.is_empty() { None } else { Some(format!("goods {first}..{last}")) }
-}
-
-/// The form of a claim about the system as a whole.
-fn claim(rest: &str) -> Option<String> {
-    if let ["separable", _] = words(rest)[..] {
-        return Some("claim separable GROUP".to_string());
-    }
-    None
 }

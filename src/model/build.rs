@@ -206,6 +206,10 @@ fn conditional(evaluator: &Evaluator<'_>, stated: &Stated, under: &Under) -> Res
 
 /// The claims that a stated one makes under an environment: one for each link of a chain.
 fn instances(evaluator: &Evaluator<'_>, stated: &Stated, environment: &mut Vec<usize>) -> Result<Vec<Claim>, Failed> {
+    if let Some(goods) = &stated.separable {
+        let statement = Statement::Separable(goods.clone());
+        return Ok(vec![Claim { text: stated.text.clone(), statement, span: stated.span }]);
+    }
     if let (Some(wanted), [side]) = (stated.function, stated.sides.as_slice()) {
         let value = match wanted.is_of_quantities() {
             true => evaluator.in_quantities(|| evaluator.compute(side, environment))?,
@@ -296,6 +300,7 @@ fn assemble(
         Statement::Under { relations, .. } => {
             relations.iter_mut().for_each(|(left, _, right)| (*left, *right) = (fresh(left), fresh(right)));
         }
+        Statement::Separable(_) => {}
     });
     content.given.iter_mut().for_each(|given| given.value = fresh(&given.value));
     content.inverse.iter_mut().for_each(|i| (i.formula, i.share) = (fresh(&i.formula), fresh(&i.share)));

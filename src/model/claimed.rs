@@ -58,6 +58,7 @@ impl Writer<'_> {
     pub fn claim(&mut self, claim: &Claim) -> Stated {
         let (function, value, span) = match claim {
             Claim::Relation(relation) => return self.stated(relation),
+            Claim::Separable { group, span } => return self.separable(group, *span),
             Claim::Function { function, value, span } => (function, value, *span),
             Claim::Under { condition, link, relations, span } => {
                 return self.under(*condition, *link, relations, *span);
@@ -76,7 +77,7 @@ impl Writer<'_> {
             false => plain_text(self.source.slice(span)),
         };
         let function = self.wanted(&free, function);
-        Stated { text, free, sides: vec![side], signs: Vec::new(), function, under: None, span }
+        Stated { text, free, sides: vec![side], signs: Vec::new(), function, under: None, separable: None, span }
     }
 
     /// A claim about a condition: its sides are those of its relations.
@@ -84,7 +85,13 @@ impl Writer<'_> {
         let relations = relations.iter().map(|relation| self.stated(relation)).collect();
         let text = plain_text(self.source.slice(span));
         let under = Some(Under { condition, link, relations });
-        Stated { text, free: Vec::new(), sides: Vec::new(), signs: Vec::new(), function: None, under, span }
+        Stated { under, ..Stated::without_sides(text, span) }
+    }
+
+    fn separable(&mut self, group: &Name, span: Span) -> Stated {
+        let goods = Resolver::new(&self.declarations.names, &[], self.mistakes).members(Some(group));
+        let text = plain_text(self.source.slice(span));
+        Stated { separable: Some(goods), ..Stated::without_sides(text, span) }
     }
 
     /// The free indices on the left of a claim.
@@ -242,7 +249,7 @@ impl Writer<'_> {
     /// A claim about a function of the theory needs a system, or preferences, that the function is one of.
     pub fn claims_have_an_object(&mut self, outline: &Outline<'_>, system: bool) {
         let first = outline.claims.iter().find_map(|claim| match claim {
-            Claim::Function { span, .. } | Claim::Under { span, .. } => Some(*span),
+            Claim::Function { span, .. } | Claim::Under { span, .. } | Claim::Separable { span, .. } => Some(*span),
             Claim::Relation(_) => None,
         });
         if let (Some(span), false, true) = (first, system, self.mistakes.is_empty()) {

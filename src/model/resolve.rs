@@ -132,7 +132,7 @@ impl<'a> Resolver<'a> {
         NodeKind::Over(Box::new(OverNode { product: over.product, binders: over.binders.len(), except, members, body }))
     }
 
-    fn members(&mut self, group: Option<&Name>) -> Vec<usize> {
+    pub fn members(&mut self, group: Option<&Name>) -> Vec<usize> {
         let Some(name) = group else { return (0..self.names.goods.len()).collect() };
         if let Some(group) = self.names.group(&name.text) {
             group.used.set(true);

@@ -24,6 +24,8 @@ pub(super) struct Stated {
     pub function: Option<Wanted>,
     /// The condition on the system that depends on the relations between the sides.
     pub under: Option<Under>,
+    /// The goods that preferences are claimed to be separable in.
+    pub separable: Option<Vec<usize>>,
     pub span: Span,
 }
 
@@ -33,6 +35,14 @@ pub(super) struct Under {
     pub link: Link,
     /// Each with its own free indices.
     pub relations: Vec<Stated>,
+}
+
+impl Stated {
+    /// A statement that is not about sides.
+    pub fn without_sides(text: String, span: Span) -> Stated {
+        let (free, sides, signs) = (Vec::new(), Vec::new(), Vec::new());
+        Stated { text, free, sides, signs, function: None, under: None, separable: None, span }
+    }
 }
 
 /// The right-hand side of a demand statement.
@@ -161,7 +171,7 @@ impl Writer<'_> {
             true => language::relation_wording(relation),
             false => plain_text(self.source.slice(relation.span)),
         };
-        Stated { text, free, sides, signs, function: None, under: None, span: relation.span }
+        Stated { text, free, sides, signs, function: None, under: None, separable: None, span: relation.span }
     }
 
     /// A free index that looks like the name of a good is more likely a slip of the pen.

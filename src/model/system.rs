@@ -163,6 +163,8 @@ pub enum Statement {
         /// The relations between elements of the parameters.
         relations: Vec<(Element, Comparison, Element)>,
     },
+    /// Preferences are weakly separable in these goods, by their positions.
+    Separable(Vec<usize>),
 }
 
 /// A claim of the author; each value of free indices is one of its own.
@@ -181,7 +183,7 @@ impl Claim {
     pub fn sides(&self) -> Option<(&Element, &Element)> {
         match &self.statement {
             Statement::Relation { left, right, .. } => Some((left, right)),
-            Statement::Function { .. } | Statement::Under { .. } => None,
+            Statement::Function { .. } | Statement::Under { .. } | Statement::Separable(_) => None,
         }
     }
 

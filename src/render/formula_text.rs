@@ -207,6 +207,14 @@ fn write_partial(of: &Expression, by: &[Expression], out: &mut String) {
     }
     write_derivand(of, out);
     out.push('/');
+    if let [first, second] = by
+        && first == second
+    {
+        out.push('∂');
+        write_derivand(first, out);
+        out.push_str("^2");
+        return;
+    }
     let bracketed = by.len() > 1;
     if bracketed {
         out.push('(');

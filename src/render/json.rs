@@ -13,6 +13,7 @@ use crate::model::{Claim, Coverage, Model};
 use crate::proof::{Label, Value, store};
 use crate::recovery::{Case, Preferences, Recovered};
 use crate::render::formula_text::plain;
+use crate::render::json_structure::structure;
 use crate::render::notation::best_formula;
 use crate::render::vocabulary;
 use crate::vetting::Vetting;
@@ -20,7 +21,7 @@ use crate::vetting::Vetting;
 /// The version of the schema; it changes only where something is taken away.
 pub const SCHEMA: u32 = 1;
 
-/// One model's verdicts, preferences and claims; with the certificate where it is asked for.
+/// One model's verdicts, preferences, claims and structure; with the certificate where it is asked for.
 pub fn vetting(vetting: &Vetting, certificate: bool) -> Json {
     let model = &vetting.model;
     let condition = |condition: Condition| vetting.finding(condition).map_or(Json::Null, |f| finding(model, f));
@@ -40,6 +41,7 @@ pub fn vetting(vetting: &Vetting, certificate: bool) -> Json {
         },
         "recovered": vetting.recovered.as_ref().map_or(Json::Null, |found| recovered(model, found)),
         "claims": claims,
+        "structure": structure(vetting),
         "side_conditions": side_conditions(vetting),
         "stopped": vetting.stops.iter().map(|(part, why)| json!({"part": part.word(), "limit": why})).collect::<Vec<_>>(),
         "certificate": if certificate { stored(vetting) } else { Json::Null },
@@ -167,10 +169,13 @@ fn case(model: &Model, case: &Case) -> Json {
     })
 }
 
+/// A point at which a claim fails.
+pub(super) fn claim_witness(model: &Model, witness: &Witness) -> Json {
+    json!({"point": point(&model.field, &witness.point), "where": "claim", "value": value(&witness.value)})
+}
+
 fn claim(model: &Model, claim: &Claim, finding: &ClaimFinding) -> Json {
-    let witness = finding.witness.as_ref().map(|witness| {
-        json!({"point": point(&model.field, &witness.point), "where": "claim", "value": value(&witness.value)})
-    });
+    let witness = finding.witness.as_ref().map(|witness| claim_witness(model, witness));
     json!({
         "claim": claim.text,
         "verdict": vocabulary::verdict(finding.verdict),
@@ -202,7 +207,7 @@ fn pointed(model: &Model, difference: &Difference) -> Json {
 fn side_conditions(vetting: &Vetting) -> Vec<String> {
     use crate::algebra::field::Relation;
     let mut out: Vec<String> = Vec::new();
-    for side in vetting.derivation.steps().iter().flat_map(|step| step.sides()).filter(|side| !side.discharged) {
+    for side in vetting.essential_steps().iter().flat_map(|step| step.sides()).filter(|side| !side.discharged) {
         let sign = match side.relation {
             Relation::Positive => "> 0",
             Relation::NonNegative => ">= 0",

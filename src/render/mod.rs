@@ -10,6 +10,7 @@ pub mod formula_text;
 pub mod html;
 pub mod json;
 pub mod json_restrictions;
+mod json_structure;
 pub mod latex;
 mod latex_display;
 mod latex_escape;

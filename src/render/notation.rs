@@ -22,6 +22,9 @@ pub struct Notation<'a> {
     outlay: String,
     transformed: String,
     inverse: String,
+    income_elasticity: String,
+    price_elasticity: String,
+    proportion: String,
     arguments: Vec<Expression>,
 }
 
@@ -48,6 +51,9 @@ impl<'a> Notation<'a> {
                 false => free(&["S", "K", "Sigma", "Slutsky"]),
             },
             inverse: free(&["pi", "phi", "Pi", "inverse"]),
+            income_elasticity: free(&["eta", "E_m", "incomeelasticity"]),
+            price_elasticity: free(&["epsilon", "varepsilon", "xi", "priceelasticity"]),
+            proportion: free(&["phi", "kappa", "Phi", "lambda", "proportion"]),
             transformed: free(&["z", "Z", "zeta", "transformed"]),
             outlay: free(&["y", "Y", "z", "outlay"]),
             arguments: arguments(model, &taken),
@@ -164,6 +170,21 @@ impl<'a> Notation<'a> {
     /// π_i, price over income.
     pub fn inverse_letter(&self) -> Object {
         Object::new(self.inverse.clone())
+    }
+
+    /// η.
+    pub fn income_elasticity(&self) -> Object {
+        Object::new(self.income_elasticity.clone())
+    }
+
+    /// ε.
+    pub fn price_elasticity(&self) -> Object {
+        Object::new(self.price_elasticity.clone())
+    }
+
+    /// A letter for a factor of proportion.
+    pub fn proportion(&self) -> Expression {
+        Expression::symbol(self.proportion.clone())
     }
 
     /// The letters of quantities with an index.

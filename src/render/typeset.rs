@@ -260,7 +260,14 @@ fn partial(of: &Expression, by: &[Expression], style: Style) -> Piece {
     }
     let above = with_partial(sign, typeset(of, inner));
     let mut below = Piece::empty(Level::Product);
-    for variable in by {
+    let squared = match by {
+        [first, second] if first == second => {
+            let two = Expression::Number(Rational::from_integer(2.into()));
+            vec![Expression::Power(Box::new(first.clone()), Box::new(two))]
+        }
+        _ => by.to_vec(),
+    };
+    for variable in &squared {
         let joint = if below.node.is_empty() { Sign::Juxtaposed } else { Sign::Thin };
         below.append(joint, &with_partial(Node::Sign(Sign::Partial), typeset(variable, inner)));
     }

@@ -10,9 +10,10 @@ use std::time::{Duration, Instant};
 use crate::algebra::budget::{self, Limits, Stopped};
 use crate::conditions::{self, Charts, ClaimFinding, Condition, Finding, Verdict};
 use crate::model::{Claim, Model, Statement};
-use crate::proof::{Derivation, Prover};
+use crate::proof::{Derivation, Prover, Step};
 use crate::recovery::{self, Recovered, given};
 use crate::restrictions;
+use crate::structure::{self, AllResponses, Structure};
 
 /// A part of the work that can be asked for by itself.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -23,17 +24,23 @@ pub enum Part {
     Recovery,
     /// The author's claims.
     Claims,
+    /// The structure of the preferences behind the demands.
+    Structure,
+    /// How demands respond to income and prices.
+    Responses,
 }
 
 impl Part {
     /// All parts, in the order in which they are worked.
-    pub const ALL: [Part; 6] = [
+    pub const ALL: [Part; 8] = [
         Part::Condition(Condition::Homogeneity),
         Part::Condition(Condition::AddingUp),
         Part::Condition(Condition::Symmetry),
         Part::Condition(Condition::Curvature),
         Part::Recovery,
         Part::Claims,
+        Part::Structure,
+        Part::Responses,
     ];
 
     /// The word for it, as on the command line.
@@ -45,6 +52,8 @@ impl Part {
             Part::Condition(Condition::Curvature) => "curvature",
             Part::Recovery => "recovery",
             Part::Claims => "claims",
+            Part::Structure => "structure",
+            Part::Responses => "responses",
         }
     }
 }
@@ -79,6 +88,12 @@ pub struct Vetting {
     pub recovered: Option<Recovered>,
     /// A finding for each claim.
     pub claims: Vec<ClaimFinding>,
+    /// The structure of the demands; `None` where it was not asked for, or the model has none.
+    pub structure: Option<Structure>,
+    /// The signs of responses and the elasticities; `None` where they were not asked for, or the model has no demands.
+    pub responses: Option<AllResponses>,
+    /// How many steps the verdicts and the preferences have to themselves; those behind them are about structure.
+    essential: usize,
     /// The parts that ran out of their limits.
     pub stops: Vec<(Part, Stopped)>,
     /// Every step that established something.
@@ -91,6 +106,12 @@ impl Vetting {
     /// The finding on a condition.
     pub fn finding(&self, condition: Condition) -> Option<&Finding> {
         self.findings.iter().find(|finding| finding.condition == condition)
+    }
+
+    /// The steps that the verdicts and the preferences rest on.
+    pub fn essential_steps(&self) -> &[Step] {
+        let steps = self.derivation.steps();
+        steps.get(..self.essential).unwrap_or(steps)
     }
 
     /// All verdicts that were asked for, on conditions and claims.
@@ -146,9 +167,29 @@ pub fn vet(model: Rc<Model>, asked: &[Part], allowance: Allowance) -> Vetting {
             claims.push(found.unwrap_or_else(|stopped| ClaimFinding::undecided(stopped.describe())));
         }
     }
+    let (mut structure, essential) = (None, prover.derivation().steps().len());
+    if asked.contains(&Part::Structure) {
+        structure = run.part(Part::Structure, || structure::examine(&model, &mut prover, &findings)).ok().flatten();
+    }
+    let mut responses = None;
+    if asked.contains(&Part::Responses) {
+        responses = run.part(Part::Responses, || structure::responses(&model, &mut prover, &findings)).ok().flatten();
+    }
     let derivation = prover.into_derivation();
     let Run { stops, timings, .. } = run;
-    Vetting { asked: asked.to_vec(), findings, recovered, claims, stops, derivation, timings, model }
+    Vetting {
+        asked: asked.to_vec(),
+        findings,
+        recovered,
+        claims,
+        structure,
+        responses,
+        essential,
+        stops,
+        derivation,
+        timings,
+        model,
+    }
 }
 
 /// The preferences, unless the Slutsky matrix is known not to be symmetric.

@@ -26,5 +26,6 @@ pub fn examine_claim(model: &Model, claim: &Claim, charts: &Charts, prover: &mut
         }
         // the floor of restrictions judges these
         Statement::Under { .. } => ClaimFinding::undecided("the parameter restrictions were not looked for"),
+        Statement::Separable(goods) => super::separability::examine(model, prover, &claim.text, goods),
     }
 }

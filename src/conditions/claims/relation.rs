@@ -6,10 +6,10 @@ use crate::algebra::field::Relation;
 use crate::algebra::generator::Element;
 use crate::language::Comparison;
 use crate::model::Model;
-use crate::proof::{Bounded, Equation, Expression, Label, Prover, Residual};
+use crate::proof::{Bounded, Equation, Expression, Label, Prover};
 
+use super::super::fact;
 use super::super::finding::{ClaimFinding, Verdict, Witness};
-use super::super::witness;
 use super::difference::difference;
 
 /// How many points are looked at against an inequality.
@@ -39,22 +39,13 @@ pub(super) fn examine(
 fn identity(model: &Model, prover: &mut Prover<'_>, text: &str, left: Element, right: Element) -> ClaimFinding {
     let sides = (left.clone(), right.clone());
     let equation = Equation { label: Label::Whole, left: Expression::element(left), right: Expression::element(right) };
-    let residuals = match prover.identities(text, vec![equation.clone()], &[]) {
-        Ok(proof) => return ClaimFinding::settled(Verdict::Proven, None, proof.step()),
-        Err(residuals) => residuals,
-    };
-    match witness::against(model, prover, text, &residuals, &|_: &Residual| Some(equation.clone())) {
-        Some(refuted) => {
-            let settled =
-                ClaimFinding::settled(Verdict::Refuted, Some(Witness::of(refuted.failure(), None)), refuted.step());
-            let difference = difference(&model.field, &sides.1, &sides.0);
-            let left = || budget::attempt(WORK, || model.field.reduce(&sides.0)).ok();
-            ClaimFinding { correct: difference.as_ref().and_then(|_| left()), difference, ..settled }
-        }
-        None => ClaimFinding::undecided(
-            "the normal form of the difference is not zero, and no admissible point was found that shows it",
-        ),
+    let finding = fact::identities(model, prover, text, &[equation], &[], &mut model.points());
+    if finding.verdict != Verdict::Refuted {
+        return finding;
     }
+    let difference = difference(&model.field, &sides.1, &sides.0);
+    let left = || budget::attempt(WORK, || model.field.reduce(&sides.0)).ok();
+    ClaimFinding { correct: difference.as_ref().and_then(|_| left()), difference, ..finding }
 }
 
 fn bound(model: &Model, prover: &mut Prover<'_>, text: &str, e: Element, relation: Relation) -> ClaimFinding {

@@ -9,7 +9,7 @@ use crate::render::notation::Notation;
 use crate::render::report::starting::Start;
 use crate::render::report::words::{short, text};
 use crate::render::report::working::{Scribe, square, sum, term};
-use crate::render::report::{claims, conditions, recovery, system};
+use crate::render::report::{claims, conditions, recovery, responses, structure, system};
 use crate::vetting::Vetting;
 use crate::vetting::appendix::Appendix;
 
@@ -31,6 +31,8 @@ pub fn derivation(vetting: &Vetting, appendix: &Appendix) -> Document {
     if let Some(recovered) = &vetting.recovered {
         blocks.extend(recovery::sections(&scribe, recovered));
     }
+    blocks.extend(vetting.structure.iter().flat_map(|found| structure::section(&notation, found)));
+    blocks.extend(vetting.responses.iter().flat_map(|found| responses::sections(&notation, found)));
     if !vetting.claims.is_empty() {
         blocks.push(heading("Claims"));
         blocks.push(Block::Verdicts(claims::claim_lines(&notation, vetting)));

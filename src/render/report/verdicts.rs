@@ -11,6 +11,7 @@ use crate::render::notation::Notation;
 use crate::render::report::claims::claim_lines;
 use crate::render::report::conditions::quadratic_form;
 use crate::render::report::preferences;
+use crate::render::report::structure;
 use crate::render::report::words::{enumerated, listed, point, relation, short, text, value};
 use crate::render::vocabulary;
 use crate::vetting::{Part, Vetting};
@@ -22,6 +23,7 @@ pub fn answer(vetting: &Vetting) -> Document {
     let mut lines: Vec<VerdictLine> =
         vetting.findings.iter().map(|finding| condition_line(&notation, finding)).collect();
     lines.extend(vetting.recovered.as_ref().map(|recovered| recovery_line(vetting, recovered)));
+    lines.extend(vetting.structure.as_ref().and_then(|found| structure::line(&notation, found)));
     if !lines.is_empty() {
         blocks.push(Block::Verdicts(lines));
     }

@@ -1,0 +1,181 @@
+//! The system that facts are looked for in: shares, their slopes in income, and points to refute at.
+
+use std::cell::RefCell;
+
+use crate::algebra::budget;
+use crate::algebra::evaluation::Point;
+use crate::algebra::field::{Field, Relation};
+use crate::algebra::generator::Element;
+use crate::algebra::monomial::Var;
+use crate::algebra::polynomial::Poly;
+use crate::conditions::{self, ClaimFinding, Condition, Coordinates, Finding, System, Verdict, fact};
+use crate::model::{Coverage, Model, PointSearch};
+use crate::proof::{Equation, Expression, Factor, FunctionId, Label, Prover, StepId};
+
+/// How many points are looked at against one fact; in larger systems a point takes longer, and shows more.
+const MOST_POINTS: usize = 24;
+/// The same for a system with as many goods, and with more.
+const FEWER_POINTS: [(usize, usize); 2] = [(8, 6), (24, 2)];
+/// The work that the search for one point may take.
+const POINT_WORK: u64 = 50_000_000;
+/// The work that one reduction may take.
+const REDUCING: u64 = 4_000_000;
+
+/// A system in which facts are looked for.
+pub struct Question<'a> {
+    /// The model.
+    pub model: &'a Model,
+    /// Its demands.
+    pub system: System,
+    /// Income.
+    pub income: Var,
+    /// wᵢ.
+    pub shares: Vec<FunctionId>,
+    /// m ∂wᵢ/∂m.
+    pub engel: Vec<FunctionId>,
+    /// ∂(pᵢxᵢ)/∂m.
+    pub marginal: Vec<FunctionId>,
+    /// The step that says what the two are.
+    pub links: Vec<StepId>,
+    /// Whether the system is complete, and its demands come from preferences: homogeneity, adding-up and symmetry.
+    pub consumer: bool,
+    /// Whether the Slutsky matrix is symmetric.
+    pub symmetric: bool,
+    points: RefCell<Points<'a>>,
+}
+
+/// Points as they are found.
+struct Points<'a> {
+    found: Vec<Point>,
+    search: PointSearch<'a>,
+    most: usize,
+}
+
+impl<'a> Question<'a> {
+    /// The question about a model; `None` without Marshallian demands.
+    pub fn of(model: &'a Model, prover: &mut Prover<'_>, findings: &[Finding]) -> Option<Question<'a>> {
+        let income = model.income.filter(|_| !model.demands.is_empty())?;
+        let system = System::of(model, prover)?;
+        let field = &model.field;
+        let (mut shares, mut engel, mut marginal, mut links) = (Vec::new(), Vec::new(), Vec::new(), Vec::new());
+        let mut quantities = Vec::new();
+        for (place, good) in model.goods.iter().enumerate() {
+            let f = *system.collected.get(place)?;
+            let itself = prover.value(&Factor::Function(f).into());
+            quantities.push(itself.clone());
+            let share = match system.coordinates {
+                Coordinates::Shares => itself,
+                Coordinates::Outlays => field.quotient(&itself, &Poly::var(income)).ok()?,
+            };
+            let w = prover.define(&format!("share {}", good.name), &share);
+            let slope = Expression::from(Factor::LogSlope(w, income));
+            let outlay = slope.clone().plus(1, vec![Factor::Function(w)]);
+            let (engel_slope, marginal_outlay) = (brief(prover, &slope), brief(prover, &outlay));
+            let d = prover.define(&format!("Engel slope {}", good.name), &engel_slope);
+            let g = prover.define(&format!("marginal outlay {}", good.name), &marginal_outlay);
+            links.push(Equation { label: Label::Pair(place, 0), left: slope, right: Factor::Function(d).into() });
+            links.push(Equation { label: Label::Pair(place, 1), left: outlay, right: Factor::Function(g).into() });
+            shares.push(w);
+            engel.push(d);
+            marginal.push(g);
+        }
+        let links = prover.identities("slopes in income", links, &[]).ok().map(|proof| proof.step())?;
+        let mut proven = |condition| is_proven(condition, model, prover, findings);
+        let symmetric = proven(Condition::Symmetry);
+        let consumer = symmetric
+            && model.coverage == Coverage::Complete
+            && proven(Condition::Homogeneity)
+            && proven(Condition::AddingUp);
+        let fewer = FEWER_POINTS.into_iter().filter(|(goods, _)| model.goods.len() > *goods).map(|(_, points)| points);
+        let search = model.points().with_positive(&quantities);
+        let points = Points { found: Vec::new(), search, most: fewer.last().unwrap_or(MOST_POINTS) };
+        let (links, points) = (vec![links], RefCell::new(points));
+        Some(Question { model, system, income, shares, engel, marginal, links, consumer, symmetric, points })
+    }
+
+    /// The number of goods.
+    pub fn size(&self) -> usize {
+        self.shares.len()
+    }
+
+    /// The field.
+    pub fn field(&self) -> &'a Field {
+        &self.model.field
+    }
+
+    /// Admissible points at which every quantity is positive. Those found are kept.
+    pub fn points(&self) -> impl Iterator<Item = Point> + '_ {
+        (0..).map_while(|place| self.points.borrow_mut().nth(place))
+    }
+
+    /// Settles a family of identities.
+    pub fn settle(&self, prover: &mut Prover<'_>, subject: &str, equations: &[Equation]) -> ClaimFinding {
+        let mut points = self.points();
+        let finding = fact::identities(self.model, prover, subject, equations, &self.links, &mut points);
+        let steps = finding.steps.iter().filter_map(|id| prover.derivation().step(*id));
+        match finding.verdict {
+            Verdict::Proven if steps.flat_map(|step| step.sides()).any(|side| !side.discharged) => {
+                ClaimFinding::undecided("the proof leans on something that does not follow from the assumptions")
+            }
+            _ => finding,
+        }
+    }
+
+    /// That every quantity is positive.
+    pub fn domain(&self) -> Vec<(Expression, Relation)> {
+        let functions = self.system.collected.iter();
+        functions.map(|f| (Expression::from(Factor::Function(*f)), Relation::Positive)).collect()
+    }
+
+    /// A point at which the expression is not zero, as a step.
+    pub fn not_zero(&self, prover: &mut Prover<'_>, subject: &str, expression: &Expression) -> Option<StepId> {
+        let equation = Equation { label: Label::Whole, left: expression.clone(), right: Expression::zero() };
+        self.points().find_map(|point| Some(prover.refute(subject, equation.clone(), &point)?.step()))
+    }
+
+    /// Whether the normal form of a function is zero.
+    pub fn vanishes(&self, prover: &mut Prover<'_>, f: FunctionId) -> bool {
+        let value = prover.value(&Factor::Function(f).into());
+        self.field().is_zero(&value)
+    }
+
+    /// A good for which the function does not vanish.
+    pub fn pivot(&self, prover: &mut Prover<'_>, functions: &[FunctionId]) -> Option<usize> {
+        let length = |f: &FunctionId| prover.derivation().function(*f).map_or(0, |function| function.element.len());
+        let mut order: Vec<(usize, usize)> = functions.iter().map(length).enumerate().map(|(i, l)| (l, i)).collect();
+        order.sort_unstable();
+        order.into_iter().map(|(_, good)| good).find(|good| !self.vanishes(prover, functions[*good]))
+    }
+}
+
+impl Points<'_> {
+    fn nth(&mut self, place: usize) -> Option<Point> {
+        while self.found.len() <= place && self.found.len() < self.most {
+            let next = budget::attempt(POINT_WORK, || self.search.next()).ok().flatten()?;
+            self.found.push(next);
+        }
+        self.found.get(place).cloned()
+    }
+}
+
+/// The value of an expression, reduced where that is cheap.
+pub fn brief(prover: &mut Prover<'_>, expression: &Expression) -> Element {
+    let value = prover.value(expression);
+    let field = prover.field();
+    budget::attempt(REDUCING, || field.reduce(&value)).unwrap_or(value)
+}
+
+/// a·b = c·d between functions.
+pub fn cross(label: Label, [a, b, c, d]: [FunctionId; 4]) -> Equation {
+    let both =
+        |f: FunctionId, g: FunctionId| Expression::zero().plus(1, vec![Factor::Function(f), Factor::Function(g)]);
+    Equation { label, left: both(a, b), right: both(c, d) }
+}
+
+/// Whether a condition is proven, among the findings or anew.
+fn is_proven(condition: Condition, model: &Model, prover: &mut Prover<'_>, findings: &[Finding]) -> bool {
+    match findings.iter().find(|finding| finding.condition == condition) {
+        Some(finding) => finding.verdict == Verdict::Proven,
+        None => conditions::differences(condition, model, prover).is_some_and(|left| left.is_empty()),
+    }
+}
