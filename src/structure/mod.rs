@@ -100,7 +100,7 @@ impl Structure {
 }
 
 /// The work that one property may take.
-const FACT_WORK: u64 = 60_000_000;
+const FACT_WORK: u64 = 30_000_000;
 /// Properties that take an equation for each pair of goods are asked of systems up to this size.
 const MOST_GOODS_IN_PAIRS: usize = 16;
 
