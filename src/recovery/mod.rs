@@ -48,6 +48,8 @@ pub struct Preferences {
     pub indirect_utility: Option<Element>,
     /// ∂e/∂pᵢ, one for each good; empty without e.
     pub hicksian: Vec<Element>,
+    /// The Marshallian demands of given preferences, and where they end.
+    pub demanded: Option<given::Demanded>,
     /// U(x), where prices could be eliminated.
     pub utility: Option<Element>,
     /// How they were found.

@@ -118,6 +118,7 @@ fn preferences(
         expenditure,
         indirect_utility: proposal.indirect_utility,
         hicksian,
+        demanded: None,
         utility: None,
         method,
         working: proposal.working,

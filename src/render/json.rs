@@ -11,6 +11,7 @@ use crate::algebra::monomial::Var;
 use crate::conditions::{Branch, ClaimFinding, Condition, Difference, Finding, Witness};
 use crate::model::{Claim, Coverage, Model};
 use crate::proof::{Label, Value, store};
+use crate::recovery::given::Demanded;
 use crate::recovery::{Case, Preferences, Recovered};
 use crate::render::formula_text::plain;
 use crate::render::json_structure::structure;
@@ -140,6 +141,7 @@ fn found(model: &Model, found: &Preferences) -> Json {
         "expenditure": text(&found.expenditure),
         "indirect_utility": text(&found.indirect_utility),
         "hicksian": hicksian,
+        "demanded": found.demanded.as_ref().map(|all| demanded(model, all)),
         "utility": text(&found.utility),
         "utility_symbol": model.utility_name,
         "method": vocabulary::method(found.method),
@@ -150,6 +152,24 @@ fn found(model: &Model, found: &Preferences) -> Json {
         },
         "conditions": found.conditions.iter().map(|e| format!("{} != 0", formula(&model.field, e))).collect::<Vec<_>>(),
         "cases": found.cases.iter().map(|each| case(model, each)).collect::<Vec<_>>(),
+    })
+}
+
+/// The Marshallian demands of given preferences, where they are choices with all quantities positive, points where they
+/// are not, and pairs of goods of which at most one is bought unless their prices stand in the given ratio.
+fn demanded(model: &Model, demanded: &Demanded) -> Json {
+    let name = |good: usize| model.goods.get(good).map(|good| good.name.clone()).unwrap_or_default();
+    let quantity = |good: usize| demanded.quantities.get(good).map(|x| formula(&model.field, x)).unwrap_or_default();
+    let marshallian: Map<String, Json> =
+        (0..demanded.quantities.len()).map(|good| (name(good), json!(quantity(good)))).collect();
+    let corner =
+        |(good, witness): &(usize, Witness)| json!({"good": name(*good), "witness": claim_witness(model, witness)});
+    let rate = |(i, j, rate): &(usize, usize, Element)| json!({"goods": [name(*i), name(*j)], "rate_of_substitution": formula(&model.field, rate)});
+    json!({
+        "marshallian": marshallian,
+        "interior": demanded.doubtful.iter().map(|good| format!("{} > 0", quantity(*good))).collect::<Vec<_>>(),
+        "corners": demanded.corners.iter().map(corner).collect::<Vec<_>>(),
+        "constant_rates": demanded.constant_rates.iter().map(rate).collect::<Vec<_>>(),
     })
 }
 

@@ -149,6 +149,9 @@ pub fn vet(model: Rc<Model>, asked: &[Part], allowance: Allowance) -> Vetting {
         let part = if asked.contains(&Part::Claims) { Part::Claims } else { Part::Recovery };
         charts = run.part(part, || given::charts(&model, recovered.as_ref(), &mut prover)).unwrap_or_default();
         recovered = given::derived(&model, &charts).or(recovered);
+        if let Some(Recovered::Found(found)) = &mut recovered {
+            found.demanded = run.part(part, || given::demanded(&model, &charts, &mut prover)).ok().flatten();
+        }
     }
     recovered = recovered.filter(|_| asked.contains(&Part::Recovery));
     let mut claims = Vec::new();

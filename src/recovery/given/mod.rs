@@ -6,6 +6,7 @@
 //! utility, and for a direct utility the first-order conditions, solved where that is possible ([`direct`]).
 
 mod claimed;
+mod corners;
 mod direct;
 mod functions;
 mod inverse;
@@ -20,6 +21,8 @@ use crate::conditions::{self, Verdict};
 use crate::language::Preferences as Kind;
 use crate::model::{Model, Statement};
 use crate::proof::{Expression, Prover};
+
+pub use corners::{Demanded, demanded};
 
 use super::check::Checks;
 use super::proposal::Working;
@@ -145,6 +148,7 @@ fn nothing(method: Method) -> Preferences {
         expenditure: None,
         indirect_utility: None,
         hicksian: Vec::new(),
+        demanded: None,
         utility: None,
         method,
         working: Working::default(),

@@ -2,6 +2,7 @@
 
 mod claims;
 mod conditions;
+mod corners;
 mod derivation;
 mod preferences;
 mod recovery;

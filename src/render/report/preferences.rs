@@ -5,6 +5,7 @@ use crate::recovery::{Case, Preferences, Recovered};
 use crate::render::document::{Block, Equation, Inline, Relation};
 use crate::render::expression::Expression;
 use crate::render::notation::Notation;
+use crate::render::report::corners;
 use crate::render::report::words::{listed, relation, text};
 
 /// Expenditure and indirect utility, the conditions and the special cases. The author's abbreviations stand as such.
@@ -12,12 +13,14 @@ pub fn summary(notation: &Notation<'_>, found: &Preferences) -> Vec<Block> {
     let mut blocks = vec![Block::Display(functions(notation, found))];
     blocks.extend(conditions(notation, &found.conditions));
     blocks.extend(found.cases.iter().flat_map(|each| case(notation, each)));
+    blocks.extend(found.demanded.iter().flat_map(|demanded| corners::remarks(notation, demanded)));
     blocks
 }
 
 /// Hicksian demands and, where it was found, direct utility.
 pub fn further(notation: &Notation<'_>, found: &Preferences) -> Vec<Block> {
-    let mut blocks = Vec::new();
+    let mut blocks: Vec<Block> =
+        found.demanded.iter().flat_map(|demanded| corners::demands(notation, demanded)).collect();
     if !found.hicksian.is_empty() {
         let equations: Vec<Equation> = found
             .hicksian
