@@ -5,7 +5,7 @@ use crate::recovery::given::Demanded;
 use crate::render::document::{Block, Equation, Inline, Relation};
 use crate::render::expression::Expression;
 use crate::render::notation::Notation;
-use crate::render::report::words::{listed, point, relation, short, text, value};
+use crate::render::report::words::{enumerated, listed, point, relation, short, text, value};
 
 /// The longest quantity that is written out in a remark, in characters.
 const LONGEST: usize = 120;
@@ -45,11 +45,19 @@ fn interior(notation: &Notation<'_>, demanded: &Demanded) -> Option<Block> {
         return None;
     }
     let zero = || Expression::Number(num_rational::Ratio::from_integer(0.into()));
-    let condition = |good: &usize| match demanded.quantities.get(*good).and_then(|x| short(notation, x, LONGEST)) {
-        Some(x) => vec![relation(x, Relation::Greater, zero())],
-        None => vec![text(format!("the demand for {} is positive", notation.good(*good)))],
-    };
-    let conditions = demanded.doubtful.iter().map(condition).collect();
+    let mut conditions = Vec::new();
+    let mut long = Vec::new();
+    for good in &demanded.doubtful {
+        match demanded.quantities.get(*good).and_then(|x| short(notation, x, LONGEST)) {
+            Some(x) => conditions.push(vec![relation(x, Relation::Greater, zero())]),
+            None => long.push(notation.good(*good)),
+        }
+    }
+    match long.as_slice() {
+        [] => {}
+        [one] => conditions.push(vec![text(format!("the demand for {one} is positive"))]),
+        _ => conditions.push(vec![text(format!("the demands for {} are positive", enumerated(&long)))]),
+    }
     let mut words = vec![text("These are choices with all quantities positive only where ")];
     words.extend(listed(conditions, " and "));
     words.push(text(match notation.model().given.as_ref().map(|given| given.kind) {
