@@ -117,6 +117,22 @@ impl Field {
         self.tables.borrow_mut().shorthands.push(Shorthand { symbol, value: value.clone() });
     }
 
+    /// Lets reports write ln `symbol` for the logarithm of `value`, where that is a product of exponentials whose
+    /// exponents have several terms together.
+    pub fn logarithm_shorthand(&self, symbol: Var, value: &Element) {
+        let Some((_, monomial)) = value.as_monomial() else { return };
+        let exponent = |(v, k): (Var, i32)| match &*self.kind(v) {
+            Kind::Exp(exponent) => Some(exponent.scale(&Rational::from_integer(k.into()))),
+            _ => None,
+        };
+        let Some(exponents) = monomial.iter().map(exponent).collect::<Option<Vec<Element>>>() else { return };
+        let sum = Poly::sum(exponents);
+        if sum.len() > 1 {
+            let logarithm = self.add(Kind::Ln(Base::Var(symbol)), None);
+            self.shorthand(logarithm, &sum);
+        }
+    }
+
     /// π, as a positive constant.
     pub fn pi(&self) -> Element {
         let known = self.tables.borrow().pi;

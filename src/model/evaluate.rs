@@ -130,6 +130,7 @@ impl<'s> Evaluator<'s> {
                 let symbol = self.field.symbol(name, Role::Unknown);
                 latex.iter().for_each(|latex| self.field.set_latex(symbol, latex));
                 self.field.shorthand(symbol, element);
+                self.field.logarithm_shorthand(symbol, element);
             }
             _ => {}
         }
