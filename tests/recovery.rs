@@ -118,6 +118,24 @@ fn price_independent_generalised_linearity() {
     );
 }
 
+/// The price index stays a name in v: its many terms are put back in no step.
+#[test]
+fn many_goods_with_a_price_index_in_sight() {
+    let system = |last: &str| {
+        format!(
+            "goods 1..12\nprices p[i]\nincome m\nparameters a0, a[i], b[i], h[i], g[i,j]\nassume g[i,j] = g[j,i]\n\
+             assume sum over i of (a[i]) = 1, sum over i of (b[i]) = 0, sum over i of (h[i]) = 0\n\
+             assume sum over j of (g[i,j]) = 0\nlet B = product over k of (p[k]^b[k])\n\
+             let lnP = a0 + sum over k of (a[k]*ln(p[k])) + sum over k, l of (g[k,l]*ln(p[k])*ln(p[l]))/2\n\
+             share[i] = a[i] + sum over j of (g[i,j]*ln(p[j])) + b[i]*(ln(m) - lnP){last}"
+        )
+    };
+    let found = recovers(&system(""), "(ln(m) - lnP)/B", Method::Linear);
+    assert!(found.indirect_utility.is_some_and(|v| v.len() == 2));
+    let quadratic = system(" + h[i]/B*(ln(m) - lnP)^2");
+    recovers(&quadratic, "-B/(ln(m) - lnP) - sum over k of (h[k]*ln(p[k]))", Method::Riccati);
+}
+
 #[test]
 fn gorman_form_with_roots() {
     recovers(

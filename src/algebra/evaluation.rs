@@ -77,22 +77,21 @@ impl Field {
         if let Some(value) = known.get(&var) {
             return Ok(self.current(value));
         }
-        let touched = self.support(var).iter().any(|v| *v != var && known.contains_key(v));
-        let value = if !touched {
-            self.current(&Poly::var(var))
-        } else {
-            match &*self.kind(var) {
-                Kind::Symbol(_) | Kind::Ln(Base::Number(_)) => Poly::var(var),
-                Kind::Ln(Base::Var(base)) => self.ln(&self.rebuild_variable(*base, known)?)?,
-                Kind::Ln(Base::Sum(value)) => self.ln(&self.rebuild(value, known)?)?,
-                Kind::Exp(argument) => self.exp(&self.rebuild(argument, known)?)?,
-                Kind::Sum { value, root } => {
-                    let value = self.rebuild(value, known)?;
-                    let part = Poly::constant(&Rational::new(1.into(), (*root).into()));
-                    if *root == 1 { value } else { self.power(&value, &part)? }
-                }
-                Kind::Special(function, argument) => self.special(*function, &self.rebuild(argument, known)?)?,
+        // what is untouched is not remembered: `known` holds what makes others change
+        if !self.support(var).iter().any(|v| *v != var && known.contains_key(v)) {
+            return Ok(self.current(&Poly::var(var)));
+        }
+        let value = match &*self.kind(var) {
+            Kind::Symbol(_) | Kind::Ln(Base::Number(_)) => Poly::var(var),
+            Kind::Ln(Base::Var(base)) => self.ln(&self.rebuild_variable(*base, known)?)?,
+            Kind::Ln(Base::Sum(value)) => self.ln(&self.rebuild(value, known)?)?,
+            Kind::Exp(argument) => self.exp(&self.rebuild(argument, known)?)?,
+            Kind::Sum { value, root } => {
+                let value = self.rebuild(value, known)?;
+                let part = Poly::constant(&Rational::new(1.into(), (*root).into()));
+                if *root == 1 { value } else { self.power(&value, &part)? }
             }
+            Kind::Special(function, argument) => self.special(*function, &self.rebuild(argument, known)?)?,
         };
         known.insert(var, value.clone());
         Ok(value)

@@ -13,9 +13,10 @@ impl Field {
         let shorthands = self.tables.borrow().shorthands.clone();
         let mut e = e.clone();
         for shorthand in shorthands.iter().rev() {
-            let value = self.expand(&shorthand.value);
-            if e.as_var() != Some(shorthand.symbol) {
-                e = fold(&e, shorthand, &value);
+            let value = shorthand.expanded.get_or_init(|| self.expand(&shorthand.value));
+            let too_long = value.len() > 1 && value.len() > e.len();
+            if !too_long && e.as_var() != Some(shorthand.symbol) {
+                e = fold(&e, shorthand, &self.current(value));
             }
         }
         e
@@ -35,9 +36,6 @@ fn fold(e: &Element, shorthand: &Shorthand, value: &Poly) -> Element {
 /// Replaces groups of terms: e = Σ μ·c with c in the variables of the value; c = q·value + rest becomes q·symbol + rest
 /// where that is shorter.
 fn fold_sum(e: &Element, symbol: Var, value: &Poly) -> Element {
-    if e.len() < value.len() {
-        return e.clone();
-    }
     let own = value.vars();
     let groups = e.collect(|v| own.binary_search(&v).is_err());
     let parts = groups.into_iter().map(|(outside, inside)| {

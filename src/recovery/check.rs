@@ -44,7 +44,8 @@ pub fn establish(system: &System, proposal: &Proposal, utility: Var, prover: &mu
     let Some(e) = &proposal.expenditure else { return Some(found) };
     let inverse = inverse(system, e, v, utility, roy, prover);
     let facts = domain_of_utility(field, system.income, proposal, e);
-    let shephard = shephard(system, e, &facts, prover);
+    let with = at_expenditure(system, proposal, e, &facts);
+    let shephard = shephard(system, e, &with, &facts, prover);
     found.checks.inverse = inverse.is_some();
     found.checks.shephard = shephard.is_some();
     found.steps.extend(inverse.into_iter().chain(shephard));
@@ -80,14 +81,41 @@ fn inverse(
     prover.identity("expenditure at the utility reached", left, right, &[roy]).ok().map(|proved| proved.step())
 }
 
-fn shephard(system: &System, e: &Element, facts: &[(Element, Relation)], prover: &mut Prover<'_>) -> Option<StepId> {
+/// What is put in for income, and for its logarithm where ln e is known to be something shorter.
+fn at_expenditure(
+    system: &System,
+    proposal: &Proposal,
+    e: &Element,
+    facts: &[(Element, Relation)],
+) -> Vec<(Var, Element)> {
+    let field = system.field;
+    let mut with = vec![(system.income, e.clone())];
+    let own = field.ln(&Poly::var(system.income)).ok().and_then(|log| log.as_var());
+    if let (Some(log), Some(level)) = (own, &proposal.level)
+        && field.current(&proposal.working.z).as_var() == Some(log)
+    {
+        let same = || field.ln(e).is_ok_and(|ln_e| field.is_zero(&(&field.current(&ln_e) - &field.current(level))));
+        if field.suppose(facts, same) {
+            with.push((log, level.clone()));
+        }
+    }
+    with
+}
+
+fn shephard(
+    system: &System,
+    e: &Element,
+    with: &[(Var, Element)],
+    facts: &[(Element, Relation)],
+    prover: &mut Prover<'_>,
+) -> Option<StepId> {
     let further: Vec<(Expression, Relation)> =
         facts.iter().map(|(e, r)| (Expression::element(e.clone()), *r)).collect();
     prover.supposing(&further, |prover| {
         let name = prover.define("e", e);
         let mut equations = Vec::new();
         for (good, (price, demand)) in system.prices.iter().zip(&system.demands).enumerate() {
-            let there = system.field.substitute(demand, &[(system.income, e.clone())]).ok()?;
+            let there = system.field.substitute(demand, with).ok()?;
             equations.push(Equation {
                 label: Label::Good(good),
                 left: Expression::from(Factor::Slope(name, *price)),

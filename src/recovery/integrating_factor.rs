@@ -356,6 +356,7 @@ fn proposal(system: &System, v: Element, factor: Option<Element>, utility: Var) 
         indirect_utility: Some(v),
         expenditure: solved.map(|inverse| inverse.value),
         positive,
+        level: None,
         rising,
         working,
     })

@@ -44,6 +44,14 @@ pub fn solve(system: &System, reduced: &Reduced, utility: Var) -> Option<Proposa
     Some(affine(system, reduced, &factor, &base, utility))
 }
 
+/// The same from a solution z₀ of the system, which takes the place of e^B·A.
+pub fn from_particular(system: &System, reduced: &Reduced, particular: &Element, utility: Var) -> Option<Proposal> {
+    let prices = Moving::new(system.field, &system.prices);
+    let rate = potential(&prices, &reduced.coefficients[1])?;
+    let factor = rate.exponential(system.field).ok()?;
+    Some(affine(system, reduced, &factor, particular, utility))
+}
+
 /// How much there is to read.
 fn size(e: &Element) -> usize {
     e.raw_terms().iter().map(|(m, _)| 1 + m.len()).sum()
@@ -66,6 +74,7 @@ pub fn affine(system: &System, reduced: &Reduced, factor: &Element, base: &Eleme
         ..Working::default()
     };
     let mut found = proposal(v, solved, rising, working);
+    found.level = Some(Poly::sum(target.iter().map(|e| field.current(e)).collect()));
     if base.is_zero() {
         positive_product(field, &reduced.z, utility, &mut found);
     }
@@ -110,5 +119,5 @@ fn proposal(v: Option<Element>, solved: Option<Inverse>, rising: Sign, working: 
         Some(inverse) => (Some(inverse.value), inverse.positive),
         None => (None, Vec::new()),
     };
-    Proposal { indirect_utility: v, expenditure, positive, rising, working }
+    Proposal { indirect_utility: v, expenditure, positive, level: None, rising, working }
 }

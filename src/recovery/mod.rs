@@ -13,6 +13,7 @@ pub mod fractions;
 pub mod frame;
 pub mod gather;
 pub mod given;
+pub mod in_sight;
 pub mod integrating_factor;
 pub mod inverse_factor;
 pub mod invert;

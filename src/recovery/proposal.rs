@@ -23,6 +23,8 @@ pub struct Proposal {
     pub expenditure: Option<Element>,
     /// Elements in p and u that are positive because they equal positive functions of p and m.
     pub positive: Vec<Element>,
+    /// z at the expenditure for utility u, where it was found as such: shorter than what φ(e) gives.
+    pub level: Option<Element>,
     /// The sign of ∂v/∂m.
     pub rising: Sign,
     /// How it was found.
@@ -71,6 +73,7 @@ impl Proposal {
         if let Some(e) = &self.expenditure {
             self.expenditure = coordinate.to_income(field, e).ok();
         }
+        self.level = None;
         self.rising = self.rising.times(field.sign(&coordinate.scale));
         self.working.coordinate = Some(coordinate.clone());
         self.working.income = Some(there.income);
@@ -117,6 +120,7 @@ impl Proposal {
         let rescaled = |e: &Element| field.substitute(e, &scale).ok();
         self.indirect_utility = Some(field.product(&v, &inverse));
         self.positive = self.positive.iter().filter_map(rescaled).collect();
+        self.level = self.level.as_ref().and_then(rescaled);
         let facts: Vec<_> = self.positive.iter().map(|e| (e.clone(), Relation::Positive)).collect();
         self.expenditure = self.expenditure.and_then(|e| field.suppose(&facts, || rescaled(&e)));
         self
@@ -131,6 +135,7 @@ impl Proposal {
         let turn = |e: &Element| field.substitute(e, &negative).ok();
         self.indirect_utility = self.indirect_utility.map(|v| v.neg());
         self.positive = self.positive.iter().filter_map(turn).collect();
+        self.level = self.level.as_ref().and_then(turn);
         let facts: Vec<_> = self.positive.iter().map(|e| (e.clone(), Relation::Positive)).collect();
         self.expenditure = self.expenditure.and_then(|e| field.suppose(&facts, || turn(&e)));
         self.rising = Sign::Positive;

@@ -125,7 +125,8 @@ fn from_midpoints(prices: &Moving, midpoints: &[Element]) -> Vec<Element> {
     found
 }
 
-fn from_particular(
+/// V = −e^B/(z − z₀) − Λ from a particular solution z₀.
+pub fn from_particular(
     system: &System,
     prices: &Moving,
     reduced: &Reduced,
@@ -146,11 +147,16 @@ fn from_particular(
     let scaled: Vec<Element> = c.iter().map(|c| field.product(&factor, c)).collect();
     let shift = potential(prices, &scaled)?.value(field).ok()?;
     let distance = &field.current(&reduced.z) - &field.current(particular);
+    // with a named price index the distance is one thing, so that nothing is put back where it cancels
+    let is_sum = |v: Var| matches!(*field.kind(v), Kind::Sum { root: 1, .. });
+    let named = particular.as_var().is_some_and(is_sum);
+    let distance = if named { field.named(&distance, None) } else { distance };
     let v = &field.quotient(&field.current(&factor), &distance).ok()?.neg() - &field.current(&shift);
     let level = &Poly::var(utility) + &field.current(&shift);
     let gap = field.quotient(&factor, &level).ok()?;
     let target = [field.current(particular), field.current(&gap).neg()];
     let solved = invert::solve(field, &reduced.z, system.income, &target);
+    let level = Some(Poly::sum(target.to_vec()));
     let (expenditure, positive) = match solved {
         Some(inverse) => (Some(inverse.value), inverse.positive),
         None => (None, Vec::new()),
@@ -164,5 +170,5 @@ fn from_particular(
         base: Some(shift),
         ..Working::default()
     };
-    Some(Proposal { indirect_utility: Some(v), expenditure, positive, rising, working })
+    Some(Proposal { indirect_utility: Some(v), expenditure, positive, level, rising, working })
 }

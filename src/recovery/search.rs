@@ -8,6 +8,7 @@ use crate::proof::Prover;
 use super::Preferences;
 use super::check::{self, Established};
 use super::divisors::doubtful_divisors;
+use super::in_sight;
 use super::integrating_factor;
 use super::linear;
 use super::proposal::Proposal;
@@ -38,25 +39,42 @@ const WORK_OF_ONE_ATTEMPT: u64 = 400_000_000;
 
 /// The first proposal that is proven, or the reason why there is none.
 pub fn search(system: &System, utility: Var, prover: &mut Prover<'_>) -> Result<Box<Preferences>, String> {
+    let plain = Coordinate::plain();
+    if let Some(found) = attempt(system, system, &plain, in_sight::propose, utility, prover) {
+        return Ok(found);
+    }
     let all: Vec<(Coordinate, System)> =
         coordinates(system).into_iter().filter_map(|c| in_coordinate(system, &c).map(|there| (c, there))).collect();
     let methods: [(Propose, usize); 3] =
         [(linear_proposals, all.len()), (quadratic_proposals, all.len()), (exact_proposals, 1)];
     for (method, coordinates) in methods {
         for (coordinate, there) in all.iter().take(coordinates) {
-            let proposals = budget::attempt(WORK_OF_ONE_ATTEMPT, || method(there, utility)).unwrap_or_default();
-            for (method, proposal) in proposals {
-                let Some(proposal) = proposal.in_income(system, there, coordinate) else { continue };
-                let proposal = proposal.with_orientation(system).turned(system.field, utility);
-                let proposal = proposal.without_factor(system, utility).gathered(system.field);
-                if let Some(established) = check::establish(system, &proposal, utility, prover) {
-                    return Ok(Box::new(preferences(system, utility, method, proposal, established)));
-                }
+            if let Some(found) = attempt(system, there, coordinate, method, utility, prover) {
+                return Ok(found);
             }
         }
     }
     Err("no change of the income variable makes the system linear or quadratic, and no integrating factor was found"
         .to_string())
+}
+
+/// The first of a method's proposals that is proven.
+fn attempt(
+    system: &System,
+    there: &System,
+    coordinate: &Coordinate,
+    method: Propose,
+    utility: Var,
+    prover: &mut Prover<'_>,
+) -> Option<Box<Preferences>> {
+    let proposals = budget::attempt(WORK_OF_ONE_ATTEMPT, || method(there, utility)).unwrap_or_default();
+    proposals.into_iter().find_map(|(method, proposal)| {
+        let proposal = proposal.in_income(system, there, coordinate)?;
+        let proposal = proposal.with_orientation(system).turned(system.field, utility);
+        let proposal = proposal.without_factor(system, utility).gathered(system.field);
+        let established = check::establish(system, &proposal, utility, prover)?;
+        Some(Box::new(preferences(system, utility, method, proposal, established)))
+    })
 }
 
 fn in_coordinate<'f>(system: &System<'f>, coordinate: &Coordinate) -> Option<System<'f>> {

@@ -21,6 +21,8 @@ pub struct Span {
     pub functions: Vec<Element>,
     /// Aₖ: functions of prices alone, one vector over the goods for each gₖ; independent over the constants.
     pub coefficients: Vec<Vec<Element>>,
+    /// Whether sums of prices stand in the coefficients as they are named, not put back.
+    pub named: bool,
 }
 
 impl Span {
@@ -57,13 +59,13 @@ impl Span {
         let over = both.below(&of_income);
         let functions = columns.keys().map(|m| field.reduce(&(&Poly::monomial(m.clone()) * &over))).collect();
         let coefficients = columns.into_values().collect();
-        Some(Span { functions, coefficients }.independent(&prices))
+        Some(Span { functions, coefficients, named: false }.independent(&prices))
     }
 
     /// Columns that are constant combinations of earlier ones join their functions to those.
     fn independent(self, prices: &Moving) -> Span {
         let field = prices.field;
-        let mut kept = Span { functions: Vec::new(), coefficients: Vec::new() };
+        let mut kept = Span { functions: Vec::new(), coefficients: Vec::new(), named: false };
         for (function, column) in self.functions.into_iter().zip(self.coefficients) {
             match prices.constant_combination(&column, &kept.coefficients) {
                 Some(shares) if !kept.functions.is_empty() => {
@@ -221,7 +223,8 @@ fn reduce(income: &Moving, span: &Span, z: Element, slope: Element, degree: usiz
         let shares = income.constant_combination(&[image], &powers)?;
         for (slot, share) in coefficients.iter_mut().zip(&shares.values) {
             for (total, entry) in slot.iter_mut().zip(column) {
-                *total = field.reduce(&(&field.current(total) + &field.product(share, entry)));
+                let sum = &field.current(total) + &field.product(share, entry);
+                *total = if span.named { sum } else { field.reduce(&sum) };
             }
         }
     }

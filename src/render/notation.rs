@@ -4,7 +4,7 @@ use std::collections::BTreeSet;
 
 use crate::algebra::field::Field;
 use crate::algebra::formula::{Formula, Symbol};
-use crate::algebra::generator::Element;
+use crate::algebra::generator::{Element, Kind};
 use crate::algebra::monomial::Var;
 use crate::model::{Coverage, Form, Model};
 use crate::render::expression::{Expression, Mark, Object};
@@ -286,7 +286,7 @@ const SHORTENING_WORK: u64 = 3_000_000;
 /// An element as it stands, or reduced to one factored fraction where that is shorter by a fifth in print.
 pub fn best_formula(field: &Field, e: &Element) -> Formula {
     let as_it_stands = field.formula(e);
-    if e.len() > MOST_TERMS {
+    if longest(field, e) > MOST_TERMS {
         return as_it_stands;
     }
     let length = plain(&as_it_stands).len();
@@ -295,6 +295,15 @@ pub fn best_formula(field: &Field, e: &Element) -> Formula {
         Ok(reduced) if plain(&reduced).len() * 5 < length * 4 => reduced,
         _ => as_it_stands,
     }
+}
+
+/// The terms of the longest sum in sight or behind a name.
+fn longest(field: &Field, e: &Element) -> usize {
+    let behind = e.vars().into_iter().map(|var| match &*field.kind(var) {
+        Kind::Sum { value, .. } => longest(field, value),
+        _ => 1,
+    });
+    behind.max().unwrap_or(0).max(e.len())
 }
 
 fn all_prices(model: &Model) -> Vec<Var> {
