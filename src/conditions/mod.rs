@@ -1,11 +1,10 @@
 //! The conditions that demands must satisfy to come from preferences: each returns a [`Finding`].
 //!
-//! Homogeneity, adding-up and symmetry are zero tests of a family of identities ([`settlement`]); where one fails, the
-//! coefficients of what is left say for which parameters it holds ([`branches`]). Curvature climbs a ladder of methods
+//! Homogeneity, adding-up and symmetry are zero tests of a family of identities ([`settlement`]); for which
+//! parameters one holds that fails somewhere, the floor of restrictions finds out. Curvature climbs a ladder of methods
 //! ([`curvature`]). A condition proposes; [`crate::proof`] establishes or refuses.
 
 mod adding_up;
-mod branches;
 pub mod claims;
 pub mod coefficients;
 mod compact;

@@ -1,11 +1,9 @@
-//! From a family of identities to a finding: proven by normal forms, or refuted at a point, or conditional on
-//! restrictions of the parameters.
+//! From a family of identities to a finding: proven by normal forms, or refuted at a point.
 
 use crate::algebra::budget;
 use crate::model::Model;
 use crate::proof::{Equation, Identities, Prover, Refuted, Residual};
 
-use super::branches::{self, Solved};
 use super::finding::{Condition, Finding, Verdict, Witness};
 use super::slutsky::System;
 use super::witness;
@@ -20,8 +18,6 @@ pub(super) struct Family {
     pub in_quantities: fn(&System, &Equation) -> Equation,
 }
 
-/// The work that the search for restrictions may take.
-const BRANCH_WORK: u64 = 400_000_000;
 /// The work that one sign may take.
 const SIGN_WORK: u64 = 4_000_000;
 
@@ -42,7 +38,7 @@ pub(super) fn settle(model: &Model, system: &System, prover: &mut Prover<'_>, fa
             let mut finding = Finding::new(family.condition, Verdict::Refuted, "evaluation at a point");
             finding.witness = Some(Witness::of(refuted.failure(), None));
             finding.steps.push(refuted.step());
-            restrict(model, family, &residuals, &mut finding);
+            finding.never = hopeless(model, &residuals).then_some(true);
             finding
         }
         None => {
@@ -91,28 +87,10 @@ fn against(
     witness::against(model, prover, family.condition.name(), residuals, &shown)
 }
 
-/// Looks for parameter values that rescue the condition, or for a reason why none do.
-fn restrict(model: &Model, family: &Family, residuals: &[Residual], finding: &mut Finding) {
+/// Looks for a reason why no parameter values rescue the condition.
+fn hopeless(model: &Model, residuals: &[Residual]) -> bool {
     let excludes =
         |r: &Residual| budget::attempt(SIGN_WORK, || model.field.sign(&r.element).excludes_zero()).unwrap_or(false);
     let free = model.parameters.iter().any(|p| p.eliminated.is_none());
-    if !free || residuals.iter().take(8).any(excludes) {
-        finding.never = Some(true);
-        return;
-    }
-    let holds = |special: &Model| {
-        let mut prover = Prover::new(&special.field);
-        let Some(system) = System::of(special, &mut prover) else { return false };
-        prover.identities(family.condition.name(), (family.equations)(&system), &[]).is_ok()
-    };
-    let solved = budget::attempt(BRANCH_WORK, || branches::solve(model, residuals, &holds));
-    let Ok(Solved { branches, complete }) = solved else { return };
-    if branches.is_empty() {
-        finding.never = complete.then_some(true);
-        return;
-    }
-    finding.verdict = Verdict::Conditional;
-    finding.never = Some(false);
-    finding.restrictions = Some(branches);
-    finding.restrictions_complete = complete;
+    !free || residuals.iter().take(8).any(excludes)
 }

@@ -76,6 +76,6 @@ fn branch(found: &Restrictions, branch: &Branch) -> Json {
             "curvature": condition(Condition::Curvature),
         },
         "recovered": branch.recovered.as_ref().map_or(Json::Null, |r| recovered(&branch.model, r)),
-        "family": Json::Null,
+        "family": branch.family,
     })
 }

@@ -12,6 +12,8 @@ use crate::model::{DomainCondition, Model};
 use crate::proof::{Derivation, Prover, Value, exact_value};
 use crate::recovery::{self, Recovered};
 
+use super::conditional::rescue;
+use super::family;
 use super::node::Node;
 use super::search::Tested;
 use super::terms::put_in;
@@ -35,6 +37,8 @@ pub struct Branch {
     pub findings: Vec<Finding>,
     /// The preferences there; `None` where symmetry is not proven.
     pub recovered: Option<Recovered>,
+    /// The name of the family of the demands, where it is one that the field has named.
+    pub family: Option<&'static str>,
     /// The steps that prove all this, over the field of `model`.
     pub derivation: Derivation,
 }
@@ -115,6 +119,7 @@ pub fn branch(model: &Model, leaf: &Node) -> Option<Branch> {
         model: special,
         findings: Vec::new(),
         recovered: None,
+        family: None,
         derivation,
     })
 }
@@ -127,7 +132,10 @@ pub fn examine(branch: &mut Branch, work: u64) {
     let mut findings = Vec::new();
     for condition in Condition::ALL.into_iter().filter(|c| conditions::applies(*c, &model)) {
         let found = budget::attempt(work, || conditions::examine(condition, &model, &mut prover, &findings));
-        findings.push(found.unwrap_or_else(|stopped| Finding::undecided(condition, stopped.describe())));
+        let mut found = found.unwrap_or_else(|stopped| Finding::undecided(condition, stopped.describe()));
+        // without the restrictions the finding still stands
+        let _ = budget::attempt(work, || rescue(&model, &mut found));
+        findings.push(found);
     }
     branch.findings = findings;
     if branch.finding(Condition::Symmetry).is_some_and(|f| f.verdict == Verdict::Proven) {
@@ -137,6 +145,13 @@ pub fn examine(branch: &mut Branch, work: u64) {
                 reason: stopped.describe().to_string(),
                 existence: true,
             }));
+    }
+    let proven = |c: Condition| {
+        !conditions::applies(c, &model) || branch.finding(c).is_some_and(|f| f.verdict == Verdict::Proven)
+    };
+    if proven(Condition::Symmetry) {
+        let integrable = proven(Condition::Homogeneity) && proven(Condition::AddingUp);
+        branch.family = budget::attempt(work, || family::name(&model, integrable)).unwrap_or_default();
     }
     branch.derivation = prover.into_derivation();
 }

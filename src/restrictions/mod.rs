@@ -6,8 +6,10 @@
 
 pub mod branch;
 pub mod claimed;
+mod conditional;
 mod curvature;
 mod equations;
+mod family;
 pub mod indexed;
 mod node;
 mod search;
@@ -24,6 +26,7 @@ use crate::model::Model;
 use crate::proof::{Prover, Residual};
 
 pub use branch::Branch;
+pub use conditional::rescue;
 
 use node::Node;
 use search::Search;

@@ -130,7 +130,10 @@ pub fn vet(model: Rc<Model>, asked: &[Part], allowance: Allowance) -> Vetting {
     for condition in conditions_in_order(asked, &model) {
         let part = Part::Condition(condition);
         let found = run.part(part, || conditions::examine(condition, &model, &mut prover, &findings));
-        findings.push(found.unwrap_or_else(|stopped| Finding::undecided(condition, stopped.describe())));
+        let mut found = found.unwrap_or_else(|stopped| Finding::undecided(condition, stopped.describe()));
+        // where this runs out of its limits, the finding stands without the restrictions
+        let _ = run.part(part, || restrictions::rescue(&model, &mut found));
+        findings.push(found);
     }
     let mut recovered = None;
     let of_functions = model.claims.iter().any(Claim::is_of_function);

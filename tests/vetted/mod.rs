@@ -5,6 +5,7 @@ use mainspring::conditions::{Charts, ClaimFinding, Condition, Finding, Verdict, 
 use mainspring::language::{self, Source};
 use mainspring::model::{self, Model};
 use mainspring::proof::{Derivation, Prover};
+use mainspring::restrictions::rescue;
 
 /// A model with its findings.
 pub struct Vetted {
@@ -37,7 +38,8 @@ pub fn vet_only(text: &str, asked: &[Condition]) -> Vetted {
     let mut prover = Prover::new(&model.field);
     let mut findings: Vec<Finding> = Vec::new();
     for condition in asked.iter().filter(|c| applies(**c, &model)) {
-        let finding = examine(*condition, &model, &mut prover, &findings);
+        let mut finding = examine(*condition, &model, &mut prover, &findings);
+        rescue(&model, &mut finding);
         findings.push(finding);
     }
     let claims =

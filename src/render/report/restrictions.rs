@@ -157,7 +157,9 @@ fn one(notation: &Notation<'_>, found: &Restrictions, number: usize, branch: &Br
         blocks.push(Block::Heading { level: 1, text: vec![text(format!("Case {}", letter(number)))] });
     }
     blocks.extend(displayed(notation, branch));
-    blocks.push(Block::Paragraph(free(notation, branch)));
+    let mut words = free(notation, branch);
+    words.extend(branch.family.map(|name| text(format!(" Family: {name}."))));
+    blocks.push(Block::Paragraph(words));
     let own = Notation::new(&branch.model);
     let asked = |c: Condition| found.only.contains(&c) || c == Condition::Curvature;
     let open = |f: &&crate::conditions::Finding| {
