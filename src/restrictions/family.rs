@@ -4,6 +4,7 @@
 use crate::algebra::field::Field;
 use crate::algebra::generator::{Base, Element, Kind};
 use crate::algebra::monomial::Var;
+use crate::algebra::polynomial::Poly;
 use crate::conditions::coefficients::moves;
 use crate::model::{Coverage, Model};
 
@@ -29,6 +30,7 @@ struct Shares<'m> {
     outlays: Vec<Element>,
     prices: Vec<Var>,
     income: Var,
+    complete: bool,
 }
 
 impl<'m> Shares<'m> {
@@ -39,7 +41,8 @@ impl<'m> Shares<'m> {
         }
         let shares = model.demands.iter().map(|d| d.share.clone()).collect();
         let outlays = model.demands.iter().map(|d| d.outlay.clone()).collect();
-        Some(Shares { field: &model.field, shares, outlays, prices: model.prices.clone(), income })
+        let complete = model.coverage == Coverage::Complete;
+        Some(Shares { field: &model.field, shares, outlays, prices: model.prices.clone(), income, complete })
     }
 
     /// x ∂e/∂x.
@@ -107,7 +110,7 @@ impl<'m> Shares<'m> {
         let linear = |e: &Element| {
             let derivative = |v: &Var| {
                 let slope = self.field.log_derivative(e, *v);
-                self.field.quotient(&slope, &crate::algebra::polynomial::Poly::var(*v)).is_ok_and(|d| self.is_fixed(&d))
+                self.field.quotient(&slope, &Poly::var(*v)).is_ok_and(|d| self.is_fixed(&d))
             };
             self.prices.iter().chain([&self.income]).all(derivative)
         };
@@ -157,8 +160,7 @@ impl<'m> Shares<'m> {
         let mut denominators = Vec::new();
         for share in &self.shares {
             let (numerator, below) = self.field.fraction(share);
-            let below: Vec<Element> =
-                below.iter().map(|(v, _)| self.field.expand(&crate::algebra::polynomial::Poly::var(*v))).collect();
+            let below: Vec<Element> = below.iter().map(|(v, _)| self.field.expand(&Poly::var(*v))).collect();
             let moving = below.into_iter().filter(|e| e.vars().iter().any(|v| moves(self.field, *v)));
             denominators.extend(moving);
             if !self.is_linear_in_logarithms(&numerator) {
@@ -188,7 +190,7 @@ impl<'m> Shares<'m> {
         }
         let outlay_slopes: Vec<Element> = self.outlays.iter().map(|y| self.income_slope(y)).collect();
         let moving = outlay_slopes.iter().filter(|slope| !self.vanishes(slope)).count();
-        if moving == 0 || (moving == 1 && self.outlays.len() > 1) {
+        if moving == usize::from(self.complete) && self.outlays.len() > 1 {
             return Some("quasi-linear");
         }
         if outlay_slopes.iter().all(|slope| self.vanishes(&(&self.income_slope(slope) - slope))) {
