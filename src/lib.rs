@@ -65,6 +65,9 @@ pub fn read(source: &Source, values: &[(String, Rational)], allowance: Allowance
 /// The time and the memory are for everything; running out leaves what was found until then.
 pub fn restrict(model: Rc<Model>, request: &Request, allowance: Allowance) -> Restrictions {
     let limits = Limits::new(u64::MAX, allowance.time, allowance.memory_mib);
-    let outcome = budget::within(limits, || restrictions::restrict(model.clone(), request, allowance.time));
-    outcome.unwrap_or_else(|stopped| Restrictions::unknown(model, stopped.describe()))
+    let mut found = None;
+    let outcome =
+        budget::within(limits, || restrictions::restrict_into(&mut found, model.clone(), request, allowance.time));
+    let reason = outcome.err().map_or("nothing was asked", Stopped::describe);
+    found.unwrap_or_else(|| Restrictions::unknown(model, reason))
 }

@@ -13,6 +13,7 @@ pub mod folding;
 pub mod formula;
 pub mod gcd;
 pub mod generator;
+pub mod groebner;
 pub mod interval;
 pub mod log_sign;
 pub mod logarithm;

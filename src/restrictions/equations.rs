@@ -1,7 +1,8 @@
 //! Single equations between parameters: their factors, and how they can be solved for one parameter.
 
-use num_traits::{One, Signed};
+use num_traits::{One, Signed, Zero};
 
+use crate::algebra::budget;
 use crate::algebra::factor::factor;
 use crate::algebra::field::Field;
 use crate::algebra::generator::{Element, Kind, Role};
@@ -9,6 +10,8 @@ use crate::algebra::monomial::{Monomial, Var};
 use crate::algebra::number::rational;
 use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
+
+use crate::conditions::coefficients::normalised;
 
 use super::node::numerator;
 
@@ -118,4 +121,29 @@ fn quadratic(field: &Field, e: &Element, kept: &[Var]) -> Option<Vec<Vec<Element
 /// Whether an equation says v = value with a number for its coefficient.
 pub fn is_plain(linear: &Linear) -> bool {
     linear.coefficient.as_constant().is_some_and(|c| c.abs().is_one()) || linear.coefficient.is_constant()
+}
+
+/// Equations with the same solutions, as short as combinations with numbers make them: each monomial that leads one of them
+/// stands in no other. The equations as they are where that makes them longer.
+pub fn interreduced(equations: &[Element]) -> Vec<Element> {
+    let mut rows: Vec<(Monomial, Element)> = Vec::new();
+    for e in equations {
+        budget::spend(10 * (e.len() * (1 + rows.len())) as u64);
+        let row = rows.iter().fold(e.clone(), |row, (leading, by)| without(&row, leading, by));
+        let Some((leading, coefficient)) = row.leading().map(|(m, c)| (m.clone(), c)) else { continue };
+        let row = row.scale(&coefficient.recip());
+        for (_, other) in &mut rows {
+            *other = without(other, &leading, &row);
+        }
+        rows.push((leading, row));
+    }
+    let length = |all: &mut dyn Iterator<Item = usize>| all.sum::<usize>();
+    let longer = length(&mut rows.iter().map(|(_, row)| row.len())) > length(&mut equations.iter().map(Poly::len));
+    if longer { equations.to_vec() } else { rows.into_iter().map(|(_, row)| normalised(&row)).collect() }
+}
+
+/// The row without a monomial that another row leads with coefficient one.
+fn without(row: &Element, leading: &Monomial, by: &Element) -> Element {
+    let coefficient = row.coefficient(leading);
+    if coefficient.is_zero() { row.clone() } else { row - &by.scale(&coefficient) }
 }

@@ -87,21 +87,31 @@ const PART_WORK: u64 = 20_000_000;
 /// The work that the examination of all branches may take.
 const TABLE_WORK: u64 = 240_000_000;
 
-/// Finds the branches, and examines each. The search may take most of the time, the examination most of what is left:
-/// each ends within its own part of it, so that what was found until then can be kept.
+/// Finds the branches, and examines each. The search may take half of the time, the examination a quarter: each ends
+/// within its own part of it, so that what was found until then can be kept.
 pub fn restrict(model: Rc<Model>, request: &Request, time: Duration) -> Restrictions {
+    let mut found = None;
+    restrict_into(&mut found, model.clone(), request, time);
+    found.unwrap_or_else(|| Restrictions::unknown(model, "nothing was asked"))
+}
+
+/// The same, with what is found put where it stays when an enclosing limit ends the work.
+pub fn restrict_into(out: &mut Option<Restrictions>, model: Rc<Model>, request: &Request, time: Duration) {
     let only: Vec<Condition> =
         Condition::ALL.into_iter().filter(|c| request.only.contains(c) && conditions::applies(*c, &model)).collect();
-    let mut found = branches(model, only, &request.kept, time * 3 / 5);
+    let found = out.insert(branches(model, only, &request.kept, time / 2));
+    let complete = found.complete;
+    let with_curvature = found.only.contains(&Condition::Curvature);
+    found.complete &= !with_curvature;
     let share = TABLE_WORK / (2 * found.branches.len().max(1) as u64);
     let part = PART_WORK.min(share);
-    let limits = Limits::new(u64::MAX, time * 3 / 10, u64::MAX);
+    let limits = Limits::new(u64::MAX, time / 4, u64::MAX);
     // what a limit cuts off stays unexamined: the list of branches does not depend on it
     let _ = budget::within(limits, || found.branches.iter_mut().for_each(|branch| branch::examine(branch, part)));
-    if found.only.contains(&Condition::Curvature) {
-        curvature::settle(&mut found);
+    if with_curvature {
+        found.complete = complete;
+        curvature::settle(found);
     }
-    found
 }
 
 /// Finds the branches without examining what they leave.

@@ -21,6 +21,8 @@ pub struct Node {
     pub solved: Vec<(Var, Element)>,
     /// Irreducible elements that must not vanish.
     pub sides: Vec<Element>,
+    /// Whether the open equations are a Gröbner basis already.
+    pub is_basis: bool,
 }
 
 /// What came of a change to a node.
@@ -39,6 +41,7 @@ impl Node {
         let mut node = self.clone();
         for e in equations {
             if !e.is_zero() && !node.equations.contains(&e) {
+                node.is_basis = false;
                 node.equations.push(e);
             }
         }

@@ -9,12 +9,15 @@
 use crate::algebra::budget;
 use crate::algebra::field::Field;
 use crate::algebra::generator::Element;
+use crate::algebra::groebner::basis;
 use crate::algebra::monomial::Var;
 
-use super::equations::{Linear, is_plain, linear_readings, parts, rewritten};
+use super::equations::{Linear, interreduced, is_plain, linear_readings, parts, rewritten};
 use super::node::{Changed, Node, numerator};
 use super::terms::gaps;
 
+/// The work that one Gröbner basis may take.
+const BASIS_WORK: u64 = 200_000_000;
 /// The most nodes that are opened.
 const MOST_NODES: usize = 20_000;
 
@@ -138,6 +141,10 @@ impl<'a> Search<'a> {
 
     /// One move on the open equations.
     fn equations(&mut self, mut node: Node) -> Vec<Node> {
+        node.equations = interreduced(&node.equations);
+        if node.equations.iter().any(|e| e.is_constant()) {
+            return Vec::new();
+        }
         let mut split: Vec<Vec<Element>> = Vec::new();
         for e in &node.equations {
             let mut factors = parts(self.field, e);
@@ -227,6 +234,25 @@ impl<'a> Search<'a> {
                 let mut rest = node.clone();
                 rest.equations.retain(|other| other != e);
                 return ways.into_iter().map(|way| rest.with(way)).collect();
+            }
+        }
+        self.by_a_basis(node)
+    }
+
+    /// Equations that are linear in no parameter: a Gröbner basis in their place, whose last elements hold fewest
+    /// parameters, so that they may factor or be solved.
+    fn by_a_basis(&mut self, node: Node) -> Vec<Node> {
+        let polynomial = node.equations.iter().all(|e| e.vars().into_iter().all(|v| e.low_degree(v) >= 0));
+        if polynomial && !node.is_basis {
+            let found = budget::attempt(BASIS_WORK, || basis(&node.equations));
+            match found.as_deref() {
+                Ok([only]) if only.is_constant() => return Vec::new(),
+                Ok(found) if found.iter().any(|e| !node.equations.contains(e)) => {
+                    let mut next = Node { equations: Vec::new(), ..node }.with(found.to_vec());
+                    next.is_basis = true;
+                    return vec![next];
+                }
+                _ => {}
             }
         }
         self.leave_out("an equation between the parameters could not be solved for one of them");
