@@ -7,8 +7,8 @@ use mainspring::restrictions::Restrictions;
 
 use crate::system::{listed, restricted};
 
-/// x_i = a_i + Σ b_ik f(p_k) + g_i h(m), or a_i times the exponential of the sum, with a_i > 0.
-fn form(goods: usize, exponential: bool, price: &str, income: &str) -> String {
+/// The left side is a quantity, an outlay or a share. x_i = a_i + Σ b_ik f(p_k) + g_i h(m), or a_i times the exponential of the sum, with a_i > 0.
+pub fn form(left: &str, goods: usize, exponential: bool, price: &str, income: &str) -> String {
     let names = |stem: &str| (1..=goods).map(|i| format!("{stem}{i}")).collect::<Vec<_>>().join(", ");
     let slopes: Vec<String> = (1..=goods).flat_map(|i| (1..=goods).map(move |k| format!("b{i}{k}"))).collect();
     let mut text = format!(
@@ -24,22 +24,22 @@ fn form(goods: usize, exponential: bool, price: &str, income: &str) -> String {
             (1..=goods).map(|k| format!("b{i}{k}*{}", price.replace('#', &format!("p{k}")))).collect();
         let sum = format!("{} + g{i}*{income}", sum.join(" + "));
         text.push_str(&match exponential {
-            false => format!("demand good{i} = a{i} + {sum}\n"),
-            true => format!("assume a{i} > 0\ndemand good{i} = a{i}*exp({sum})\n"),
+            false => format!("{left} good{i} = a{i} + {sum}\n"),
+            true => format!("assume a{i} > 0\n{left} good{i} = a{i}*exp({sum})\n"),
         });
     }
     text
 }
 
-fn symmetric(goods: usize, exponential: bool, price: &str, income: &str) -> Restrictions {
-    let found = restricted(&form(goods, exponential, price, income), &[Condition::Symmetry]);
+pub fn symmetric(text: &str) -> Restrictions {
+    let found = restricted(text, &[Condition::Symmetry]);
     assert!(found.complete, "{:?}", found.reason);
     assert_eq!(found.failures.len(), 1, "a point outside all branches");
     found
 }
 
-fn table(exponential: bool, price: &str, income: &str, expected: &[&str]) {
-    let found = symmetric(2, exponential, price, income);
+pub fn table(left: &str, exponential: bool, price: &str, income: &str, expected: &[&str]) {
+    let found = symmetric(&form(left, 2, exponential, price, income));
     let mut expected: Vec<String> = expected.iter().map(ToString::to_string).collect();
     expected.sort();
     assert_eq!(listed(&found), expected);
@@ -51,6 +51,7 @@ const SEPARATE: &str = "b12 = 0, b21 = 0, g2 = g1";
 #[test]
 fn x1_linear() {
     table(
+        "demand",
         false,
         "#",
         "m",
@@ -65,6 +66,7 @@ fn x1_linear() {
 #[test]
 fn x2_linear_in_log_income() {
     table(
+        "demand",
         false,
         "#",
         "ln(m)",
@@ -79,6 +81,7 @@ fn x2_linear_in_log_income() {
 #[test]
 fn x3_log_prices() {
     table(
+        "demand",
         false,
         "ln(#)",
         "m",
@@ -95,6 +98,7 @@ fn x3_log_prices() {
 #[test]
 fn x4_log_prices_and_log_income() {
     table(
+        "demand",
         false,
         "ln(#)",
         "ln(m)",
@@ -111,6 +115,7 @@ fn x4_log_prices_and_log_income() {
 #[test]
 fn x5_exponential() {
     table(
+        "demand",
         true,
         "#",
         "m",
@@ -126,6 +131,7 @@ fn x5_exponential() {
 #[test]
 fn x6_exponential_in_prices_power_of_income() {
     table(
+        "demand",
         true,
         "#",
         "ln(m)",
@@ -141,6 +147,7 @@ fn x6_exponential_in_prices_power_of_income() {
 #[test]
 fn x7_powers_of_prices_exponential_in_income() {
     table(
+        "demand",
         true,
         "ln(#)",
         "m",
@@ -156,6 +163,7 @@ fn x7_powers_of_prices_exponential_in_income() {
 #[test]
 fn x8_constant_elasticities() {
     table(
+        "demand",
         true,
         "ln(#)",
         "ln(m)",

@@ -95,3 +95,34 @@ fn products_and_powers_of_sums() {
     let (held, failed) = compare(text, &[Condition::Homogeneity, Condition::AddingUp], &numbers(&[-2, -1, 0, 1, 2]));
     assert!(held > 0 && failed > 0);
 }
+
+/// Equations that are linear in no parameter: four points, by a Gröbner basis.
+#[test]
+fn equations_of_the_second_degree() {
+    let text = "goods x, y, z\nprices p[k]\nincome m\nparameters s, t\n\
+                share x = (s^2 + t^2 - 5)*ln(p[y]) + (s^2 + s*t + t^2 - 7)*ln(p[z])\nshare y = 1/2\nshare z = 1/2\n";
+    assert_eq!(compare(text, &[Condition::Symmetry], &numbers(&[-3, -2, -1, 0, 1, 2, 3])), (4, 45));
+}
+
+/// A power of a sum is a polynomial for some exponents: the list does not claim to be complete without them.
+#[test]
+fn powers_of_sums_that_become_polynomials() {
+    let text = "goods x, y\nprices p, q\nincome m\nothers deflated\nparameters k\n\
+                demand x = (p + q)^k\ndemand y = p^2 + 2*p*q\n";
+    let found = restricted(text, &[Condition::Symmetry]);
+    let two = BTreeMap::from([(found.model.parameters[0].var, rational(2, 1))]);
+    assert_eq!(holds(&found, &two), Some(true));
+    assert!(belongs(&found, &two) || !found.complete);
+}
+
+/// Almost ideal shares over a linear index with positive weights that are declared last.
+#[test]
+fn weights_of_a_linear_index() {
+    let text = "goods 1..2\nprices p[i]\nincome m\nparameters a, b[i], g, h, s[i]\n\
+                assume s[k] > 0, s[1] + s[2] = 1\nlet y = ln(m) - sum over k of (s[k]*ln(p[k]))\n\
+                share[1] = a + g*ln(p[1]) + h*ln(p[2]) + b[1]*y\n\
+                share[2] = 1 - a + h*ln(p[1]) - h*ln(p[2]) + b[2]*y\n";
+    let values: Vec<Rational> = [(0, 1), (1, 2), (1, 1)].map(|(n, d)| rational(n, d)).to_vec();
+    let (held, failed) = compare(text, &[Condition::Symmetry], &values);
+    assert!(held > 0 && failed > 0);
+}

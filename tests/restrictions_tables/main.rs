@@ -2,5 +2,6 @@
 
 mod incomplete_forms;
 mod lattice;
+mod outlay_and_share_forms;
 mod system;
 mod tables;
