@@ -263,3 +263,49 @@ fn large_systems_are_asked_less() {
     let responses = vetting.responses.as_ref().expect("responses");
     assert!(responses.goods.is_empty() && responses.pairs.net.is_empty() && responses.elasticities.left_out);
 }
+
+#[test]
+fn given_preferences_have_the_structure_of_their_demands() {
+    let given = |preferences: &str| {
+        vetted(&format!(
+            "goods bread, fish, cloth\nprices p, q, r\nincome m\nquantities x, y, z\nparameters a\nassume a > 0\n{preferences}\n"
+        ))
+    };
+    // Stone and Geary, with a of two goods at hand; with one alone it would be additive both ways (Hicks 1969)
+    let geary = given("given utility = ln(x) + 2*ln(y + a) + 3*ln(z + a)");
+    let income = pairs(&INCOME, &[false, true, false, true]);
+    assert_eq!(properties(&geary), [income, pairs(&ADDITIVE, &[true, false])].concat());
+    let homothetic = given("given expenditure = u*p^(1/2)*q^(1/4)*r^(1/4)");
+    assert_eq!(properties(&homothetic)[..4], pairs(&INCOME, &[true; 4]));
+    let addilog = given("given indirect utility = m/p + sqrt(m/q) + ln(m/r)");
+    assert_eq!(properties(&addilog)[4..], pairs(&ADDITIVE, &[false, true]));
+}
+
+/// Elements by number, in place of a text for each.
+#[derive(Default)]
+struct Register(std::cell::RefCell<Vec<mainspring::algebra::generator::Element>>);
+
+#[test]
+fn every_step_can_be_made_anew() {
+    use mainspring::proof::{replay, store};
+    for text in [
+        "goods 1..3\nprices p[i]\nincome m\nparameters a[i], b[i]\nassume a[i] > 0, b[i] > 0\n\
+         demand[i] = a[i]*b[i]*(m/p[i])^(b[i] + 1)/(sum over j of (a[j]*b[j]*(m/p[j])^b[j]))\n",
+        "goods tea, cake\nprices p, q\nincome m\nquantities x, y\ngiven utility = ln(x) + y\n",
+    ] {
+        let vetting = vetted(text);
+        let register = Register::default();
+        let print = |e: &mainspring::algebra::generator::Element| {
+            register.0.borrow_mut().push(e.clone());
+            (register.0.borrow().len() - 1).to_string()
+        };
+        let stored = store(&vetting.model.field, &vetting.derivation, &print);
+        let read = |number: &str| {
+            let place: usize = number.parse().map_err(|_| number.to_string())?;
+            register.0.borrow().get(place).cloned().ok_or_else(|| number.to_string())
+        };
+        let replayed = replay(&vetting.model.field, &stored, &read);
+        let replayed = replayed.unwrap_or_else(|rejected| panic!("{rejected:?}\n{text}"));
+        assert_eq!(replayed.steps().len(), vetting.derivation.steps().len());
+    }
+}

@@ -92,12 +92,17 @@ fn family(condition: Condition) -> Option<&'static settlement::Family> {
 /// What keeps a condition that is a family of identities from holding: the differences whose normal form is not zero.
 /// Empty exactly where the condition is proven. `None` for curvature and for models without demands.
 pub fn differences(condition: Condition, model: &Model, prover: &mut Prover<'_>) -> Option<Vec<Residual>> {
-    let family = family(condition)?;
     let system = System::of(model, prover)?;
+    differences_of(condition, &system, prover)
+}
+
+/// The same for a system.
+pub fn differences_of(condition: Condition, system: &System, prover: &mut Prover<'_>) -> Option<Vec<Residual>> {
+    let family = family(condition)?;
     if condition == Condition::Symmetry {
         system.prepare(prover);
     }
-    Some(settlement::differences(&system, prover, family))
+    Some(settlement::differences(system, prover, family))
 }
 
 /// An admissible point at which one of the differences of a condition does not vanish.

@@ -90,6 +90,23 @@ impl System {
         Some(System { coordinates, functions, collected, prices, compensation, others, positive: Vec::new() })
     }
 
+    /// Marshallian demands that the model does not have itself, by their budget shares.
+    pub fn of_shares(model: &Model, shares: &[Element], prover: &mut Prover<'_>) -> Option<System> {
+        let income = model.income?;
+        let functions = shares.iter().zip(&model.goods);
+        let functions = functions.map(|(share, good)| prover.define(&format!("share {}", good.name), share));
+        let functions: Vec<FunctionId> = functions.collect();
+        Some(System {
+            coordinates: Coordinates::Shares,
+            collected: functions.clone(),
+            functions,
+            prices: model.prices.clone(),
+            compensation: Compensation::Income(income),
+            others: Vec::new(),
+            positive: Vec::new(),
+        })
+    }
+
     fn inverse(model: &Model, prover: &mut Prover<'_>) -> Option<System> {
         let given = model.given.as_ref().filter(|given| given.kind == Preferences::Utility);
         if let Some(given) = given {

@@ -200,7 +200,7 @@ impl Work<'_, '_> {
     }
 
     fn share(&self, good: usize) -> Option<&Element> {
-        self.model.demands.get(good).map(|demand| &demand.share)
+        self.question.written.get(good)
     }
 
     fn slope(&self, good: usize, mover: Var) -> Option<Element> {

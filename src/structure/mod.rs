@@ -21,10 +21,12 @@ mod sign;
 mod substitutes;
 
 use crate::algebra::budget;
+use crate::algebra::field::Relation;
 use crate::algebra::generator::Element;
-use crate::conditions::{ClaimFinding, Finding, Verdict};
+use crate::conditions::claims::chart::Coordinates;
+use crate::conditions::{Chart, Charts, ClaimFinding, Finding, Verdict};
 use crate::model::Model;
-use crate::proof::Prover;
+use crate::proof::{Expression, Prover};
 
 use elasticities::Elasticities;
 use question::Question;
@@ -105,23 +107,51 @@ const FACT_WORK: u64 = 30_000_000;
 const MOST_GOODS_IN_PAIRS: usize = 16;
 
 /// Looks for the structure of a system. `findings` are those on the conditions so far; what is missing among them is
-/// looked at anew. The steps are added to the prover's derivation. `None` for a model without Marshallian demands.
-pub fn examine(model: &Model, prover: &mut Prover<'_>, findings: &[Finding]) -> Option<Structure> {
-    let question = Question::of(model, prover, findings)?;
-    let mut structure = Structure::default();
-    if question.consumer {
-        of_preferences(&question, prover, &mut structure);
-    }
-    Some(structure)
+/// looked at anew; `charts` have the demands of given preferences. The steps are added to the prover's derivation. `None` for a model without Marshallian demands.
+pub fn examine(model: &Model, prover: &mut Prover<'_>, findings: &[Finding], charts: &Charts) -> Option<Structure> {
+    asked(model, prover, findings, charts, |question, prover| {
+        let mut structure = Structure::default();
+        if question.consumer {
+            of_preferences(question, prover, &mut structure);
+        }
+        structure
+    })
+}
+
+/// Asks about the demands of the model; where it has none, about those of its given preferences, on the part of the
+/// domain where they are chosen.
+fn asked<T>(
+    model: &Model,
+    prover: &mut Prover<'_>,
+    findings: &[Finding],
+    charts: &Charts,
+    ask: impl FnOnce(&Question<'_>, &mut Prover<'_>) -> T,
+) -> Option<T> {
+    let in_income = |chart: &&Chart| chart.coordinates == Coordinates::Income && chart.judges;
+    let chart = charts.all.iter().find(in_income).filter(|_| charts.reserve.is_none());
+    let further: Vec<(Expression, Relation)> = match chart {
+        Some(chart) if model.demands.is_empty() => {
+            chart.facts.iter().map(|(e, relation)| (Expression::element(e.clone()), *relation)).collect()
+        }
+        _ => Vec::new(),
+    };
+    prover.supposing(&further, |prover| {
+        let question = Question::of(model, prover, findings, chart)?;
+        Some(ask(&question, prover))
+    })
 }
 
 /// The signs of the responses of a system, and its elasticities. `None` for a model without Marshallian demands.
-pub fn responses(model: &Model, prover: &mut Prover<'_>, findings: &[Finding]) -> Option<AllResponses> {
-    let question = Question::of(model, prover, findings)?;
-    Some(AllResponses {
-        goods: responses::examine(&question, prover),
-        pairs: substitutes::examine(&question, prover),
-        elasticities: Elasticities::of(&question, prover),
+pub fn responses(
+    model: &Model,
+    prover: &mut Prover<'_>,
+    findings: &[Finding],
+    charts: &Charts,
+) -> Option<AllResponses> {
+    asked(model, prover, findings, charts, |question, prover| AllResponses {
+        goods: responses::examine(question, prover),
+        pairs: substitutes::examine(question, prover),
+        elasticities: Elasticities::of(question, prover),
     })
 }
 
@@ -156,5 +186,8 @@ fn of_preferences(question: &Question<'_>, prover: &mut Prover<'_>, structure: &
         structure.facts.extend(finding.map(|finding| Fact { property: Property::Separable(group), finding }));
     }
     structure.rank = budget::attempt(FACT_WORK, || rank::examine(question, prover)).ok().flatten();
+    for fact in &mut structure.facts {
+        fact.finding.witness = fact.finding.witness.take().map(|witness| question.stripped(witness));
+    }
     structure.facts.sort_by_key(|fact| fact.property);
 }

@@ -8,7 +8,7 @@ use crate::algebra::field::{Field, Relation};
 use crate::algebra::generator::Element;
 use crate::algebra::monomial::Var;
 use crate::algebra::polynomial::Poly;
-use crate::conditions::{self, ClaimFinding, Condition, Coordinates, Finding, System, Verdict, fact};
+use crate::conditions::{self, Chart, ClaimFinding, Condition, Coordinates, Finding, System, Verdict, Witness, fact};
 use crate::model::{Coverage, Model, PointSearch};
 use crate::proof::{Equation, Expression, Factor, FunctionId, Label, Prover, StepId};
 
@@ -29,6 +29,10 @@ pub struct Question<'a> {
     pub system: System,
     /// Income.
     pub income: Var,
+    /// wᵢ as the author's formulas have it.
+    pub written: Vec<Element>,
+    /// What holds where the demands are those of given preferences.
+    facts: Vec<(Element, Relation)>,
     /// wᵢ.
     pub shares: Vec<FunctionId>,
     /// m ∂wᵢ/∂m.
@@ -52,22 +56,30 @@ struct Points<'a> {
 }
 
 impl<'a> Question<'a> {
-    /// The question about a model; `None` without Marshallian demands.
-    pub fn of(model: &'a Model, prover: &mut Prover<'_>, findings: &[Finding]) -> Option<Question<'a>> {
-        let income = model.income.filter(|_| !model.demands.is_empty())?;
-        let system = System::of(model, prover)?;
+    /// The question about a model, whose demands are those of a chart where it has none itself; `None` without
+    /// Marshallian demands. To be asked where the chart's facts are supposed.
+    pub fn of(
+        model: &'a Model,
+        prover: &mut Prover<'_>,
+        findings: &[Finding],
+        chart: Option<&Chart>,
+    ) -> Option<Question<'a>> {
+        let income = model.income?;
+        let (system, written, facts) = demands(model, prover, chart)?;
         let field = &model.field;
         let (mut shares, mut engel, mut marginal, mut links) = (Vec::new(), Vec::new(), Vec::new(), Vec::new());
-        let mut quantities = Vec::new();
+        let mut positive: Vec<Element> = Vec::new();
         for (place, good) in model.goods.iter().enumerate() {
             let f = *system.collected.get(place)?;
             let itself = prover.value(&Factor::Function(f).into());
-            quantities.push(itself.clone());
-            let share = match system.coordinates {
-                Coordinates::Shares => itself,
-                Coordinates::Outlays => field.quotient(&itself, &Poly::var(income)).ok()?,
+            positive.push(itself.clone());
+            let w = match system.coordinates {
+                Coordinates::Shares => f,
+                Coordinates::Outlays => {
+                    let share = field.quotient(&itself, &Poly::var(income)).ok()?;
+                    prover.define(&format!("share {}", good.name), &share)
+                }
             };
-            let w = prover.define(&format!("share {}", good.name), &share);
             let slope = Expression::from(Factor::LogSlope(w, income));
             let outlay = slope.clone().plus(1, vec![Factor::Function(w)]);
             let (engel_slope, marginal_outlay) = (brief(prover, &slope), brief(prover, &outlay));
@@ -79,18 +91,44 @@ impl<'a> Question<'a> {
             engel.push(d);
             marginal.push(g);
         }
-        let links = prover.identities("slopes in income", links, &[]).ok().map(|proof| proof.step())?;
-        let mut proven = |condition| is_proven(condition, model, prover, findings);
+        let links = vec![prover.identities("slopes in income", links, &[]).ok().map(|proof| proof.step())?];
+        // those on given preferences are about other functions
+        let findings = if chart.is_some() && model.demands.is_empty() { &[] } else { findings };
+        let mut proven = |condition| is_proven(condition, &system, prover, findings);
         let symmetric = proven(Condition::Symmetry);
         let consumer = symmetric
             && model.coverage == Coverage::Complete
             && proven(Condition::Homogeneity)
             && proven(Condition::AddingUp);
         let fewer = FEWER_POINTS.into_iter().filter(|(goods, _)| model.goods.len() > *goods).map(|(_, points)| points);
-        let search = model.points().with_positive(&quantities);
-        let points = Points { found: Vec::new(), search, most: fewer.last().unwrap_or(MOST_POINTS) };
-        let (links, points) = (vec![links], RefCell::new(points));
-        Some(Question { model, system, income, shares, engel, marginal, links, consumer, symmetric, points })
+        let most = fewer.last().unwrap_or(MOST_POINTS);
+        positive.extend(facts.iter().filter(|(_, relation)| *relation == Relation::Positive).map(|(e, _)| e.clone()));
+        let points = Points { found: Vec::new(), search: model.points().with_positive(&positive), most };
+        let points = RefCell::new(points);
+        Some(Question {
+            model,
+            system,
+            income,
+            written,
+            facts,
+            shares,
+            engel,
+            marginal,
+            links,
+            consumer,
+            symmetric,
+            points,
+        })
+    }
+
+    /// The witness without the quantities and the utility level, where demands say what these are.
+    pub fn stripped(&self, mut witness: Witness) -> Witness {
+        if self.model.demands.is_empty() {
+            self.model.quantities.iter().flatten().chain([&self.model.utility]).for_each(|var| {
+                witness.point.remove(var);
+            });
+        }
+        witness
     }
 
     /// The number of goods.
@@ -121,10 +159,11 @@ impl<'a> Question<'a> {
         }
     }
 
-    /// That every quantity is positive.
+    /// That every quantity is positive, on top of what holds anyway.
     pub fn domain(&self) -> Vec<(Expression, Relation)> {
+        let facts = self.facts.iter().map(|(e, relation)| (Expression::element(e.clone()), *relation));
         let functions = self.system.collected.iter();
-        functions.map(|f| (Expression::from(Factor::Function(*f)), Relation::Positive)).collect()
+        facts.chain(functions.map(|f| (Expression::from(Factor::Function(*f)), Relation::Positive))).collect()
     }
 
     /// A point at which the expression is not zero, as a step.
@@ -172,10 +211,28 @@ pub fn cross(label: Label, [a, b, c, d]: [FunctionId; 4]) -> Equation {
     Equation { label, left: both(a, b), right: both(c, d) }
 }
 
+/// The demands of a model, or of a chart in prices and income: the system, the shares as they are written, and what holds
+/// of them.
+type Demands = (System, Vec<Element>, Vec<(Element, Relation)>);
+
+fn demands(model: &Model, prover: &mut Prover<'_>, chart: Option<&Chart>) -> Option<Demands> {
+    if !model.demands.is_empty() {
+        let written = model.demands.iter().map(|demand| demand.share.clone()).collect();
+        return Some((System::of(model, prover)?, written, Vec::new()));
+    }
+    let (chart, field) = (chart?, &model.field);
+    let share = |(x, price): (&Element, &Element)| {
+        let outlay = field.product(price, x);
+        Some(field.reduce(&field.quotient(&outlay, &chart.income).ok()?))
+    };
+    let written: Vec<Element> = chart.quantities.iter().zip(&chart.prices).map(share).collect::<Option<_>>()?;
+    Some((System::of_shares(model, &written, prover)?, written, chart.facts.clone()))
+}
+
 /// Whether a condition is proven, among the findings or anew.
-fn is_proven(condition: Condition, model: &Model, prover: &mut Prover<'_>, findings: &[Finding]) -> bool {
+fn is_proven(condition: Condition, system: &System, prover: &mut Prover<'_>, findings: &[Finding]) -> bool {
     match findings.iter().find(|finding| finding.condition == condition) {
         Some(finding) => finding.verdict == Verdict::Proven,
-        None => conditions::differences(condition, model, prover).is_some_and(|left| left.is_empty()),
+        None => conditions::differences_of(condition, system, prover).is_some_and(|left| left.is_empty()),
     }
 }

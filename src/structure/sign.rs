@@ -104,7 +104,7 @@ fn at_points(question: &Question<'_>, prover: &mut Prover<'_>, subject: &str, e:
         let claim = Bounded { expression: Expression::element(claim), relation: Relation::NonNegative };
         let refuted = budget::attempt(EVALUATION * 4, || prover.refute_bound(subject, claim, &point)).ok().flatten();
         let Some(refuted) = refuted else { continue };
-        *slot = Some(Witness::of(refuted.failure(), None));
+        *slot = Some(question.stripped(Witness::of(refuted.failure(), None)));
         response.steps.push(refuted.step());
         if response.positive.is_some() && response.negative.is_some() {
             response.tendency = Some(Tendency::Varies);

@@ -175,11 +175,13 @@ pub fn vet(model: Rc<Model>, asked: &[Part], allowance: Allowance) -> Vetting {
     }
     let (mut structure, essential) = (None, prover.derivation().steps().len());
     if asked.contains(&Part::Structure) {
-        structure = run.part(Part::Structure, || structure::examine(&model, &mut prover, &findings)).ok().flatten();
+        structure =
+            run.part(Part::Structure, || structure::examine(&model, &mut prover, &findings, &charts)).ok().flatten();
     }
     let mut responses = None;
     if asked.contains(&Part::Responses) {
-        responses = run.part(Part::Responses, || structure::responses(&model, &mut prover, &findings)).ok().flatten();
+        responses =
+            run.part(Part::Responses, || structure::responses(&model, &mut prover, &findings, &charts)).ok().flatten();
     }
     let derivation = prover.into_derivation();
     let Run { stops, timings, .. } = run;

@@ -2,7 +2,7 @@
 
 use crate::language::Preferences as Kind;
 use crate::recovery::given::Demanded;
-use crate::render::document::{Block, Equation, Inline, Relation};
+use crate::render::document::{Block, Equation, Relation};
 use crate::render::expression::Expression;
 use crate::render::notation::Notation;
 use crate::render::report::words::{enumerated, listed, point, relation, short, text, value};
@@ -67,19 +67,9 @@ fn interior(notation: &Notation<'_>, demanded: &Demanded) -> Option<Block> {
     if let Some((good, witness)) = demanded.corners.first() {
         words.push(text(", as at "));
         words.extend(point(notation, &witness.point));
-        words.push(text(", where the formula for "));
-        words.push(text(notation.good(*good)));
-        words.push(text(" has the value "));
-        words.extend(plain_value(notation, *good, witness));
+        words.push(text(", where by the formula "));
+        words.extend(value(notation.quantity(*good), &witness.value));
     }
     words.push(text("."));
     Some(Block::Note(words))
-}
-
-/// The value of a formula at a point.
-fn plain_value(notation: &Notation<'_>, good: usize, witness: &crate::conditions::Witness) -> Vec<Inline> {
-    match &witness.value {
-        crate::proof::Value::Exact(q) => vec![Inline::math(Expression::Number(q.clone()))],
-        other => value(notation.quantity(good), other),
-    }
 }
