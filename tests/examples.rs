@@ -77,7 +77,11 @@ fn appendices_compile() {
     std::fs::create_dir_all(&folder).unwrap();
     for model in examples().into_iter().step_by(2) {
         let file = folder.join(format!("{}.tex", stem(&model)));
-        std::fs::write(&file, mainspring(&["derive", "--as", "latex", "--document"], &model).0).unwrap();
+        let mut words = vec!["derive", "--as", "latex", "--document"];
+        if stem(&model).len() % 2 == 0 {
+            words.extend(["--labels", "paper", "--log", "--vectors", "bold", "--per-display", "3", "--theorems"]);
+        }
+        std::fs::write(&file, mainspring(&words, &model).0).unwrap();
         let mut tex = Command::new("pdflatex");
         tex.args(["-interaction=nonstopmode", "-halt-on-error"]).arg(&file).current_dir(&folder);
         let log = String::from_utf8_lossy(&tex.output().unwrap().stdout).into_owned();

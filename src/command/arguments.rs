@@ -143,6 +143,9 @@ pub struct Options {
     /// With --as latex: a whole document instead of a fragment
     #[arg(long)]
     pub document: bool,
+    /// With --as latex: how it is set
+    #[command(flatten)]
+    pub setting: Setting,
     /// The most seconds to spend on a model
     #[arg(long, value_name = "SECONDS", default_value_t = 60, value_parser = clap::value_parser!(u64).range(1..=1_000_000))]
     pub time: u64,
@@ -167,6 +170,49 @@ pub struct Options {
     /// Write the time that each part took to standard error
     #[arg(long)]
     pub timings: bool,
+}
+
+/// How LaTeX is set.
+#[derive(Args, Debug, Clone)]
+pub struct Setting {
+    /// With derive: the statements and the results, without the working
+    #[arg(long)]
+    pub short: bool,
+    /// With --as latex: equations are numbered, with labels eq:PREFIX-…
+    #[arg(long, value_name = "PREFIX")]
+    pub labels: Option<String>,
+    /// With --as latex: \log in place of \ln
+    #[arg(long)]
+    pub log: bool,
+    /// With --as latex: how the vector of prices is set
+    #[arg(long, value_enum, default_value_t = Vectors::Plain, value_name = "STYLE")]
+    pub vectors: Vectors,
+    /// With --as latex: the most equations of one display
+    #[arg(long, value_name = "COUNT", value_parser = clap::value_parser!(u16).range(1..))]
+    pub per_display: Option<u16>,
+    /// With --as latex: what is proven stands in an environment of this name (proposition, where none is given), its
+    /// working in a proof
+    #[arg(long, value_name = "NAME", num_args = 0..=1, require_equals = true, default_missing_value = "proposition", value_parser = environment)]
+    pub theorems: Option<String>,
+}
+
+/// A name that an environment of LaTeX can have.
+fn environment(name: &str) -> Result<String, String> {
+    match !name.is_empty() && name.bytes().all(|byte| byte.is_ascii_alphabetic()) {
+        true => Ok(name.to_string()),
+        false => Err("an environment is named by letters".to_string()),
+    }
+}
+
+/// How vectors are set.
+#[derive(ValueEnum, Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Vectors {
+    /// p
+    Plain,
+    /// p in bold type
+    Bold,
+    /// p under an arrow
+    Arrow,
 }
 
 /// The forms of output.

@@ -10,6 +10,7 @@ use mainspring::conditions::{Condition, Verdict};
 use mainspring::language::Source;
 use mainspring::model::Model;
 use mainspring::render::document::Document;
+use mainspring::render::latex_setting::{Setting, Vectors};
 use mainspring::render::{html, json, json_restrictions, latex, report, text};
 use mainspring::restrictions::{Request, Restrictions};
 use mainspring::vetting::appendix::Appendix;
@@ -238,8 +239,15 @@ fn written(task: &Task, input: &Input, source: &Source, vetting: &Vetting) -> Re
         return Report::Json(json::vetting(vetting, task.kind == Kind::Derive));
     }
     let document = match task.kind {
+        Kind::Derive if task.options.setting.short => {
+            report::short_derivation(vetting, &Appendix::of(vetting, allowance(&task.options)))
+        }
         Kind::Derive => report::derivation(vetting, &Appendix::of(vetting, allowance(&task.options))),
         Kind::Vet | Kind::Restrict => report::answer(vetting),
+    };
+    let document = match (task.options.form, task.kind) {
+        (Form::Html, Kind::Derive) => report::answer_first(vetting, document),
+        _ => document,
     };
     in_form(task, input, source, &document)
 }
@@ -248,11 +256,27 @@ fn written(task: &Task, input: &Input, source: &Source, vetting: &Vetting) -> Re
 fn in_form(task: &Task, input: &Input, source: &Source, document: &Document) -> Report {
     let options = &task.options;
     Report::Text(match (options.form, options.document) {
-        (Form::Latex, true) => latex::whole(document, &header(task.kind, input, source)),
-        (Form::Latex, false) => latex::fragment(document, &header(task.kind, input, source)),
+        (Form::Latex, true) => latex::whole(document, &header(task.kind, input, source), &setting(options)),
+        (Form::Latex, false) => latex::fragment(document, &header(task.kind, input, source), &setting(options)),
         (Form::Html, _) => html::page(document),
         _ => text::text(document, text::Layout { colour: colour(options), ..Default::default() }),
     })
+}
+
+/// How LaTeX is set.
+fn setting(options: &Options) -> Setting {
+    let chosen = &options.setting;
+    Setting {
+        labels: chosen.labels.clone(),
+        log: chosen.log,
+        vectors: match chosen.vectors {
+            arguments::Vectors::Plain => Vectors::Plain,
+            arguments::Vectors::Bold => Vectors::Bold,
+            arguments::Vectors::Arrow => Vectors::Arrow,
+        },
+        per_display: chosen.per_display.map(usize::from),
+        theorems: chosen.theorems.clone(),
+    }
 }
 
 /// Where the file comes from: program, command, input; no date and no path.

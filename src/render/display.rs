@@ -48,7 +48,7 @@ fn align(equations: &[Equation], namer: &mut Namer) -> Vec<Row> {
     let mut rows = Vec::new();
     for (equation, left) in equations.iter().zip(lefts) {
         match stacked {
-            true => stacked_rows(equation, left, namer, &mut rows),
+            true => stacked_rows(equation, namer, &mut rows),
             false => aligned_rows(equation, left, margin, namer, &mut rows),
         }
     }
@@ -68,9 +68,13 @@ fn aligned_rows(equation: &Equation, left: Option<Piece>, margin: u32, namer: &m
 }
 
 /// The left side on a line of its own, for where there is no room beside it.
-fn stacked_rows(equation: &Equation, left: Option<Piece>, namer: &mut Namer, rows: &mut Vec<Row>) {
-    if let Some(left) = left {
-        rows.push(Row { left: None, indent: 0, relation: None, body: left.node });
+fn stacked_rows(equation: &Equation, namer: &mut Namer, rows: &mut Vec<Row>) {
+    if let Some(left) = &equation.left {
+        let left = namer.shorten(left, COLUMN - 200);
+        for (place, line) in lines(&left, COLUMN - 100, COLUMN - 200).into_iter().enumerate() {
+            let indent = if place == 0 { 0 } else { 1 + line.depth };
+            rows.push(Row { left: None, indent, relation: None, body: line.node });
+        }
     }
     let start = Row { left: None, indent: 1, relation: equation.relation, body: Node::empty() };
     broken_rows(equation, start, (COLUMN - RELATION_WIDTH - 100, COLUMN - 200), namer, rows);

@@ -2,9 +2,12 @@
 
 use crate::render::display::{Row, displays, matrix_cells};
 use crate::render::document::{Block, Document, Equation, Inline, Matrix, Relation, Table, Tone, VerdictLine};
+use crate::render::expression::Expression;
+use crate::render::formula_text::plain_expression;
 use crate::render::layout::{Node, Style};
 use crate::render::mathml::{escape_markup, mathml};
 use crate::render::naming::Namer;
+use crate::render::text::equation_text;
 use crate::render::typeset::typeset;
 
 /// The look of the page.
@@ -15,12 +18,52 @@ pub fn page(document: &Document) -> String {
     let mut namer = Namer::new(document);
     let title = escape_markup(document.title.as_deref().unwrap_or("Demand system"));
     let heading = document.title.as_ref().map(|_| format!("<h1>{title}</h1>\n")).unwrap_or_default();
-    let body: String = document.blocks.iter().map(|each| block(each, &mut namer)).collect();
+    let body: String =
+        sections(&document.blocks).into_iter().enumerate().map(|(n, blocks)| section(n, blocks, &mut namer)).collect();
     format!(
         "<!DOCTYPE html>\n<html lang=\"en\">\n<head>\n<meta charset=\"utf-8\">\n\
          <meta name=\"viewport\" content=\"width=device-width, initial-scale=1\">\n<title>{title}</title>\n\
          <style>\n{STYLE}</style>\n</head>\n<body>\n<main>\n{heading}{body}</main>\n</body>\n</html>\n"
     )
+}
+
+/// The blocks from heading to heading.
+fn sections(blocks: &[Block]) -> Vec<&[Block]> {
+    let begins = |at: &usize| *at == 0 || matches!(blocks[*at], Block::Heading { level: 1, .. });
+    let mut starts: Vec<usize> = (0..blocks.len()).filter(begins).collect();
+    starts.push(blocks.len());
+    starts.windows(2).map(|pair| &blocks[pair[0]..pair[1]]).collect()
+}
+
+/// A section that can be folded at its heading; what stands before the first heading cannot.
+fn section(number: usize, blocks: &[Block], namer: &mut Namer) -> String {
+    let Some((Block::Heading { level: 1, text }, rest)) = blocks.split_first() else { return working(blocks, namer) };
+    let (heading, body) = (running(text), working(rest, namer));
+    format!(
+        "<section aria-labelledby=\"s{number}\">\n<details open=\"open\">\n\
+         <summary><h2 id=\"s{number}\">{heading}</h2></summary>\n{body}</details>\n</section>\n"
+    )
+}
+
+/// Blocks in a row; several displays in a row, one for each equation that is worked, are a step that can be folded.
+fn working(blocks: &[Block], namer: &mut Namer) -> String {
+    let is_display = |block: &Block| matches!(block, Block::Display(_) | Block::Where(_));
+    let mut out = String::new();
+    let mut at = 0;
+    while at < blocks.len() {
+        let run = blocks[at..].iter().take_while(|block| is_display(block)).count();
+        let step: String = blocks[at..at + run.max(1)].iter().map(|each| block(each, namer)).collect();
+        if run > 1 {
+            let words = format!("The working, in {run} displays");
+            out.push_str(&format!(
+                "<details open=\"open\" class=\"step\">\n<summary>{words}</summary>\n{step}</details>\n"
+            ));
+        } else {
+            out.push_str(&step);
+        }
+        at += run.max(1);
+    }
+    out
 }
 
 fn block(block: &Block, namer: &mut Namer) -> String {
@@ -61,7 +104,8 @@ fn inline_math(equation: &Equation) -> String {
     let side = |side| mathml(&typeset(side, Style::Text).node);
     let left = equation.left.as_ref().map(side).unwrap_or_default();
     let relation = equation.relation.map(relation_mathml).unwrap_or_default();
-    format!("<math><mrow>{left}{relation}{}</mrow></math>", side(&equation.right))
+    let spoken = escape_markup(&equation_text(equation));
+    format!("<math alttext=\"{spoken}\"><mrow>{left}{relation}{}</mrow></math>", side(&equation.right))
 }
 
 fn relation_mathml(relation: Relation) -> String {
@@ -79,10 +123,13 @@ fn relation_mathml(relation: Relation) -> String {
 }
 
 fn display(equations: &[Equation], namer: &mut Namer) -> String {
+    let mut spoken = Some(spoken(equations));
     let environment = |rows: Vec<Row>| {
         let rows: String = rows.iter().map(row).collect();
+        let words = spoken.take().unwrap_or_else(|| "definitions of the letters above".to_string());
         format!(
-            "<div class=\"display\"><math display=\"block\"><mtable displaystyle=\"true\">\n{rows}</mtable></math></div>\n"
+            "{}<math display=\"block\" alttext=\"{words}\"><mtable displaystyle=\"true\">\n{rows}</mtable></math></div>\n",
+            SCROLLED
         )
     };
     displays(equations, namer).into_iter().map(environment).collect::<Vec<_>>().join("<p>where</p>\n")
@@ -109,11 +156,27 @@ fn matrix(matrix: &Matrix, namer: &mut Namer) -> String {
     let line = |row: &Vec<Node>| format!("<mtr>{}</mtr>\n", row.iter().map(cell).collect::<String>());
     let body: String = cells.iter().map(line).collect();
     format!(
-        "<div class=\"display\"><math display=\"block\"><mrow>{}<mo form=\"infix\">=</mo><mrow><mo form=\"prefix\">(</mo>\
+        "{SCROLLED}<math display=\"block\" alttext=\"{}\"><mrow>{}<mo form=\"infix\">=</mo><mrow><mo form=\"prefix\">(</mo>\
          <mtable class=\"matrix\" displaystyle=\"true\">\n{body}</mtable><mo form=\"postfix\">)</mo></mrow></mrow></math></div>\n",
+        escape_markup(&format!("the matrix {}", plain_expression(&Expression::Object(matrix.name.clone())))),
         mathml(&name)
     )
 }
+
+/// Longer formulas are not read out to their end.
+const LONGEST_SPOKEN: usize = 500;
+
+/// Equations as they are read out.
+fn spoken(equations: &[Equation]) -> String {
+    let words = equations.iter().map(equation_text).collect::<Vec<_>>().join("; ");
+    match words.char_indices().nth(LONGEST_SPOKEN) {
+        Some((at, _)) => escape_markup(&words[..at]) + " …",
+        None => escape_markup(&words),
+    }
+}
+
+/// A wide formula is scrolled, by keyboard too, in a box of its own.
+const SCROLLED: &str = "<div class=\"display\" role=\"group\" aria-label=\"formula\" tabindex=\"0\">";
 
 fn verdicts(lines: &[VerdictLine]) -> String {
     let line = |line: &VerdictLine| {
@@ -129,7 +192,10 @@ fn verdicts(lines: &[VerdictLine]) -> String {
             running(&line.note)
         )
     };
-    format!("<table class=\"verdicts\">\n{}</table>\n", lines.iter().map(line).collect::<String>())
+    format!(
+        "<table class=\"verdicts\" aria-label=\"verdicts\">\n{}</table>\n",
+        lines.iter().map(line).collect::<String>()
+    )
 }
 
 fn table(table: &Table) -> String {

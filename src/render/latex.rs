@@ -4,32 +4,39 @@
 
 use crate::render::display::COLUMN;
 use crate::render::document::{Block, Document, Equation, Inline, Table, VerdictLine};
+use crate::render::expression::Expression;
 use crate::render::formula_latex::tex;
-use crate::render::latex_display::{display, matrix, relation_latex};
+use crate::render::latex_display::{Pen, display, matrix, relation_latex};
 use crate::render::latex_escape::escape;
+use crate::render::latex_setting::Setting;
 use crate::render::layout::Style;
-use crate::render::naming::Namer;
 use crate::render::typeset::typeset;
 
 /// Formulas in running text that are wider than this, in hundredths of an em, are displayed.
 const WIDEST_INLINE: u32 = 2000;
+/// The same for formulas that cannot be broken at a sign.
+const WIDEST_UNBROKEN: u32 = 1000;
 
 /// The document as a fragment, with `header` as comment lines at the top. It needs amsmath.
-pub fn fragment(document: &Document, header: &[String]) -> String {
+pub fn fragment(document: &Document, header: &[String], setting: &Setting) -> String {
     let mut out = comments(header);
     if let Some(title) = &document.title {
         out.push_str(&comments(std::slice::from_ref(title)));
     }
     out.push_str("\\begingroup\\emergencystretch=3em\\relax\n");
-    out.push_str(&body(document, ["subsection*", "subsubsection*", "paragraph"]));
+    out.push_str(&body(document, ["subsection*", "subsubsection*", "paragraph"], setting));
     out.push_str("\\par\\endgroup\n");
     out
 }
 
 /// The document as a LaTeX document, with `header` as comment lines at the top.
-pub fn whole(document: &Document, header: &[String]) -> String {
+pub fn whole(document: &Document, header: &[String], setting: &Setting) -> String {
     let mut out = comments(header);
     out.push_str("\\documentclass{article}\n\\usepackage{amsmath}\n\\usepackage{amssymb}\n");
+    if let Some(name) = &setting.theorems {
+        let title: String = name.chars().take(1).flat_map(char::to_uppercase).chain(name.chars().skip(1)).collect();
+        out.push_str(&format!("\\usepackage{{amsthm}}\n\\newtheorem{{{name}}}{{{title}}}\n"));
+    }
     out.push_str("\\allowdisplaybreaks\n\\setlength{\\emergencystretch}{3em}\n");
     if let Some(title) = &document.title {
         out.push_str(&format!("\\title{{{}}}\n\\author{{}}\n\\date{{}}\n", escape(title)));
@@ -38,7 +45,7 @@ pub fn whole(document: &Document, header: &[String]) -> String {
     if document.title.is_some() {
         out.push_str("\\maketitle\n");
     }
-    out.push_str(&body(document, ["section*", "subsection*", "paragraph"]));
+    out.push_str(&body(document, ["section*", "subsection*", "paragraph"], setting));
     out.push_str("\\end{document}\n");
     out
 }
@@ -51,17 +58,66 @@ fn comments(lines: &[String]) -> String {
     lines.iter().map(clean).collect()
 }
 
-fn body(document: &Document, headings: [&str; 3]) -> String {
-    let mut namer = Namer::new(document);
-    let blocks: Vec<String> = document.blocks.iter().map(|each| block(each, headings, &mut namer)).collect();
+fn body(document: &Document, headings: [&str; 3], setting: &Setting) -> String {
+    let document = setting.applied(document);
+    let mut pen = Pen::new(&document, setting);
     let mut out = String::new();
-    for (position, tex) in blocks.iter().enumerate() {
-        if position > 0 && begins_paragraph(&document.blocks[position]) {
+    for section in sections(&document.blocks) {
+        let theorem = setting.theorems.as_ref().and_then(|name| Some((name, proven(section)?)));
+        if !out.is_empty() {
             out.push('\n');
         }
-        out.push_str(tex);
+        match theorem {
+            None => out.push_str(&written(section, headings, &mut pen)),
+            Some((name, (heading, said))) => {
+                let heading = running(heading, false, &mut pen);
+                out.push_str(&format!("\\begin{{{name}}}[{heading}]\n{}\n\\end{{{name}}}\n", escape(&said)));
+                let working = written(&section[1..], headings, &mut pen);
+                out.push_str(&format!("\\begin{{proof}}\n{working}\\end{{proof}}\n"));
+            }
+        }
+    }
+    setting.named(out)
+}
+
+fn written(blocks: &[Block], headings: [&str; 3], pen: &mut Pen) -> String {
+    let mut out = String::new();
+    for (position, each) in blocks.iter().enumerate() {
+        let tex = block(each, headings, pen);
+        if position > 0 && begins_paragraph(each) {
+            out.push('\n');
+        } else if position > 0 && both_displays(&blocks[position - 1], each) {
+            // two displays have an empty line between them
+            out.push_str("\\vspace{-\\baselineskip}\n");
+        }
+        out.push_str(&tex);
     }
     out
+}
+
+fn both_displays(before: &Block, after: &Block) -> bool {
+    let is_display = |block: &Block| matches!(block, Block::Display(equations) if !equations.is_empty());
+    is_display(before) && is_display(after)
+}
+
+/// The blocks from heading to heading.
+fn sections(blocks: &[Block]) -> Vec<&[Block]> {
+    let begins = |at: &usize| *at == 0 || matches!(blocks[*at], Block::Heading { level: 1, .. });
+    let mut starts: Vec<usize> = (0..blocks.len()).filter(begins).collect();
+    starts.push(blocks.len());
+    starts.windows(2).map(|pair| &blocks[pair[0]..pair[1]]).collect()
+}
+
+/// The heading of a section that ends with "Hence …", and what follows there.
+fn proven(section: &[Block]) -> Option<(&[Inline], String)> {
+    let (Block::Heading { level: 1, text: heading }, Block::Paragraph(last)) = (section.first()?, section.last()?)
+    else {
+        return None;
+    };
+    let [Inline::Text(words)] = last.as_slice() else { return None };
+    let said = words.strip_prefix("Hence ").filter(|_| section.len() > 2)?;
+    let first = said.chars().next()?.to_uppercase();
+    Some((heading, first.chain(said.chars().skip(1)).collect()))
 }
 
 /// A display belongs to the paragraph in front of it; everything else begins a paragraph.
@@ -69,28 +125,29 @@ fn begins_paragraph(block: &Block) -> bool {
     !matches!(block, Block::Display(_) | Block::Where(_) | Block::Matrix(_))
 }
 
-fn block(block: &Block, headings: [&str; 3], namer: &mut Namer) -> String {
+fn block(block: &Block, headings: [&str; 3], pen: &mut Pen) -> String {
     match block {
         Block::Heading { level, text } => {
             let command = headings[usize::from(*level).clamp(1, 3) - 1];
-            format!("\\{command}{{{}}}\n", running(text, false, namer))
+            format!("\\{command}{{{}}}\n", running(text, false, pen))
         }
-        Block::Paragraph(text) => format!("{}\n", running(text, true, namer)),
-        Block::Display(equations) => display(equations, "", namer),
-        Block::Where(equations) => format!("where\n{}", display(equations, "", namer)),
-        Block::Verdicts(lines) => verdicts(lines, namer),
-        Block::Table(each) => table(each, namer),
-        Block::Matrix(each) => matrix(each, namer),
+        Block::Paragraph(text) => format!("{}\n", running(text, true, pen)),
+        Block::Display(equations) if equations.is_empty() => String::new(),
+        Block::Display(equations) => display(equations, "", pen),
+        Block::Where(equations) => format!("where\n{}", display(equations, "", pen)),
+        Block::Verdicts(lines) => verdicts(lines, pen),
+        Block::Table(each) => table(each, pen),
+        Block::Matrix(each) => matrix(each, pen),
         Block::List { ordered, items } => {
-            let items: Vec<String> = items.iter().map(|item| running(item, true, namer)).collect();
+            let items: Vec<String> = items.iter().map(|item| running(item, true, pen)).collect();
             list(if *ordered { "enumerate" } else { "itemize" }, &items)
         }
-        Block::Note(text) => format!("\\emph{{Note.}} {}\n", running(text, true, namer)),
+        Block::Note(text) => format!("\\emph{{Note.}} {}\n", running(text, true, pen)),
     }
 }
 
 /// Running text; a wide formula becomes a display where that `may_display`, and takes the punctuation behind it along.
-fn running(inlines: &[Inline], may_display: bool, namer: &mut Namer) -> String {
+fn running(inlines: &[Inline], may_display: bool, pen: &mut Pen) -> String {
     let mut out = String::new();
     let mut skip = 0;
     for (position, inline) in inlines.iter().enumerate() {
@@ -103,7 +160,8 @@ fn running(inlines: &[Inline], may_display: bool, namer: &mut Namer) -> String {
             Inline::Code(words) => out.push_str(&format!("\\texttt{{{}}}", escape(words))),
             Inline::Math(equation) => {
                 let (tex, width) = inline_math(equation);
-                if !may_display || width <= WIDEST_INLINE {
+                let widest = if breaks(equation) { WIDEST_INLINE } else { WIDEST_UNBROKEN };
+                if !may_display || width <= widest {
                     out.push_str(&format!("${tex}$"));
                     skip = 0;
                     continue;
@@ -113,7 +171,7 @@ fn running(inlines: &[Inline], may_display: bool, namer: &mut Namer) -> String {
                 if !out.is_empty() {
                     out.push('\n');
                 }
-                out.push_str(&display(std::slice::from_ref(&**equation), mark, namer));
+                out.push_str(&display(std::slice::from_ref(&**equation), mark, pen));
                 skip = mark.len();
                 continue;
             }
@@ -129,6 +187,12 @@ fn punctuation(next: Option<&Inline>) -> &str {
         Some(Inline::Text(words)) if words.starts_with([',', '.', ';']) => &words[..1],
         _ => "",
     }
+}
+
+/// Whether a line may end inside the formula: behind its relation, or at a sign of a sum.
+fn breaks(equation: &Equation) -> bool {
+    let narrow = |e: &Expression| matches!(e, Expression::Sum(_)) || typeset(e, Style::Text).width <= WIDEST_UNBROKEN;
+    narrow(&equation.right) && equation.left.as_ref().is_none_or(narrow)
 }
 
 fn inline_math(equation: &Equation) -> (String, u32) {
@@ -148,26 +212,26 @@ fn list(environment: &str, items: &[String]) -> String {
     }
 }
 
-fn verdicts(lines: &[VerdictLine], namer: &mut Namer) -> String {
+fn verdicts(lines: &[VerdictLine], pen: &mut Pen) -> String {
     let mut items = Vec::new();
     for line in lines {
-        let note = running(&line.note, true, namer);
+        let note = running(&line.note, true, pen);
         let joint = if note.is_empty() { "." } else { "; " };
         items.push(format!("{}: \\emph{{{}}}{joint}{note}", escape(&line.name), escape(&line.verdict)));
     }
     list("itemize", &items)
 }
 
-fn table(table: &Table, namer: &mut Namer) -> String {
+fn table(table: &Table, pen: &mut Pen) -> String {
     let columns = table.columns.len();
     let rows = || std::iter::once(&table.columns).chain(&table.rows);
     let widest = |column: usize| rows().filter_map(|row| row.get(column)).map(|cell| cell_width(cell)).max();
     let width: u32 = (0..columns).map(|column| widest(column).unwrap_or(0) + 120).sum();
     if width > COLUMN {
-        return table_as_list(table, namer);
+        return table_as_list(table, pen);
     }
     let mut line = |row: &Vec<Vec<Inline>>| {
-        let cells: Vec<String> = row.iter().map(|cell| running(cell, false, namer)).collect();
+        let cells: Vec<String> = row.iter().map(|cell| running(cell, false, pen)).collect();
         format!("  {} \\\\\n", cells.join(" & "))
     };
     let head = line(&table.columns);
@@ -179,11 +243,11 @@ fn table(table: &Table, namer: &mut Namer) -> String {
 }
 
 /// A table that is too wide, as one item a row.
-fn table_as_list(table: &Table, namer: &mut Namer) -> String {
-    let heads: Vec<String> = table.columns.iter().map(|head| running(head, false, namer)).collect();
+fn table_as_list(table: &Table, pen: &mut Pen) -> String {
+    let heads: Vec<String> = table.columns.iter().map(|head| running(head, false, pen)).collect();
     let mut items = Vec::new();
     for row in &table.rows {
-        let cells: Vec<String> = row.iter().map(|cell| running(cell, true, namer)).collect();
+        let cells: Vec<String> = row.iter().map(|cell| running(cell, true, pen)).collect();
         let named: Vec<String> = heads.iter().zip(&cells).map(|(head, cell)| format!("{head}: {cell}")).collect();
         items.push(named.join("; "));
     }

@@ -14,6 +14,7 @@ mod json_structure;
 pub mod latex;
 mod latex_display;
 mod latex_escape;
+pub mod latex_setting;
 mod layout;
 mod letters;
 mod lines;

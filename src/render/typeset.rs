@@ -176,7 +176,7 @@ fn call(function: Function, argument: &Expression, style: Style) -> Piece {
     let simple_ratio = matches!(argument, Expression::Quotient(above, below) if is_simple(above) && is_simple(below));
     let set = typeset(argument, if simple_ratio && style == Style::Display { Style::Text } else { style });
     match function {
-        Function::Sqrt => Piece::new(Node::Root(Box::new(set.node.clone())), set.width + 90, Level::Atom).around(&set),
+        Function::Sqrt => Piece::new(Node::Root(Box::new(set.node.clone())), set.width + 115, Level::Atom).around(&set),
         Function::Exp if style != Style::Script => {
             let power = raise(Piece::new(Node::letter('e'), 47, Level::Atom), argument);
             if power.width <= 47 + SHORT_EXPONENT { power } else { applied(function, set.bracketed()) }

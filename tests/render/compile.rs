@@ -4,6 +4,7 @@ use crate::samples;
 use crate::scrambled::scrambled;
 use mainspring::render::document::Document;
 use mainspring::render::latex::{fragment, whole};
+use mainspring::render::latex_setting::Setting;
 use std::fs;
 use std::path::{Path, PathBuf};
 use std::process::Command;
@@ -64,13 +65,13 @@ fn documents_and_fragments_compile_and_fit() {
     let mut paper = "\\documentclass{article}\\usepackage{amsmath}\n\\begin{document}\n".to_string();
     for (number, document) in documents().iter().enumerate() {
         let name = format!("fragment{number}");
-        write(&name, &fragment(document, &[]));
+        write(&name, &fragment(document, &[], &Setting::default()));
         paper.push_str(&format!("Before.\\input{{{name}}}After.\n"));
     }
     write("paper", &format!("{paper}\\end{{document}}\n"));
     assert_fits(&compile(&scratch.0, "paper"));
     for document in [samples::verdicts(), samples::almost_ideal(4)] {
-        write("whole", &whole(&document, &[]));
+        write("whole", &whole(&document, &[], &Setting::default()));
         assert_fits(&compile(&scratch.0, "whole"));
     }
 }

@@ -4,6 +4,7 @@ use crate::samples;
 use crate::scrambled::scrambled;
 use mainspring::render::document::Document;
 use mainspring::render::latex::{fragment, whole};
+use mainspring::render::latex_setting::Setting;
 use mainspring::render::text::{Layout, text};
 
 fn header() -> Vec<String> {
@@ -25,7 +26,7 @@ fn verdicts_as_text() {
 
 #[test]
 fn verdicts_as_latex() {
-    insta::assert_snapshot!(whole(&samples::verdicts(), &header()));
+    insta::assert_snapshot!(whole(&samples::verdicts(), &header(), &Setting::default()));
 }
 
 #[test]
@@ -35,7 +36,7 @@ fn nested_as_text() {
 
 #[test]
 fn nested_as_latex() {
-    insta::assert_snapshot!(fragment(&samples::nested(), &header()));
+    insta::assert_snapshot!(fragment(&samples::nested(), &header(), &Setting::default()));
 }
 
 #[test]
@@ -45,7 +46,7 @@ fn ces_as_text() {
 
 #[test]
 fn ces_as_latex() {
-    insta::assert_snapshot!(fragment(&samples::ces(4), &header()));
+    insta::assert_snapshot!(fragment(&samples::ces(4), &header(), &Setting::default()));
 }
 
 #[test]
@@ -55,7 +56,7 @@ fn almost_ideal_as_text() {
 
 #[test]
 fn almost_ideal_as_latex() {
-    insta::assert_snapshot!(fragment(&samples::almost_ideal(4), &header()));
+    insta::assert_snapshot!(fragment(&samples::almost_ideal(4), &header(), &Setting::default()));
 }
 
 #[test]
@@ -85,7 +86,7 @@ fn colour_wraps_the_verdict_and_nothing_else() {
 #[test]
 fn latex_is_ascii_and_has_no_blank_line_in_an_environment() {
     for sample in all_samples() {
-        for tex in [whole(&sample, &header()), fragment(&sample, &header())] {
+        for tex in [whole(&sample, &header(), &Setting::default()), fragment(&sample, &header(), &Setting::default())] {
             assert!(tex.is_ascii());
             assert!(tex.ends_with('\n') && !tex.ends_with("\n\n"));
             let mut open = Vec::new();

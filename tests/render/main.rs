@@ -9,4 +9,5 @@ mod reader;
 mod reading_back;
 mod samples;
 mod scrambled;
+mod settings;
 mod shared;

@@ -7,6 +7,7 @@ use mainspring::language::{Source, Statement, read, wording};
 use mainspring::render::formula_latex::latex;
 use mainspring::render::formula_text::plain;
 use mainspring::render::latex::fragment;
+use mainspring::render::latex_setting::Setting;
 use proptest::prelude::*;
 
 const DECLARED: &str = "goods 1..2\nparameters p_1, p_bread, m, a_1, gamma[i,j], sigma, u, alpha_fish, P\n";
@@ -40,7 +41,7 @@ fn a_broken_display_reads_back() {
     let mut read = 0;
     for seed in 0..6 {
         let document = scrambled(seed);
-        let text = fragment(&document, &[]);
+        let text = fragment(&document, &[], &Setting::default());
         for display in text.split("\\begin{align*}").skip(1) {
             let Some((inside, _)) = display.split_once("\\end{align*}") else { continue };
             let Some((_, right)) = inside.split_once("&=") else { continue };

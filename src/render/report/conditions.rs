@@ -33,6 +33,36 @@ pub fn section(scribe: &Scribe<'_>, finding: &Finding) -> Vec<Block> {
     blocks
 }
 
+/// What holds, in a sentence, and the rule by which it was shown.
+pub fn in_short(scribe: &Scribe<'_>, finding: &Finding) -> Vec<Block> {
+    let mut words = conclusion(scribe.notation, finding);
+    if finding.verdict == Verdict::Proven
+        && let [Inline::Text(only)] = words.as_mut_slice()
+    {
+        let rule = match finding.condition {
+            Condition::Homogeneity => "By Euler's theorem, ",
+            Condition::AddingUp => "Adding up over the goods shows that ",
+            Condition::Symmetry => "Differentiation shows that ",
+            Condition::Curvature => "Moreover, ",
+        };
+        let said = only.strip_prefix("Hence ").unwrap_or(only);
+        *only = format!("{rule}{said}");
+    }
+    let mut blocks = vec![Block::Paragraph(words)];
+    if finding.condition == Condition::Curvature && finding.verdict == Verdict::Proven {
+        let balance = |id: &crate::proof::StepId| {
+            scribe.derivation.step(*id).is_some_and(|step| matches!(step.statement(), Statement::Balanced(_)))
+        };
+        blocks.extend(finding.steps.iter().filter(|id| !balance(id)).filter_map(|id| reason(scribe, *id)));
+        let laplacian =
+            |id: &crate::proof::StepId| scribe.derivation.step(*id).is_some_and(|step| *step.rule() == Rule::Laplacian);
+        if finding.steps.iter().any(laplacian) {
+            blocks.push(Block::Display(vec![sum_of_squares(scribe.notation)]));
+        }
+    }
+    blocks
+}
+
 /// What is to be shown, and in which coordinates.
 fn opening(scribe: &Scribe<'_>, finding: &Finding) -> Vec<Block> {
     let Some(used) = scribe.appendix.coordinates else { return Vec::new() };

@@ -40,6 +40,29 @@ pub fn derivation(vetting: &Vetting, appendix: &Appendix) -> Document {
     Document { title: vetting.model.title.clone(), blocks }
 }
 
+/// The statements and the results, without the working.
+pub fn short_derivation(vetting: &Vetting, appendix: &Appendix) -> Document {
+    let notation = Notation::new(&vetting.model);
+    let scribe = Scribe { notation: &notation, derivation: &vetting.derivation, appendix };
+    let mut blocks = Vec::new();
+    let start = Start::of(&vetting.model);
+    if !vetting.model.demands.is_empty() || start.is_some() {
+        blocks.extend(system::blocks(&notation));
+    }
+    if !vetting.findings.is_empty() {
+        blocks.push(heading("Integrability"));
+        blocks.extend(vetting.findings.iter().flat_map(|finding| conditions::in_short(&scribe, finding)));
+    }
+    if let Some(recovered) = &vetting.recovered {
+        blocks.extend(recovery::in_short(&scribe, recovered));
+    }
+    if !vetting.claims.is_empty() {
+        blocks.push(heading("Claims"));
+        blocks.push(Block::Verdicts(claims::claim_lines(&notation, vetting)));
+    }
+    Document { title: vetting.model.title.clone(), blocks }
+}
+
 /// The heading of a section.
 pub fn heading(words: &str) -> Block {
     Block::Heading { level: 1, text: vec![text(words)] }

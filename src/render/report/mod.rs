@@ -16,6 +16,6 @@ mod words;
 mod working;
 mod written;
 
-pub use derivation::derivation;
+pub use derivation::{derivation, short_derivation};
 pub use restrictions::restrictions;
-pub use verdicts::answer;
+pub use verdicts::{answer, answer_first};

@@ -39,6 +39,32 @@ pub fn sections(scribe: &Scribe<'_>, recovered: &Recovered) -> Vec<Block> {
     blocks
 }
 
+/// The preferences and the way to them, with the check in a sentence.
+pub fn in_short(scribe: &Scribe<'_>, recovered: &Recovered) -> Vec<Block> {
+    let mut blocks = sections(scribe, recovered);
+    let is_check = |block: &Block| matches!(block, Block::Heading { text, .. } if matches!(text.as_slice(), [Inline::Text(words)] if words == "Check"));
+    let Some(at) = blocks.iter().position(is_check) else { return blocks };
+    blocks.truncate(at);
+    let Recovered::Found(found) = recovered else { return blocks };
+    let mut rules: Vec<&str> = Vec::new();
+    for id in &found.steps {
+        let words = match scribe.derivation.step(*id).map(|step| step.subject()) {
+            Some("Roy's identity") => "Roy's identity",
+            Some("Shephard's lemma") => "Shephard's lemma",
+            Some("first-order conditions") => "the first-order conditions",
+            _ => continue,
+        };
+        if !rules.contains(&words) {
+            rules.push(words);
+        }
+    }
+    if !rules.is_empty() {
+        let words = rules.join(" and ");
+        blocks.push(paragraph(format!("Differentiating back confirms {words}.")));
+    }
+    blocks
+}
+
 fn steps(notation: &Notation<'_>, working: &Working) -> Vec<Block> {
     let mut blocks = Vec::new();
     let mut words = vec![text("Expenditure at a given utility satisfies ")];

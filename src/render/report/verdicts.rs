@@ -37,6 +37,12 @@ pub fn answer(vetting: &Vetting) -> Document {
     Document { title: vetting.model.title.clone(), blocks }
 }
 
+/// A derivation with the verdicts above it.
+pub fn answer_first(vetting: &Vetting, derivation: Document) -> Document {
+    let blocks = answer(vetting).blocks.into_iter().chain(derivation.blocks).collect();
+    Document { title: derivation.title, blocks }
+}
+
 /// How a verdict is to be taken.
 pub fn tone(verdict: Verdict) -> Tone {
     match verdict {
