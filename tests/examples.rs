@@ -78,7 +78,7 @@ fn appendices_compile() {
     for model in examples().into_iter().step_by(2) {
         let file = folder.join(format!("{}.tex", stem(&model)));
         let mut words = vec!["derive", "--as", "latex", "--document"];
-        if stem(&model).len() % 2 == 0 {
+        if stem(&model).len().is_multiple_of(2) {
             words.extend(["--labels", "paper", "--log", "--vectors", "bold", "--per-display", "3", "--theorems"]);
         }
         std::fs::write(&file, mainspring(&words, &model).0).unwrap();
