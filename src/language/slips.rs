@@ -145,6 +145,8 @@ fn latex_command(place: &Place) -> Option<Diagnostic> {
         "" => "take it out; a line goes on when it begins with white space".to_string(),
         _ => format!("write {name}"),
     };
+    let in_formula = !name.is_empty() && place.expects_operand() && !place.expects(&[Rule::declared]);
+    let remedy = if in_formula { format!("{remedy}, or put the formula between `$` signs") } else { remedy };
     Some(Diagnostic::error(place.here(), format!("`{command}` is LaTeX")).remedy(remedy))
 }
 

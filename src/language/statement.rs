@@ -178,6 +178,11 @@ fn malformed(keyword: &Keyword, span: Span) -> Diagnostic {
     Diagnostic::error(span, message).remedy(format!("write {}", keyword.usage))
 }
 
+/// Words that link displays in a text.
+const LINKING: [&str; 8] = ["where", "with", "and", "so", "hence", "here", "thus", "Here"];
+/// The longest line of such words.
+const MOST_LINKING_WORDS: usize = 6;
+
 fn unknown_keyword(word: &str, text: &str, span: Span) -> Diagnostic {
     let known = KEYWORDS.iter().filter(|keyword| keyword.rule.is_some()).map(|keyword| keyword.word);
     if let Some(meant) = nearest(word, known.clone()) {
@@ -186,6 +191,11 @@ fn unknown_keyword(word: &str, text: &str, span: Span) -> Diagnostic {
         return Diagnostic::error(span, message).remedy(format!("write {usage}"));
     }
     let diagnostic = Diagnostic::error(span, format!("no statement begins with `{word}`"));
+    if text.trim_end_matches([',', ':', '.']).split_whitespace().count() <= MOST_LINKING_WORDS
+        && LINKING.contains(&word)
+    {
+        return diagnostic.remedy("put `#` before words that stand between displays");
+    }
     let left = text.split('=').next().map(str::trim).filter(|left| left.len() < text.len() && left.len() <= MAX_SHOWN);
     if let Some(left) = left {
         let remedy =
