@@ -344,3 +344,19 @@ fn curvature_among_the_conditions() {
     assert_eq!(found["branches_complete"], false);
     assert!(equations(&found).iter().all(|words| !words.is_empty()));
 }
+
+/// Long products of powers of prices, which the conditions name: the preferences of the branches are printed all the same.
+#[test]
+fn branches_of_logistic_shares() {
+    let product = |i: &str| format!("a[{i}]*m^(g[{i}])*p[1]^(b[{i},1])*p[2]^(b[{i},2])*p[3]^(b[{i},3])");
+    let text = format!(
+        "goods 1..3\nprices p[i]\nincome m\nparameters a[i], b[i,j], g[i]\nassume a[i] > 0\n\
+         share[i] = {}/sum over k of ({})\n",
+        product("i"),
+        product("k")
+    );
+    let output = run_with_input(&["restrict", "-", "--only", "symmetry", "--as", "json"], &text);
+    let found: serde_json::Value = serde_json::from_str(&out(&output)).unwrap();
+    assert_eq!((code(&output), &found["branches_complete"]), (1, &true.into()));
+    assert_eq!(equations(&found).len(), 4);
+}

@@ -284,6 +284,18 @@ impl Field {
         Formula::power(base, self.formula(&self.reduce(exponent)))
     }
 
+    /// Whether the value of a named sum, written short, is a product that holds the sum itself, or another name of it.
+    fn comes_back(&self, var: Var, value: &Element) -> bool {
+        let value = self.current(value);
+        let short = self.folded(&self.parted(&value));
+        let same = |v: Var| match &*self.kind(v) {
+            _ if v == var => true,
+            Kind::Sum { value: other, root: 1 } => self.current(other) == value,
+            _ => false,
+        };
+        short.len() == 1 && short.vars().into_iter().any(same)
+    }
+
     /// A single variable as a formula.
     pub fn variable_formula(&self, var: Var) -> Formula {
         if let Some(name) = self.name(var) {
@@ -303,6 +315,7 @@ impl Field {
                 }
                 None => Formula::call(Function::Exp, self.formula(argument)),
             },
+            Kind::Sum { value, root: 1 } if self.comes_back(var, value) => self.sum_formula(value),
             Kind::Sum { value, root: 1 } => self.formula(value),
             Kind::Sum { value, root } => {
                 let part = Poly::constant(&Rational::new(1.into(), (*root).into()));
