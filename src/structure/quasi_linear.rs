@@ -12,8 +12,9 @@ pub(super) fn settle(question: &Question<'_>, prover: &mut Prover<'_>) -> Option
         return None;
     }
     let subject = "quasi-linear preferences";
-    let moving: Vec<usize> =
-        (0..question.size()).filter(|good| !question.vanishes(prover, question.marginal[*good])).collect();
+    // two that move settle it
+    let moves = |good: &usize| !question.vanishes(prover, question.marginal[*good]);
+    let moving: Vec<usize> = (0..question.size()).filter(moves).take(2).collect();
     let left = |good: usize| Expression::from(Factor::Function(question.marginal[good]));
     let equation = |good: usize| Equation { label: Label::Good(good), left: left(good), right: Expression::zero() };
     if let [numeraire] = moving[..] {

@@ -5,7 +5,7 @@ use std::cell::RefCell;
 use crate::algebra::budget;
 use crate::algebra::evaluation::Point;
 use crate::algebra::field::{Field, Relation};
-use crate::algebra::generator::Element;
+use crate::algebra::generator::{Element, Kind};
 use crate::algebra::monomial::Var;
 use crate::algebra::polynomial::Poly;
 use crate::conditions::{self, Chart, ClaimFinding, Condition, Coordinates, Finding, System, Verdict, Witness, fact};
@@ -15,9 +15,13 @@ use crate::proof::{Equation, Expression, Factor, FunctionId, Label, Prover, Step
 /// How many points are looked at against one fact; in larger systems a point takes longer, and shows more.
 const MOST_POINTS: usize = 24;
 /// The same for a system with as many goods, and with more.
-const FEWER_POINTS: [(usize, usize); 2] = [(8, 6), (24, 2)];
+const FEWER_POINTS: [(usize, usize); 2] = [(8, 6), (24, 1)];
 /// The work that the search for one point may take.
-const POINT_WORK: u64 = 50_000_000;
+const POINT_WORK: u64 = 20_000_000;
+/// In larger systems quantities need not be positive at the points.
+const MOST_GOODS_WITH_POSITIVE: usize = 8;
+/// Longer elements are not reduced.
+const LONGEST_REDUCED: usize = 30;
 /// The work that one reduction may take.
 const REDUCING: u64 = 4_000_000;
 
@@ -52,7 +56,10 @@ pub struct Question<'a> {
 struct Points<'a> {
     found: Vec<Point>,
     search: PointSearch<'a>,
+    /// How many there may be; fewer once the search has ended.
     most: usize,
+    /// Whether quantities need not be positive at them.
+    everywhere: bool,
 }
 
 impl<'a> Question<'a> {
@@ -103,7 +110,10 @@ impl<'a> Question<'a> {
         let fewer = FEWER_POINTS.into_iter().filter(|(goods, _)| model.goods.len() > *goods).map(|(_, points)| points);
         let most = fewer.last().unwrap_or(MOST_POINTS);
         positive.extend(facts.iter().filter(|(_, relation)| *relation == Relation::Positive).map(|(e, _)| e.clone()));
-        let points = Points { found: Vec::new(), search: model.points().with_positive(&positive), most };
+        // in a large system points with all quantities positive are hard to find, and refute no more identities
+        let everywhere = model.goods.len() > MOST_GOODS_WITH_POSITIVE;
+        let search = if everywhere { model.points() } else { model.points().with_positive(&positive) };
+        let points = Points { found: Vec::new(), search, most, everywhere };
         let points = RefCell::new(points);
         Some(Question {
             model,
@@ -141,7 +151,12 @@ impl<'a> Question<'a> {
         &self.model.field
     }
 
-    /// Admissible points at which every quantity is positive. Those found are kept.
+    /// Whether every quantity is positive at the points.
+    pub fn points_are_positive(&self) -> bool {
+        !self.points.borrow().everywhere
+    }
+
+    /// Admissible points; every quantity is positive at them, if the system is not large. Those found are kept.
     pub fn points(&self) -> impl Iterator<Item = Point> + '_ {
         (0..).map_while(|place| self.points.borrow_mut().nth(place))
     }
@@ -190,18 +205,43 @@ impl<'a> Question<'a> {
 impl Points<'_> {
     fn nth(&mut self, place: usize) -> Option<Point> {
         while self.found.len() <= place && self.found.len() < self.most {
-            let next = budget::attempt(POINT_WORK, || self.search.next()).ok().flatten()?;
-            self.found.push(next);
+            match budget::attempt(POINT_WORK, || self.search.next()).ok().flatten() {
+                Some(next) => self.found.push(next),
+                None => self.most = self.found.len(),
+            }
         }
         self.found.get(place).cloned()
     }
 }
 
-/// The value of an expression, reduced where that is cheap.
+/// The value of an expression, reduced where that is cheap: a long one may have sums in it that are much longer.
 pub fn brief(prover: &mut Prover<'_>, expression: &Expression) -> Element {
     let value = prover.value(expression);
     let field = prover.field();
+    if is_long(field, &value) {
+        return value;
+    }
     budget::attempt(REDUCING, || field.reduce(&value)).unwrap_or(value)
+}
+
+/// Whether the element is long, or a sum that it names.
+fn is_long(field: &Field, e: &Element) -> bool {
+    let mut waiting = vec![field.current(e)];
+    let mut seen = Vec::new();
+    while let Some(part) = waiting.pop() {
+        if part.len() > LONGEST_REDUCED {
+            return true;
+        }
+        for var in part.vars() {
+            if let Kind::Sum { value, .. } = &*field.kind(var)
+                && !seen.contains(&var)
+            {
+                seen.push(var);
+                waiting.push(field.current(value));
+            }
+        }
+    }
+    false
 }
 
 /// a·b = c·d between functions.

@@ -92,6 +92,9 @@ fn everywhere(
 /// Points of both signs, where the sign is not the same everywhere; one that refutes it where none follows.
 fn at_points(question: &Question<'_>, prover: &mut Prover<'_>, subject: &str, e: &Expression) -> Response {
     let mut response = Response::default();
+    if !question.points_are_positive() {
+        return response;
+    }
     let value = prover.value(e);
     for point in question.points().take(MOST_POINTS) {
         let field = question.field();
