@@ -17,6 +17,7 @@ pub mod render;
 pub mod restrictions;
 pub mod structure;
 pub mod vetting;
+pub mod welfare;
 
 use algebra::budget::{self, Limits, Stopped};
 use algebra::field::Field;

@@ -193,6 +193,13 @@ impl Field {
         self.enclose_element(&self.current(e), at, bits, &mut known)
     }
 
+    /// An enclosure of all values of e where symbols range over intervals; `None` where e is not defined on all of them
+    /// (or the precision does not show that it is).
+    pub fn enclose_over(&self, e: &Element, over: &[(Var, Interval)], bits: u32) -> Option<Interval> {
+        let mut known: FxHashMap<Var, Interval> = over.iter().cloned().collect();
+        self.enclose_element(&self.current(e), &Point::new(), bits, &mut known)
+    }
+
     fn enclose_element(
         &self,
         e: &Element,

@@ -6,6 +6,7 @@ use clap::{Args, Parser, Subcommand, ValueEnum};
 use clap_complete::Shell;
 
 use super::starting::{Goods, Shape};
+use super::values::Line;
 
 const EXAMPLES: &str = "\
 Decides exactly whether a consumer demand system comes from a utility-maximising consumer, and from which.
@@ -97,6 +98,9 @@ pub struct Vet {
     /// Vet again whenever a model is saved
     #[arg(long, conflicts_with = "check")]
     pub watch: bool,
+    /// Enclose the expenditure that keeps utility while prices change: p_b=1..5/4,p_f=2,m=100
+    #[arg(long, value_name = "PRICE=FROM..TO,…,INCOME=VALUE")]
+    pub along: Option<Line>,
 }
 
 /// What `restrict` takes.

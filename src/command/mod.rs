@@ -1,5 +1,6 @@
 //! From the command line to an exit status: models in, reports out, messages to standard error.
 
+mod along;
 mod arguments;
 mod delivery;
 mod input;
@@ -27,7 +28,7 @@ pub fn main() -> ExitCode {
     internal::silence();
     let status = match arguments.command {
         Command::Vet(vet) if vet.watch => watch::watch(&vet.options),
-        Command::Vet(vet) => Task::new(Kind::Vet, vet.options).run(),
+        Command::Vet(vet) => Task { along: vet.along, ..Task::new(Kind::Vet, vet.options) }.run(),
         Command::Derive(options) => Task::new(Kind::Derive, options).run(),
         Command::Restrict(restrict) => {
             Task { keep: restrict.keep, ..Task::new(Kind::Restrict, restrict.options) }.run()

@@ -17,6 +17,7 @@ use mainspring::vetting::appendix::Appendix;
 use mainspring::vetting::{Allowance, Part, Vetting};
 use mainspring::{Unread, read, restrict, vet};
 
+use super::along;
 use super::arguments::{self, Accepted, Colour, Form, Options};
 use super::input::Input;
 use super::status::Status;
@@ -117,14 +118,21 @@ fn branches(
 /// The reports of `vet` and `derive`.
 fn verdicts(task: &Task, input: &Input, source: &Source, model: Rc<Model>, clock: &mut Clock) -> (Report, Status) {
     let options = &task.options;
-    let vetting = vet(model, &asked(task), allowance(options));
+    let mut vetting = vet(model, &asked(task), allowance(options));
     for (part, time) in &vetting.timings {
         clock.tell(part.word(), *time);
     }
     clock.start = Instant::now();
+    let mut status = Status::Passed;
+    if let Some(Err((fault, grave))) =
+        task.along.as_ref().map(|line| along::follow(&mut vetting, line, allowance(options)))
+    {
+        clock.told.push(format!("{}: --along: {fault}", input.name()));
+        status = grave;
+    }
     let report = written(task, input, source, &vetting);
     clock.lap("output");
-    (report, judged(&vetting, &options.accept))
+    (report, status.and(judged(&vetting, &options.accept)))
 }
 
 fn refused(source: &Source, unread: Unread) -> Outcome {

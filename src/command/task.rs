@@ -9,6 +9,7 @@ use super::delivery::Delivery;
 use super::reports;
 use super::schedule::Schedule;
 use super::status::Status;
+use super::values::Line;
 use super::{input, values};
 
 /// The kinds of work.
@@ -42,12 +43,14 @@ pub struct Task {
     pub options: Options,
     /// For restrictions: the parameters, or families of them, that must stay free.
     pub keep: Vec<String>,
+    /// For verdicts: the price path along which expenditure is followed.
+    pub along: Option<Line>,
 }
 
 impl Task {
     /// A task without parameters that must stay free.
     pub fn new(kind: Kind, options: Options) -> Task {
-        Task { kind, options, keep: Vec::new() }
+        Task { kind, options, keep: Vec::new(), along: None }
     }
 
     /// Works all models: reports go where they are wanted, messages to standard error.

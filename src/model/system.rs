@@ -53,6 +53,16 @@ pub enum Coverage {
     Deflated,
 }
 
+impl Coverage {
+    /// The prices of the goods that are not written down.
+    pub fn prices(&self) -> &[Var] {
+        match self {
+            Coverage::Others(prices) => prices,
+            Coverage::Complete | Coverage::Deflated => &[],
+        }
+    }
+}
+
 /// In which form the demand for a good is given.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
 pub enum Form {

@@ -8,6 +8,7 @@ use crate::algebra::evaluation::Point;
 use crate::algebra::field::Field;
 use crate::algebra::generator::Element;
 use crate::algebra::monomial::Var;
+use crate::algebra::number::Rational;
 use crate::conditions::{Branch, ClaimFinding, Condition, Difference, Finding, Witness};
 use crate::model::{Claim, Coverage, Model};
 use crate::proof::{Label, Value, store};
@@ -16,8 +17,10 @@ use crate::recovery::{Case, Preferences, Recovered};
 use crate::render::formula_text::plain;
 use crate::render::json_structure::structure;
 use crate::render::notation::best_formula;
+use crate::render::report;
 use crate::render::vocabulary;
 use crate::vetting::Vetting;
+use crate::welfare::Expenditure;
 
 /// The version of the schema; it changes only where something is taken away.
 pub const SCHEMA: u32 = 1;
@@ -42,10 +45,25 @@ pub fn vetting(vetting: &Vetting, certificate: bool) -> Json {
         },
         "recovered": vetting.recovered.as_ref().map_or(Json::Null, |found| recovered(model, found)),
         "claims": claims,
+        "along": vetting.along.as_ref().map(|found| along(vetting, found)),
         "structure": structure(vetting),
         "side_conditions": side_conditions(vetting),
         "stopped": vetting.stops.iter().map(|(part, why)| json!({"part": part.word(), "limit": why})).collect::<Vec<_>>(),
         "certificate": if certificate { stored(vetting) } else { Json::Null },
+    })
+}
+
+fn along(vetting: &Vetting, found: &Expenditure) -> Json {
+    let end = |at: &dyn Fn(&(Var, Rational, Rational)) -> Rational| {
+        point(&vetting.model.field, &found.path.prices.iter().map(|price| (price.0, at(price))).collect())
+    };
+    let (from, to) = report::bounds(found);
+    json!({
+        "from": end(&|price| price.1.clone()),
+        "to": end(&|price| price.2.clone()),
+        "income": found.path.income.to_string(),
+        "expenditure": {"from": from, "to": to},
+        "assumes": report::assumptions(vetting),
     })
 }
 

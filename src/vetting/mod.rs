@@ -14,6 +14,7 @@ use crate::proof::{Derivation, Prover, Step};
 use crate::recovery::{self, Recovered, given};
 use crate::restrictions;
 use crate::structure::{self, AllResponses, Structure};
+use crate::welfare::{self, Expenditure, NotAlong, Path};
 
 /// A part of the work that can be asked for by itself.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -92,6 +93,8 @@ pub struct Vetting {
     pub structure: Option<Structure>,
     /// The signs of responses and the elasticities; `None` where they were not asked for, or the model has no demands.
     pub responses: Option<AllResponses>,
+    /// Expenditure along the price path that was asked for.
+    pub along: Option<Expenditure>,
     /// How many steps the verdicts and the preferences have to themselves; those behind them are about structure.
     essential: usize,
     /// The parts that ran out of their limits.
@@ -108,6 +111,20 @@ impl Vetting {
         self.findings.iter().find(|finding| finding.condition == condition)
     }
 
+    /// Follows expenditure along a price path, to about `digits` digits of the income, and keeps it for the reports.
+    ///
+    /// # Errors
+    /// The reason, where there is no such number: it depends on the path where symmetry is not proven.
+    pub fn follow(&mut self, path: &Path, digits: u32, allowance: Allowance) -> Result<(), NotFollowed> {
+        if self.finding(Condition::Symmetry).is_none_or(|finding| finding.verdict != Verdict::Proven) {
+            return Err(NotFollowed::NotSymmetric);
+        }
+        let limits = Limits::new(allowance.work, allowance.time, allowance.memory_mib);
+        let found = budget::within(limits, || welfare::expenditure(&self.model, path, digits));
+        self.along = Some(found.map_err(NotFollowed::Stopped)?.map_err(NotFollowed::NotAlong)?);
+        Ok(())
+    }
+
     /// The steps that the verdicts and the preferences rest on.
     pub fn essential_steps(&self) -> &[Step] {
         let steps = self.derivation.steps();
@@ -118,6 +135,30 @@ impl Vetting {
     pub fn verdicts(&self) -> impl Iterator<Item = Verdict> + '_ {
         let claims = self.claims.iter().map(|claim| claim.verdict);
         self.findings.iter().map(|finding| finding.verdict).chain(claims)
+    }
+}
+
+/// Why expenditure was not followed along a path.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum NotFollowed {
+    /// Symmetry is not proven, so that expenditure at constant utility means nothing that does not depend on the path.
+    NotSymmetric,
+    /// There is no number.
+    NotAlong(NotAlong),
+    /// It ran out of its limits.
+    Stopped(Stopped),
+}
+
+impl NotFollowed {
+    /// The reason in words.
+    pub fn describe(&self) -> String {
+        match self {
+            NotFollowed::NotSymmetric => {
+                "symmetry is not proven, so that expenditure along a path may depend on the path".to_string()
+            }
+            NotFollowed::NotAlong(reason) => reason.describe(),
+            NotFollowed::Stopped(stopped) => stopped.describe().to_string(),
+        }
     }
 }
 
@@ -192,6 +233,7 @@ pub fn vet(model: Rc<Model>, asked: &[Part], allowance: Allowance) -> Vetting {
         claims,
         structure,
         responses,
+        along: None,
         essential,
         stops,
         derivation,

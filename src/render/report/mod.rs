@@ -1,5 +1,6 @@
 //! What a run found, as a document: the answer of one screen, and the appendix.
 
+mod along;
 mod claims;
 mod conditions;
 mod corners;
@@ -16,6 +17,7 @@ mod words;
 mod working;
 mod written;
 
+pub use along::{assumptions, bounds};
 pub use derivation::{derivation, short_derivation};
 pub use restrictions::restrictions;
 pub use verdicts::{answer, answer_first};

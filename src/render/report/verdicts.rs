@@ -8,6 +8,7 @@ use crate::recovery::Recovered;
 use crate::render::document::{Block, Document, Inline, Relation, Tone, VerdictLine};
 use crate::render::expression::Expression;
 use crate::render::notation::Notation;
+use crate::render::report::along;
 use crate::render::report::claims::claim_lines;
 use crate::render::report::conditions::quadratic_form;
 use crate::render::report::preferences;
@@ -31,6 +32,7 @@ pub fn answer(vetting: &Vetting) -> Document {
     if let Some(Recovered::Found(preferences)) = &vetting.recovered {
         blocks.extend(preferences::summary(&notation, preferences));
     }
+    blocks.extend(along::section(&notation, vetting));
     if !vetting.claims.is_empty() {
         blocks.push(Block::Verdicts(claim_lines(&notation, vetting)));
     }
