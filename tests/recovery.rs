@@ -237,3 +237,42 @@ fn a_quadratic_logarithmic_system_with_algebraic_indices() {
         Method::Riccati,
     );
 }
+
+/// The direct utility recovered for a system, and what it is compared with by the ratio of all marginal utilities.
+fn recovers_direct(text: &str, known: &str) {
+    let model = read(&format!("{text}\nclaim {known} > 0\n"));
+    let found = found(&model);
+    let utility = found.utility.as_ref().unwrap_or_else(|| panic!("{text}: no direct utility"));
+    let field = &model.field;
+    let (known, _) = model.claims[0].sides().expect("the claim has sides");
+    let quantities: Vec<_> = model.quantities.iter().copied().flatten().collect();
+    // the known utility is read at the demands; so is the recovered one
+    let demands: Vec<_> = quantities.iter().copied().zip(model.demands.iter().map(|d| d.quantity.clone())).collect();
+    let there = field.substitute(utility, &demands).expect("defined at the demands");
+    assert!(same_preferences(&model, &there, known), "{text}");
+}
+
+#[test]
+fn direct_utility_by_eliminating_prices() {
+    let goods = "goods 1..3\nprices p[i]\nincome m\nquantities x[i]\n";
+    recovers_direct(
+        &format!(
+            "{goods}parameters g[i], s[i]\nassume sum over i of (s[i]) = 1, s[i] > 0\n\
+             assume m > sum over j of (p[j]*g[j])\n\
+             demand[i] = g[i] + s[i]*(m - sum over j of (p[j]*g[j]))/p[i]"
+        ),
+        "product over i of ((x[i] - g[i])^s[i])",
+    );
+    recovers_direct(
+        &format!(
+            "{goods}parameters a[i], s\nassume a[i] > 0, s > 0, s != 1\n\
+             demand[i] = a[i]*p[i]^(-s)*m/sum over j of (a[j]*p[j]^(1-s))"
+        ),
+        "(sum over i of (a[i]^(1/s)*x[i]^(1-1/s)))^(s/(s-1))",
+    );
+    recovers_direct(
+        "goods tea, cake\nprices p, q\nincome m\nquantities x, y\nassume m > p^2/q\n\
+         demand tea = m/p - p/q\ndemand cake = p^2/q^2",
+        "x + 2*sqrt(y)",
+    );
+}

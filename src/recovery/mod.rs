@@ -8,6 +8,7 @@ pub mod candidates;
 pub mod cases;
 pub mod check;
 pub mod constant;
+pub mod direct_utility;
 pub mod divisors;
 pub mod fractions;
 pub mod frame;
@@ -87,6 +88,10 @@ pub enum Recovered {
 pub fn recover(model: &Model, prover: &mut Prover<'_>) -> Recovered {
     let mut recovered = recover_plain(model, prover);
     if let Recovered::Found(found) = &mut recovered {
+        if let Some((utility, steps)) = direct_utility::find(model, found, prover) {
+            found.utility = Some(utility);
+            found.steps.extend(steps);
+        }
         found.cases = cases::cases(model, &found.conditions);
     }
     recovered

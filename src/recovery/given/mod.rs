@@ -189,6 +189,6 @@ pub fn derived(model: &Model, charts: &Charts) -> Option<Recovered> {
 }
 
 /// Elements as assumptions of a part of the domain.
-fn supposed(facts: &[(Element, Relation)]) -> Vec<(Expression, Relation)> {
+pub(super) fn supposed(facts: &[(Element, Relation)]) -> Vec<(Expression, Relation)> {
     facts.iter().map(|(e, relation)| (Expression::element(e.clone()), *relation)).collect()
 }
