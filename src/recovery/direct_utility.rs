@@ -37,6 +37,9 @@ pub fn find(model: &Model, found: &Preferences, prover: &mut Prover<'_>) -> Opti
     budget::attempt(WORK, || proven(model, found, &quantities, solution, prover)).ok().flatten()
 }
 
+/// What is known of elements.
+type Facts = Vec<(Element, Relation)>;
+
 /// u as a function of quantities, with what is positive because the prices found are.
 struct Solution {
     utility: Element,
@@ -184,7 +187,7 @@ impl Elimination<'_> {
     }
 
     /// (hᵢ − known)/(hⱼ − known), (xᵢ − known)/(xⱼ − known), and what is positive among the parts of the latter.
-    fn rate(&self, i: usize, j: usize) -> Option<(Element, Element, Vec<(Element, Relation)>)> {
+    fn rate(&self, i: usize, j: usize) -> Option<(Element, Element, Facts)> {
         let field = self.field;
         let mut facts = Vec::new();
         let mut parts = Vec::new();
