@@ -35,11 +35,24 @@ pub enum Expression {
     Total {
         /// The index, as a name.
         index: String,
+        /// Whether terms are multiplied, and over which goods.
+        range: Range,
         /// What is summed.
         body: Box<Expression>,
     },
     /// The differential of an expression: dp_1.
     Differential(Box<Expression>),
+}
+
+/// What a sum or a product over an index runs over.
+#[derive(Clone, Debug, Default, PartialEq, Eq, Hash)]
+pub struct Range {
+    /// A product rather than a sum.
+    pub product: bool,
+    /// The good that is left out.
+    pub except: Option<String>,
+    /// The group of goods; all of them where there is none.
+    pub group: Option<String>,
 }
 
 /// A named object of the theory, with subscripts, a mark and arguments: x_1(p, m), S_12, h_bread(p, u), v'.
@@ -116,7 +129,7 @@ impl Expression {
 
     /// The sum of `body` over `index`.
     pub fn total(index: impl Into<String>, body: impl Into<Expression>) -> Expression {
-        Expression::Total { index: index.into(), body: Box::new(body.into()) }
+        Expression::Total { index: index.into(), range: Range::default(), body: Box::new(body.into()) }
     }
 
     /// The differential of `expression`.
@@ -158,8 +171,8 @@ impl Expression {
                 let of = Box::new(change(of));
                 Expression::Partial { of, by: by.iter().map(change).collect() }
             }
-            Expression::Total { index, body } => {
-                Expression::Total { index: index.clone(), body: Box::new(change(body)) }
+            Expression::Total { index, range, body } => {
+                Expression::Total { index: index.clone(), range: range.clone(), body: Box::new(change(body)) }
             }
         }
     }

@@ -108,6 +108,9 @@ fn sign_latex(sign: Sign) -> &'static str {
         Sign::TightComma => ",",
         Sign::Partial => "\\partial",
         Sign::Sum => "\\sum",
+        Sign::Product => "\\prod",
+        Sign::Unequal => " \\neq ",
+        Sign::In => " \\in ",
         Sign::Transpose => "\\top",
     }
 }

@@ -86,8 +86,11 @@ fn write_bare(expression: &Expression, out: &mut String) {
         }
         Expression::Object(object) => write_object(object, out),
         Expression::Partial { of, by } => write_partial(of, by, out),
-        Expression::Total { index, body } => {
-            let _ = write!(out, "sum over {index} of (");
+        Expression::Total { index, range, body } => {
+            let kind = if range.product { "product" } else { "sum" };
+            let except = range.except.as_ref().map(|good| format!(" != {good}")).unwrap_or_default();
+            let group = range.group.as_ref().map(|group| format!(" in {group}")).unwrap_or_default();
+            let _ = write!(out, "{kind} over {index}{except}{group} of (");
             write_bare(body, out);
             out.push(')');
         }

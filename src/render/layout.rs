@@ -79,6 +79,12 @@ pub enum Sign {
     Partial,
     /// The sign of a sum.
     Sum,
+    /// The sign of a product over an index.
+    Product,
+    /// `≠`, below a sum.
+    Unequal,
+    /// `∈`, below a sum.
+    In,
     /// The mark of a transpose.
     Transpose,
 }
@@ -176,7 +182,8 @@ impl Sign {
             Sign::Comma => 45,
             Sign::TightComma => 28,
             Sign::Partial => 58,
-            Sign::Sum => 161,
+            Sign::Sum | Sign::Product => 161,
+            Sign::Unequal | Sign::In => 100,
             Sign::Transpose => 78,
         }
     }

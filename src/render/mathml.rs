@@ -100,7 +100,7 @@ fn write_part(part: &Part, out: &mut String) {
 fn write_scripts(base: &Node, below: Option<&Node>, above: Option<&Node>, out: &mut String) {
     let base_markup = single(base);
     match (below, above) {
-        (Some(below), None) if *base == Node::Sign(Sign::Sum) => {
+        (Some(below), None) if matches!(base, Node::Sign(Sign::Sum | Sign::Product)) => {
             element("munder", &[&base_markup, &single(below)], out)
         }
         (Some(below), Some(above)) => element("msubsup", &[&base_markup, &single(below), &single(above)], out),
@@ -136,6 +136,9 @@ fn sign_mathml(sign: Sign) -> &'static str {
         Sign::TightComma => "<mo separator=\"true\" lspace=\"0\" rspace=\"0\">,</mo>",
         Sign::Partial => "<mi>&#x2202;</mi>",
         Sign::Sum => "<mo>&#x2211;</mo>",
+        Sign::Product => "<mo>&#x220F;</mo>",
+        Sign::Unequal => "<mo>&#x2260;</mo>",
+        Sign::In => "<mo>&#x2208;</mo>",
         Sign::Transpose => "<mi>&#x22a4;</mi>",
     }
 }

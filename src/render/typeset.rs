@@ -2,7 +2,7 @@
 
 use crate::algebra::formula::Function;
 use crate::algebra::number::Rational;
-use crate::render::expression::{Expression, Mark, Object};
+use crate::render::expression::{Expression, Mark, Object, Range};
 use crate::render::layout::{Edge, Level, Node, Piece, Sign, Style, THIN};
 use crate::render::names::{Part, read_name, read_subscripts};
 use crate::render::setting_names::{SetName, set_name, set_parts};
@@ -21,7 +21,7 @@ pub fn typeset(expression: &Expression, style: Style) -> Piece {
         Expression::Call(function, argument) => call(*function, argument, style),
         Expression::Object(object) => set_object(object),
         Expression::Partial { of, by } => partial(of, by, style),
-        Expression::Total { index, body } => total(index, body, style),
+        Expression::Total { index, range, body } => total(index, range, body, style),
         Expression::Differential(inner) => {
             let inner = typeset(inner, style).at_least(Level::Scripted);
             let node = Node::Row(vec![Node::letter('d'), inner.node.clone()]);
@@ -288,9 +288,25 @@ fn with_partial(sign: Node, derivand: Piece) -> Piece {
     Piece::new(node, Sign::Partial.width() + derivand.width, Level::Product).around(&derivand)
 }
 
-fn total(index: &str, body: &Expression, style: Style) -> Piece {
+/// What stands below the sign of a sum: j, j ≠ i, or k ∈ food.
+fn below_total(index: &str, range: &Range) -> Node {
+    let part = |name: &str| Node::Part(read_name(name).base);
+    let mut below = vec![part(index)];
+    if let Some(except) = &range.except {
+        below.extend([Node::Sign(Sign::Unequal), part(except)]);
+    }
+    if let Some(group) = &range.group {
+        below.extend([Node::Sign(Sign::In), part(group)]);
+    }
+    if below.len() == 1 { part(index) } else { Node::Row(below) }
+}
+
+fn total(index: &str, range: &Range, body: &Expression, style: Style) -> Piece {
     let body = typeset(body, style).at_least(Level::Product);
-    let (base, below) = (Box::new(Node::Sign(Sign::Sum)), Some(Box::new(Node::Part(read_name(index).base))));
+    let (base, below) = (
+        Box::new(Node::Sign(if range.product { Sign::Product } else { Sign::Sum })),
+        Some(Box::new(below_total(index, range))),
+    );
     let node = Node::Row(vec![Node::Scripts { base, below, above: None }, Node::Sign(Sign::Juxtaposed), body.node]);
     let piece = Piece::new(node, Sign::Sum.width() + body.width, Level::Product);
     let whole = Piece { height: body.height.max(1), brackets: body.brackets, ..piece };

@@ -6,7 +6,7 @@ use crate::language::{
 };
 use crate::model::Model;
 use crate::render::document::{Equation, Relation};
-use crate::render::expression::Expression;
+use crate::render::expression::{Expression, Range};
 
 /// Turns the formulas of one file into expressions.
 pub struct Author {
@@ -51,8 +51,7 @@ impl Author {
         Some(equations)
     }
 
-    /// The formula as it is written. `None` where it holds a product over goods, a sum over a group or a sum with a
-    /// good left out.
+    /// The formula as it is written.
     pub fn formula(&self, expr: &Expr) -> Option<Expression> {
         Some(match &expr.kind {
             ExprKind::Number(value) => Expression::Number(value.clone()),
@@ -100,11 +99,17 @@ impl Author {
     }
 
     fn total(&self, over: &Over) -> Option<Expression> {
-        if over.product || over.except.is_some() || over.group.is_some() {
-            return None;
-        }
         let body = self.formula(&over.body)?;
-        Some(over.binders.iter().rev().fold(body, |body, index| Expression::total(index.text.clone(), body)))
+        let except = over.except.as_ref().map(|(index, _)| match index {
+            Index::Number(number) => number.to_string(),
+            Index::Name(name) => name.clone(),
+        });
+        let range = Range { product: over.product, except, group: over.group.as_ref().map(|name| name.text.clone()) };
+        Some(over.binders.iter().rev().fold(body, |body, index| Expression::Total {
+            index: index.text.clone(),
+            range: range.clone(),
+            body: Box::new(body),
+        }))
     }
 }
 
