@@ -154,6 +154,11 @@ impl Model {
         &self.text.source
     }
 
+    /// The point with values for what its free symbols determine; `None` where one is not rational.
+    pub fn completed(&self, point: Point) -> Option<Point> {
+        points::complete(self, point)
+    }
+
     /// A deterministic stream of admissible points with exact rational coordinates: small numbers first, then random
     /// ones, then extreme ones. Every declared name has a value, eliminated parameters included.
     pub fn points(&self) -> PointSearch<'_> {

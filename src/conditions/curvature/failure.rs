@@ -7,13 +7,16 @@ use crate::algebra::generator::Element;
 use crate::algebra::number::rational;
 use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
-use crate::proof::{Combination, Expression, Factor, Proved, Prover, SemidefiniteAt, StepId};
+use crate::proof::{Combination, Expression, Factor, Matrix, Proved, Prover, SemidefiniteAt, StepId};
 
 use super::super::coefficients::moves;
 use super::super::finding::{Branch, Condition, Finding, Verdict};
 use super::super::slutsky::Coordinates;
 use super::search::{self, Failing};
 use super::{Question, RUNG_WORK, SUBJECT};
+
+/// The work that the normal form of one coefficient may take.
+const REDUCED_WORK: u64 = 20_000_000;
 
 /// The finding for a matrix that fails at a point.
 pub(super) fn tell_apart(
@@ -58,13 +61,19 @@ pub(super) fn tell_apart(
 
 /// The characteristic coefficients, for each good that may be left out.
 fn coefficients(question: &Question<'_>, prover: &mut Prover<'_>) -> Vec<Vec<Element>> {
+    let n = question.symmetric.n;
     let choices: Vec<Option<usize>> = match question.balance {
-        Some(_) => (0..question.system.size()).rev().map(Some).collect(),
+        Some(_) => (0..n).rev().map(Some).collect(),
         None => vec![None],
     };
     let field = prover.field();
-    let all = choices.into_iter().filter_map(|without| prover.characteristic_coefficients(&question.matrix, without));
-    all.map(|each| each.iter().map(|c| field.reduce(c)).collect()).collect()
+    let matrix = Matrix::new(n, |i, j| Expression::element(question.symmetric.at(i, j).clone()));
+    let all = choices.into_iter().filter_map(|without| prover.characteristic_coefficients(&matrix, without));
+    let shorter = |c: &Element| {
+        let reduced = budget::attempt(REDUCED_WORK, || field.reduce(c)).ok().filter(|r| r.len() <= 2 * c.len());
+        reduced.unwrap_or_else(|| c.clone())
+    };
+    all.map(|each| each.iter().map(shorter).collect()).collect()
 }
 
 /// A step that shows the matrix to fail at every point: a positive entry on the diagonal, or a negative characteristic

@@ -5,7 +5,9 @@
 //! ([`failure`]): for all parameter values, for some, or in a part of the domain. Where symmetry fails the question is
 //! about vᵀSv, that is about the symmetric part.
 
+mod approximate;
 mod certificates;
+mod climb;
 mod direction;
 mod failure;
 mod nests;
@@ -22,11 +24,13 @@ use crate::model::{Coverage, Model};
 use crate::proof::{Balanced, Expression, Factor, Matrix, Proved, Prover};
 
 use super::finding::{Condition, Finding, Verdict};
-use super::slutsky::System;
+use super::slutsky::{Coordinates, System};
 use squares::Symmetric;
 
 /// The work that one rung may take.
 const RUNG_WORK: u64 = 300_000_000;
+/// The work that the normal form of the entries may take.
+const NORMAL_WORK: u64 = 60_000_000;
 /// The subject of the steps.
 const SUBJECT: &str = "curvature";
 
@@ -57,11 +61,9 @@ pub(super) fn examine(model: &Model, system: &System, prover: &mut Prover<'_>, e
             return nowhere(model, &quantities);
         }
         let matrix = system.scaled_matrix();
-        let entries = prover.entries(&matrix);
-        let reduced = budget::attempt(RUNG_WORK, || entries.iter().map(|e| model.field.reduce(e)).collect());
-        let entries = reduced.unwrap_or(entries);
-        let balance = budget::attempt(RUNG_WORK, || prover.balanced(SUBJECT, &matrix, &[])).ok().flatten();
         let shares = budget::attempt(RUNG_WORK, || shares(model, system, prover)).ok().flatten().unwrap_or_default();
+        let entries = entries(model, system, prover, &matrix, &shares);
+        let balance = budget::attempt(RUNG_WORK, || prover.balanced(SUBJECT, &matrix, &[])).ok().flatten();
         let symmetric = split::symmetric(model, &entries, &quantities);
         let question = Question { symmetric, model, system, matrix, entries, balance, quantities, shares };
         certificates::prove(&question, prover).unwrap_or_else(|| by_points(&question, prover))
@@ -71,6 +73,41 @@ pub(super) fn examine(model: &Model, system: &System, prover: &mut Prover<'_>, e
         finding.method.push_str("; symmetry is not proven, so the question is about the symmetric part, v'Sv");
     }
     finding
+}
+
+/// The entries in the shortest of three forms: as they are defined, in their normal form, and in shares with the slopes
+/// in their normal form.
+fn entries(
+    model: &Model,
+    system: &System,
+    prover: &mut Prover<'_>,
+    matrix: &Matrix,
+    shares: &[Element],
+) -> Vec<Element> {
+    let (field, n) = (&model.field, system.size());
+    let mut forms = vec![prover.entries(matrix)];
+    if system.coordinates == Coordinates::Shares && shares.len() == n {
+        let form = budget::attempt(RUNG_WORK, || {
+            let entry = |k: usize| {
+                let (i, j) = (k / n, k % n);
+                let slope = field.reduce(&prover.value(&system.compensated_slope(i, j)));
+                let own = if i == j { shares[i].clone() } else { Element::zero() };
+                &(&slope + &(&shares[i] * &shares[j])) - &own
+            };
+            (0..n * n).map(entry).collect::<Vec<_>>()
+        });
+        forms.extend(form);
+    }
+    let length = |form: &Vec<Element>| form.iter().map(Element::len).sum::<usize>();
+    let shortest = forms.iter().map(length).min().unwrap_or_default();
+    let reduced = budget::attempt(NORMAL_WORK, || forms[0].iter().map(|e| field.reduce(e)).collect::<Vec<_>>());
+    // a normal form that is not much longer shows more
+    forms.extend(reduced.ok().filter(|form| length(form) <= 2 * shortest));
+    if forms.last().is_some_and(|form| length(form) > 2 * shortest) {
+        forms.sort_by_key(length);
+        forms.truncate(1);
+    }
+    forms.pop().unwrap_or_default()
 }
 
 /// Each function over what all of them sum to.

@@ -14,6 +14,7 @@ use crate::model::{Model, PointSearch};
 use crate::proof::{Proved, Prover, Refuted, Semidefinite, SemidefiniteAt};
 
 use super::super::finding::Witness;
+use super::climb::Climb;
 use super::direction::{plain, quadratic, rising};
 use super::{Question, SUBJECT};
 
@@ -21,6 +22,9 @@ use super::{Question, SUBJECT};
 const WORK: u64 = 600_000_000;
 /// The work that one point may take.
 const POINT_WORK: u64 = 60_000_000;
+/// The work that climbing may take, and from how many points it starts.
+const CLIMB_WORK: u64 = 60_000_000;
+const MOST_STARTS: usize = 4;
 /// The precision at which entries are guessed from, in bits.
 const BITS: u32 = 96;
 /// Entries are rounded to multiples of the largest over 2^40.
@@ -55,12 +59,16 @@ pub(super) fn points<'m>(model: &'m Model, positive: &[Element]) -> PointSearch<
 pub(super) fn look(question: &Question<'_>, prover: &mut Prover<'_>) -> Seen {
     let mut seen = Seen { failing: None, regular: None, looked: 0 };
     let most = match question.system.size() {
-        0..=4 => 400,
-        5..=8 => 80,
+        0..=4 => 240,
+        5..=8 => 48,
         _ => 16,
     };
+    let first = most / 6;
     let _ = budget::attempt(WORK, || {
-        for point in points(question.model, &question.quantities).take(most) {
+        for (count, point) in points(question.model, &question.quantities).take(most).enumerate() {
+            if count == first {
+                let _ = budget::attempt(CLIMB_WORK, || climb(question, prover, &mut seen));
+            }
             seen.looked += 1;
             let _ = budget::attempt(POINT_WORK, || look_at(question, prover, &point, &mut seen));
             if seen.failing.is_some() && seen.regular.is_some() {
@@ -69,6 +77,22 @@ pub(super) fn look(question: &Question<'_>, prover: &mut Prover<'_>) -> Seen {
         }
     });
     seen
+}
+
+/// Climbs to a point of the kind that has not been seen yet.
+fn climb(question: &Question<'_>, prover: &mut Prover<'_>, seen: &mut Seen) {
+    let Some(climb) = Climb::new(question) else { return };
+    for up in [true, false] {
+        for start in points(question.model, &question.quantities).take(MOST_STARTS) {
+            let known = if up { seen.failing.is_some() } else { seen.regular.is_some() };
+            if known {
+                break;
+            }
+            if let Some(point) = climb.from(&start, up) {
+                let _ = budget::attempt(POINT_WORK, || look_at(question, prover, &point, seen));
+            }
+        }
+    }
 }
 
 fn look_at(question: &Question<'_>, prover: &mut Prover<'_>, point: &Point, seen: &mut Seen) {

@@ -195,7 +195,7 @@ fn root_power(field: &Field, var: Var) -> u32 {
 }
 
 /// Values for what the free symbols determine: eliminated parameters, and quantities where they are rational.
-fn complete(model: &Model, mut point: Point) -> Option<Point> {
+pub(super) fn complete(model: &Model, mut point: Point) -> Option<Point> {
     let mut determined = Vec::new();
     {
         let values = Values::at(&model.field, &point);
