@@ -123,7 +123,7 @@ fn ln(x: f64) -> f64 {
 
 /// eˣ, by halving and squaring again.
 pub(super) fn exp(x: f64) -> f64 {
-    if !(x.abs() < 700.0) {
+    if x.is_nan() || x.abs() >= 700.0 {
         return if x < 0.0 { 0.0 } else { f64::NAN };
     }
     let whole = (x / std::f64::consts::LN_2).floor();

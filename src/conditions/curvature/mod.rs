@@ -11,6 +11,7 @@ mod climb;
 mod direction;
 mod failure;
 mod nests;
+mod region;
 mod search;
 mod split;
 mod squares;

@@ -8,7 +8,7 @@ use crate::algebra::generator::Element;
 use crate::algebra::number::Rational;
 use crate::algebra::polynomial::Poly;
 
-use super::squares::{Squares, Symmetric, alike, squares as any_squares};
+use super::squares::{Squares, Symmetric, alike, gaps, squares as any_squares};
 
 /// M = Σ_{g≠h} N_gh ρ_g ρ_hᵀ + …: the squares between the groups and those within each.
 pub(super) fn squares(field: &Field, m: &Symmetric, shares: &[Element]) -> Option<Squares> {
@@ -16,6 +16,26 @@ pub(super) fn squares(field: &Field, m: &Symmetric, shares: &[Element]) -> Optio
         return None;
     }
     partitions(m).into_iter().find_map(|groups| by_groups(field, m, &groups))
+}
+
+/// The same as blocks, whatever the signs of their weights: the squares between the groups, and those within each. A
+/// vector that is constant within the groups, or vanishes outside of one and has no total there, is seen by one block
+/// alone; so the matrix is negative semidefinite exactly where minus each block is.
+pub(super) fn blocks(field: &Field, m: &Symmetric) -> Option<Vec<Squares>> {
+    if m.n < 3 || m.values.is_empty() || m.weights.len() != m.n {
+        return None;
+    }
+    partitions(m).into_iter().find_map(|groups| {
+        let proportions = proportions(field, m, &groups)?;
+        if !are_nests(field, m, &groups, &proportions) {
+            return None;
+        }
+        let mut blocks = vec![between(field, m, &groups, &proportions)];
+        for (group, proportion) in groups.iter().zip(&proportions).filter(|(group, _)| group.len() > 1) {
+            blocks.push(gaps(&own(field, m, group, proportion)));
+        }
+        Some(blocks)
+    })
 }
 
 /// Partitions into at least two groups, not all of one good, between which one elasticity rules at the point.
@@ -60,22 +80,40 @@ fn components(n: usize, linked: &dyn Fn(usize, usize) -> bool) -> Vec<Vec<usize>
     heads.into_iter().map(|head| (0..n).filter(|i| group[*i] == head).collect()).collect()
 }
 
-fn by_groups(field: &Field, m: &Symmetric, groups: &[Vec<usize>]) -> Option<Squares> {
-    let mut proportions: Vec<Vec<Element>> = Vec::with_capacity(groups.len());
-    for group in groups {
+/// In which proportions the goods of each group share its slopes towards the other groups.
+fn proportions(field: &Field, m: &Symmetric, groups: &[Vec<usize>]) -> Option<Vec<Vec<Element>>> {
+    let of = |group: &Vec<usize>| {
         let outside = groups.iter().find(|other| *other != group)?;
         let whole = m.block_sum(field, group, outside);
         let part =
             |i: &usize| field.quotient(&m.block_sum(field, &[*i], outside), &whole).ok().map(|e| field.reduce(&e));
-        proportions.push(group.iter().map(part).collect::<Option<_>>()?);
+        group.iter().map(part).collect()
+    };
+    groups.iter().map(of).collect()
+}
+
+/// Whether the slopes between two groups are those of the totals, shared out in the proportions.
+fn are_nests(field: &Field, m: &Symmetric, groups: &[Vec<usize>], proportions: &[Vec<Element>]) -> bool {
+    let agree = |g: usize, h: usize| {
+        let whole = m.block_sum(field, &groups[g], &groups[h]);
+        groups[g].iter().zip(&proportions[g]).all(|(i, r)| {
+            groups[h].iter().zip(&proportions[h]).all(|(j, s)| {
+                let shared = field.product(&field.product(r, s), &whole);
+                field.is_zero(&(&field.current(m.at(*i, *j)) - &field.current(&shared)))
+            })
+        })
+    };
+    (0..groups.len()).all(|g| (0..g).all(|h| agree(g, h)))
+}
+
+fn by_groups(field: &Field, m: &Symmetric, groups: &[Vec<usize>]) -> Option<Squares> {
+    let proportions = proportions(field, m, groups)?;
+    let mut all = between(field, m, groups, &proportions);
+    if !all.iter().all(|(weight, _)| field.sign(weight).is_nonnegative()) {
+        return None;
     }
-    let mut all = between(field, m, groups, &proportions)?;
     for (group, proportion) in groups.iter().zip(&proportions).filter(|(group, _)| group.len() > 1) {
-        let rest: Vec<usize> = (0..m.n).filter(|i| !group.contains(i)).collect();
-        // N_gg = −Σ_{h≠g} N_gh
-        let own = m.block_sum(field, group, &rest).neg();
-        let within = within(field, m, group, proportion, &own);
-        for (weight, u) in any_squares(field, &within, proportion)? {
+        for (weight, u) in any_squares(field, &own(field, m, group, proportion), proportion)? {
             let mut full = vec![Poly::zero(); m.n];
             group.iter().zip(u).for_each(|(i, x)| full[*i] = x);
             all.push((weight, full));
@@ -84,22 +122,26 @@ fn by_groups(field: &Field, m: &Symmetric, groups: &[Vec<usize>]) -> Option<Squa
     Some(all)
 }
 
+/// The matrix within a group.
+fn own(field: &Field, m: &Symmetric, group: &[usize], proportion: &[Element]) -> Symmetric {
+    let rest: Vec<usize> = (0..m.n).filter(|i| !group.contains(i)).collect();
+    // N_gg = −Σ_{h≠g} N_gh
+    within(field, m, group, proportion, &m.block_sum(field, group, &rest).neg())
+}
+
 /// N_gh (ρ_gᵀv − ρ_hᵀv)² over the pairs of groups.
-fn between(field: &Field, m: &Symmetric, groups: &[Vec<usize>], proportions: &[Vec<Element>]) -> Option<Squares> {
+fn between(field: &Field, m: &Symmetric, groups: &[Vec<usize>], proportions: &[Vec<Element>]) -> Squares {
     let mut squares = Squares::new();
     for g in 0..groups.len() {
         for h in 0..g {
             let weight = m.block_sum(field, &groups[g], &groups[h]);
-            if !weight.is_zero() && !field.sign(&weight).is_nonnegative() {
-                return None;
-            }
             let mut u = vec![Poly::zero(); m.n];
             groups[g].iter().zip(&proportions[g]).for_each(|(i, r)| u[*i] = r.clone());
             groups[h].iter().zip(&proportions[h]).for_each(|(i, r)| u[*i] = r.neg());
             squares.push((weight, u));
         }
     }
-    Some(squares)
+    squares
 }
 
 /// What the matrix within a group is beyond the share of the group in the matrix between groups.

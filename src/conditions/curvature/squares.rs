@@ -58,7 +58,7 @@ impl Symmetric {
 pub(super) fn squares(field: &Field, m: &Symmetric, shares: &[Element]) -> Option<Squares> {
     if m.is_balanced(field) {
         let by_nests = || nests::squares(field, m, shares);
-        let found = gaps(field, m).or_else(by_nests).or_else(|| additive(field, m, shares));
+        let found = rising_gaps(field, m).or_else(by_nests).or_else(|| additive(field, m, shares));
         if found.is_some() {
             return found;
         }
@@ -70,23 +70,29 @@ fn is_nonnegative(field: &Field, e: &Element) -> bool {
     e.is_zero() || field.sign(e).is_nonnegative()
 }
 
-/// Σ_{i<j} Mᵢⱼ (vᵢ − vⱼ)² of a balanced matrix, where no entry off the diagonal is negative.
-pub(super) fn gaps(field: &Field, m: &Symmetric) -> Option<Squares> {
+/// Σ_{i<j} Mᵢⱼ (vᵢ − vⱼ)², which is minus a balanced matrix, whatever the signs.
+pub(super) fn gaps(m: &Symmetric) -> Squares {
     let pairs = (0..m.n).flat_map(|i| (0..i).map(move |j| (i, j)));
-    let mut squares = Squares::new();
-    for (i, j) in pairs {
-        // a clearly negative value ends it before a sign is looked for
-        if m.value(i, j).is_negative() || !is_nonnegative(field, m.at(i, j)) {
-            return None;
-        }
-        if !m.at(i, j).is_zero() {
-            let mut u = vec![Poly::zero(); m.n];
-            u[i] = Poly::one();
-            u[j] = Poly::int(-1);
-            squares.push((m.at(i, j).clone(), u));
-        }
-    }
-    Some(squares)
+    let square = |(i, j): (usize, usize)| {
+        let u = (0..m.n).map(|k| Poly::int(i64::from(k == i) - i64::from(k == j))).collect();
+        (m.at(i, j).clone(), u)
+    };
+    pairs.filter(|(i, j)| !m.at(*i, *j).is_zero()).map(square).collect()
+}
+
+/// The same, where no entry off the diagonal is negative.
+fn rising_gaps(field: &Field, m: &Symmetric) -> Option<Squares> {
+    // a clearly negative value ends it before a sign is looked for
+    let falls = (0..m.n).any(|i| (0..i).any(|j| m.value(i, j).is_negative()));
+    let squares = if falls { return None } else { gaps(m) };
+    squares.iter().all(|(weight, _)| is_nonnegative(field, weight)).then_some(squares)
+}
+
+/// Minus a balanced matrix as squares in blocks, whatever their signs, such that it is negative semidefinite exactly where
+/// each block is a nonnegative form.
+pub(super) fn blocks(field: &Field, m: &Symmetric) -> Option<Vec<Squares>> {
+    let by_nests = || nests::blocks(field, m);
+    m.is_balanced(field).then(|| by_nests().unwrap_or_else(|| vec![gaps(m)]))
 }
 
 /// Mᵢⱼ = wᵢ wⱼ (κᵢ + κⱼ − Σ κw) off the diagonal, as additive preferences have it: the squares κᵢ wᵢ (vᵢ − Σ w v)².
@@ -157,7 +163,7 @@ fn elimination(field: &Field, m: &Symmetric) -> Option<Squares> {
             // what is left of a balanced matrix is balanced
             let entries = rest.iter().map(Poly::neg).collect();
             let left = Symmetric { n, entries, values: Vec::new(), weights: Vec::new() };
-            squares.extend(gaps(field, &left).filter(|_| left.is_balanced(field))?);
+            squares.extend(rising_gaps(field, &left).filter(|_| left.is_balanced(field))?);
             return Some(squares);
         };
         let weight = rest[p * n + p].clone();

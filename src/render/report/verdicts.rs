@@ -112,8 +112,7 @@ pub fn branch_words(notation: &Notation<'_>, branch: &Branch) -> Vec<Inline> {
     let conditions = branch.side_conditions.iter().map(|e| vec![sides(notation, e, Relation::NotEqual, &zero)]);
     let mut pieces: Vec<Vec<Inline>> = equations.chain(conditions).collect();
     if !branch.inequalities.is_empty() {
-        let long = || vec![text(format!("{} inequalities hold (see the JSON)", branch.inequalities.len()))];
-        pieces.push(bounds(notation, &branch.inequalities).unwrap_or_else(long));
+        pieces.push(bounds(notation, &branch.inequalities));
     }
     listed(pieces, " and ")
 }
@@ -125,13 +124,7 @@ fn sides(notation: &Notation<'_>, left: &Element, sign: Relation, right: &Elemen
 fn region(notation: &Notation<'_>, finding: &Finding) -> Vec<Vec<Inline>> {
     let mut parts = Vec::new();
     if let Some(region) = &finding.region {
-        parts.push(match bounds(notation, region) {
-            Some(bounds) => [text("holds exactly where ")].into_iter().chain(bounds).collect(),
-            None => vec![text(format!(
-                "holds exactly where {} hold that are too long to print here (see the JSON)",
-                if region.len() == 1 { "one inequality".to_string() } else { format!("{} inequalities", region.len()) }
-            ))],
-        });
+        parts.push([text("holds exactly where ")].into_iter().chain(bounds(notation, region)).collect());
     }
     if let Some(regular) = &finding.regular_point {
         parts.push([text("for instance at ")].into_iter().chain(point(notation, regular)).collect());
@@ -139,19 +132,28 @@ fn region(notation: &Notation<'_>, finding: &Finding) -> Vec<Vec<Inline>> {
     parts
 }
 
-/// Elements that are to be nonnegative; `None` where they are too long for the screen.
-fn bounds(notation: &Notation<'_>, elements: &[Element]) -> Option<Vec<Inline>> {
+/// Elements that are to be nonnegative; those that are too long for the screen are counted.
+fn bounds(notation: &Notation<'_>, elements: &[Element]) -> Vec<Inline> {
     let zero = Expression::Number(num_rational::Ratio::from_integer(0.into()));
     let each = |e: &Element| {
         let formula = short(notation, e, LONGEST_BOUND)?;
         Some(vec![relation(formula, Relation::GreaterEqual, zero.clone())])
     };
-    Some(listed(elements.iter().map(each).collect::<Option<_>>()?, " and "))
+    let mut shown: Vec<Vec<Inline>> = elements.iter().filter_map(each).collect();
+    let further = if shown.is_empty() { "" } else { "further " };
+    match elements.len() - shown.len() {
+        0 => {}
+        1 => shown
+            .push(vec![text(format!("one {further}inequality holds that is too long to print here (see the JSON)"))]),
+        n => shown
+            .push(vec![text(format!("{n} {further}inequalities hold that are too long to print here (see the JSON)"))]),
+    }
+    listed(shown, " and ")
 }
 
 /// The longest side of an inequality on the screen, in characters.
 /// The longest formula that stands within a line.
-pub const LONGEST_BOUND: usize = 160;
+pub const LONGEST_BOUND: usize = 240;
 
 /// Where and how a condition fails.
 pub fn failure(notation: &Notation<'_>, condition: Condition, witness: &Witness) -> Vec<Inline> {
