@@ -101,6 +101,20 @@ pub struct Vet {
     /// Enclose the expenditure that keeps utility while prices change: p_b=1..5/4,p_f=2,m=100
     #[arg(long, value_name = "PRICE=FROM..TO,…,INCOME=VALUE")]
     pub along: Option<Line>,
+    /// A picture of the region.
+    #[command(flatten)]
+    pub figure: Figure,
+}
+
+/// The picture that `vet` draws.
+#[derive(Args, Debug, Clone, Default)]
+pub struct Figure {
+    /// Draw where demand is positive and where the Slutsky matrix is negative semidefinite, as SVG; for one model
+    #[arg(long, value_name = "FILE", conflicts_with_all = ["check", "watch"])]
+    pub figure: Option<PathBuf>,
+    /// The two variables on the axes of the figure; all others stay where they are said to be
+    #[arg(long, value_name = "NAME,NAME", value_delimiter = ',', requires = "figure")]
+    pub axes: Vec<String>,
 }
 
 /// What `restrict` takes.

@@ -3,6 +3,7 @@
 mod along;
 mod arguments;
 mod delivery;
+mod figure;
 mod input;
 mod internal;
 mod output;
@@ -28,7 +29,7 @@ pub fn main() -> ExitCode {
     internal::silence();
     let status = match arguments.command {
         Command::Vet(vet) if vet.watch => watch::watch(&vet.options),
-        Command::Vet(vet) => Task { along: vet.along, ..Task::new(Kind::Vet, vet.options) }.run(),
+        Command::Vet(vet) => Task { along: vet.along, figure: vet.figure, ..Task::new(Kind::Vet, vet.options) }.run(),
         Command::Derive(options) => Task::new(Kind::Derive, options).run(),
         Command::Restrict(restrict) => {
             Task { keep: restrict.keep, ..Task::new(Kind::Restrict, restrict.options) }.run()

@@ -19,6 +19,7 @@ use mainspring::{Unread, read, restrict, vet};
 
 use super::along;
 use super::arguments::{self, Accepted, Colour, Form, Options};
+use super::figure;
 use super::input::Input;
 use super::status::Status;
 use super::task::{Kind, Task};
@@ -90,7 +91,7 @@ pub fn report(task: &Task, input: &Input, values: &[(String, Rational)]) -> Outc
                 return Outcome::without_report(&message, Status::Usage);
             }
         },
-        Kind::Vet | Kind::Derive => verdicts(task, input, &source, model, &mut clock),
+        Kind::Vet | Kind::Derive => verdicts(task, input, &source, model, &mut clock, &mut messages),
     };
     messages.append(&mut clock.told);
     Outcome { report: Some(report), messages, status }
@@ -116,23 +117,33 @@ fn branches(
 }
 
 /// The reports of `vet` and `derive`.
-fn verdicts(task: &Task, input: &Input, source: &Source, model: Rc<Model>, clock: &mut Clock) -> (Report, Status) {
+fn verdicts(
+    task: &Task,
+    input: &Input,
+    source: &Source,
+    model: Rc<Model>,
+    clock: &mut Clock,
+    messages: &mut Vec<String>,
+) -> (Report, Status) {
     let options = &task.options;
     let mut vetting = vet(model, &asked(task), allowance(options));
     for (part, time) in &vetting.timings {
         clock.tell(part.word(), *time);
     }
     clock.start = Instant::now();
-    let mut status = Status::Passed;
-    if let Some(Err((fault, grave))) =
-        task.along.as_ref().map(|line| along::follow(&mut vetting, line, allowance(options)))
-    {
-        clock.told.push(format!("{}: --along: {fault}", input.name()));
-        status = grave;
+    let mut status = judged(&vetting, &options.accept);
+    let mut told = |(message, fault): (String, Status)| {
+        messages.push(message);
+        status = status.and(fault);
+    };
+    if let Some(line) = &task.along {
+        let followed = along::follow(&mut vetting, line, allowance(options));
+        followed.unwrap_or_else(|(fault, grave)| told((format!("{}: --along: {fault}", input.name()), grave)));
     }
+    figure::draw(&vetting, &task.figure).unwrap_or_else(told);
     let report = written(task, input, source, &vetting);
     clock.lap("output");
-    (report, status.and(judged(&vetting, &options.accept)))
+    (report, status)
 }
 
 fn refused(source: &Source, unread: Unread) -> Outcome {

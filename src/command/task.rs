@@ -4,7 +4,7 @@ use std::sync::Arc;
 use std::thread::available_parallelism;
 use std::time::Duration;
 
-use super::arguments::Options;
+use super::arguments::{Figure, Options};
 use super::delivery::Delivery;
 use super::reports;
 use super::schedule::Schedule;
@@ -45,12 +45,14 @@ pub struct Task {
     pub keep: Vec<String>,
     /// For verdicts: the price path along which expenditure is followed.
     pub along: Option<Line>,
+    /// The picture that is to be drawn.
+    pub figure: Figure,
 }
 
 impl Task {
     /// A task without parameters that must stay free.
     pub fn new(kind: Kind, options: Options) -> Task {
-        Task { kind, options, keep: Vec::new(), along: None }
+        Task { kind, options, keep: Vec::new(), along: None, figure: Figure::default() }
     }
 
     /// Works all models: reports go where they are wanted, messages to standard error.
@@ -60,6 +62,9 @@ impl Task {
             Err(fault) => return failed(&[fault], Status::Usage),
         };
         let inputs = match input::expand(&self.options.models) {
+            Ok(inputs) if inputs.models.len() > 1 && self.figure.figure.is_some() => {
+                return failed(&["--figure is for one model at a time".to_string()], Status::Usage);
+            }
             Ok(inputs) => inputs,
             Err(faults) => return failed(&faults, Status::Unreadable),
         };

@@ -29,6 +29,7 @@ pub use claims::chart::{Chart, Charts};
 pub use claims::difference::Difference;
 pub use claims::examine_claim;
 pub use concavity::{by_concavity, maximised};
+pub use curvature::slice;
 pub use finding::{Branch, ClaimFinding, Condition, Finding, Verdict, Witness};
 pub use slutsky::{Compensation, Coordinates, System};
 

@@ -5,6 +5,7 @@
 mod display;
 pub mod document;
 pub mod expression;
+pub mod figure;
 pub mod formula_latex;
 pub mod formula_text;
 pub mod html;

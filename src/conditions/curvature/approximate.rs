@@ -102,7 +102,7 @@ impl Compiler<'_> {
 }
 
 /// ln x, by halving to near 1 and the series of the inverse hyperbolic tangent; NaN unless x > 0.
-fn ln(x: f64) -> f64 {
+pub(super) fn ln(x: f64) -> f64 {
     if !(x > 0.0 && x.is_finite()) {
         return f64::NAN;
     }
@@ -143,10 +143,21 @@ pub(super) fn rise(a: &[f64], n: usize) -> f64 {
         return 0.0;
     }
     let scale = |i: usize| a[i * n + i].abs().max(size * 1e-14).sqrt();
-    let mut c: Vec<f64> = (0..n * n).map(|k| a[k] / (scale(k / n) * scale(k % n))).collect();
+    largest((0..n * n).map(|k| a[k] / (scale(k / n) * scale(k % n))).collect(), n)
+}
+
+/// The largest eigenvalue of a symmetric matrix; 0 where rounding hides its sign.
+pub(super) fn largest_eigenvalue(a: &[f64], n: usize) -> f64 {
+    let size = a.iter().fold(0.0_f64, |m, x| m.max(x.abs()));
+    let found = if size.is_finite() && a.iter().all(|x| x.is_finite()) { largest(a.to_vec(), n) } else { f64::NAN };
+    if found.abs() <= 1e-13 * size { 0.0 } else { found }
+}
+
+fn largest(mut c: Vec<f64>, n: usize) -> f64 {
+    let size: f64 = c.iter().map(|x| x * x).sum();
     for _ in 0..12 {
         let off: f64 = (0..n * n).filter(|k| k / n != k % n).map(|k| c[k] * c[k]).sum();
-        if off < 1e-24 {
+        if off <= 1e-26 * size {
             break;
         }
         for (p, q) in (0..n).flat_map(|p| (p + 1..n).map(move |q| (p, q))) {

@@ -13,6 +13,7 @@ mod failure;
 mod nests;
 mod region;
 mod search;
+pub mod slice;
 mod split;
 mod squares;
 

@@ -3,7 +3,8 @@
 use crate::algebra::budget;
 use crate::algebra::factor::factor;
 use crate::algebra::field::Field;
-use crate::algebra::generator::Element;
+use crate::algebra::generator::{Element, Kind};
+use crate::algebra::monomial::Monomial;
 use crate::algebra::polynomial::Poly;
 use crate::algebra::sign::Sign;
 use crate::proof::{Expression, Matrix, Prover};
@@ -14,7 +15,9 @@ use super::squares::{Squares, blocks};
 use super::{Question, RUNG_WORK, split};
 
 /// The work that the normal form of one coefficient may take.
-const REDUCED_WORK: u64 = 20_000_000;
+const REDUCED_WORK: u64 = 4_000_000;
+/// Longer coefficients stay as they are, and those for other goods left out are not looked at.
+const LONGEST_REDUCED: usize = 5_000;
 /// The longest inequality that is looked at for factors.
 const LONGEST_FACTORED: usize = 400;
 
@@ -46,9 +49,16 @@ pub(super) fn describe(question: &Question<'_>, prover: &mut Prover<'_>) -> Vec<
     }
     let all = budget::attempt(RUNG_WORK, || coefficients(question, prover)).unwrap_or_default();
     for each in all {
-        let essential = budget::attempt(RUNG_WORK, || each.iter().map(|c| essence(&question.model.field, c)).collect());
-        let essential = essential.unwrap_or_else(|_| each.into_iter().map(Essence::whole).collect());
-        regions.push(Region::of(essential));
+        let own = |c: Element| {
+            let short = expanded_length(&question.model.field, &c) <= LONGEST_REDUCED;
+            let found = budget::attempt(REDUCED_WORK, || short.then(|| essence(&question.model.field, &c)));
+            found.ok().flatten().unwrap_or_else(|| Essence::whole(c))
+        };
+        let long = each.iter().any(|c| expanded_length(&question.model.field, c) > LONGEST_REDUCED);
+        regions.push(Region::of(each.into_iter().map(own).collect()));
+        if long {
+            break;
+        }
     }
     regions
 }
@@ -70,7 +80,8 @@ impl Region {
 /// that element decides the block.
 fn by_blocks(question: &Question<'_>) -> Option<Region> {
     let field = &question.model.field;
-    let blocks = blocks(field, &question.symmetric)?;
+    question.balance.as_ref()?;
+    let blocks = blocks(field, &question.symmetric);
     let decides = |block: &Squares| {
         let mut common: Option<Essence> = None;
         for (weight, _) in block {
@@ -123,7 +134,9 @@ pub(super) fn coefficients(question: &Question<'_>, prover: &mut Prover<'_>) -> 
     let matrix = Matrix::new(n, |i, j| Expression::element(question.symmetric.at(i, j).clone()));
     let all = choices.into_iter().filter_map(|without| prover.characteristic_coefficients(&matrix, without));
     let shorter = |c: &Element| {
-        let reduced = budget::attempt(REDUCED_WORK, || field.reduce(c)).ok().filter(|r| r.len() <= 2 * c.len());
+        let short = expanded_length(field, c) <= LONGEST_REDUCED;
+        let reduced = budget::attempt(REDUCED_WORK, || short.then(|| field.reduce(c))).ok().flatten();
+        let reduced = reduced.filter(|r| r.len() <= 2 * c.len());
         reduced.unwrap_or_else(|| c.clone())
     };
     all.map(|each| each.iter().map(shorter).collect()).collect()
@@ -141,6 +154,19 @@ impl Essence {
     fn whole(e: Element) -> Essence {
         Essence { factor: plain(e), complete: false }
     }
+}
+
+/// How many products there are once named sums are put back, before terms are collected.
+fn expanded_length(field: &Field, e: &Element) -> usize {
+    let length = |v| match &*field.kind(v) {
+        Kind::Sum { value, root: 1 } => expanded_length(field, &field.current(value)),
+        _ => 1,
+    };
+    let of_term = |monomial: &Monomial| {
+        let powers = monomial.iter().filter(|(_, k)| *k > 0);
+        powers.fold(1usize, |n, (v, k)| n.saturating_mul(length(v).max(1).saturating_pow(k.unsigned_abs())))
+    };
+    e.terms().fold(0usize, |n, (monomial, _)| n.saturating_add(of_term(monomial)))
 }
 
 /// Without a positive rational content.

@@ -90,9 +90,8 @@ fn rising_gaps(field: &Field, m: &Symmetric) -> Option<Squares> {
 
 /// Minus a balanced matrix as squares in blocks, whatever their signs, such that it is negative semidefinite exactly where
 /// each block is a nonnegative form.
-pub(super) fn blocks(field: &Field, m: &Symmetric) -> Option<Vec<Squares>> {
-    let by_nests = || nests::blocks(field, m);
-    m.is_balanced(field).then(|| by_nests().unwrap_or_else(|| vec![gaps(m)]))
+pub(super) fn blocks(field: &Field, m: &Symmetric) -> Vec<Squares> {
+    nests::blocks(field, m).unwrap_or_else(|| vec![gaps(m)])
 }
 
 /// Mᵢⱼ = wᵢ wⱼ (κᵢ + κⱼ − Σ κw) off the diagonal, as additive preferences have it: the squares κᵢ wᵢ (vᵢ − Σ w v)².

@@ -136,7 +136,7 @@ fn region(notation: &Notation<'_>, finding: &Finding) -> Vec<Vec<Inline>> {
 fn bounds(notation: &Notation<'_>, elements: &[Element]) -> Vec<Inline> {
     let zero = Expression::Number(num_rational::Ratio::from_integer(0.into()));
     let each = |e: &Element| {
-        let formula = short(notation, e, LONGEST_BOUND)?;
+        let formula = if e.len() > LONGEST_BOUND { None } else { short(notation, e, LONGEST_BOUND) }?;
         Some(vec![relation(formula, Relation::GreaterEqual, zero.clone())])
     };
     let mut shown: Vec<Vec<Inline>> = elements.iter().filter_map(each).collect();
@@ -153,7 +153,7 @@ fn bounds(notation: &Notation<'_>, elements: &[Element]) -> Vec<Inline> {
 
 /// The longest side of an inequality on the screen, in characters.
 /// The longest formula that stands within a line.
-pub const LONGEST_BOUND: usize = 240;
+pub const LONGEST_BOUND: usize = 160;
 
 /// Where and how a condition fails.
 pub fn failure(notation: &Notation<'_>, condition: Condition, witness: &Witness) -> Vec<Inline> {
