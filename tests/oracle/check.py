@@ -51,4 +51,5 @@ def main():
     print(json.dumps(worst))
 
 
-main()
+if __name__ == "__main__":
+    main()

@@ -10,7 +10,7 @@ use crate::algebra::sign::Sign;
 use crate::proof::{Expression, Matrix, Prover};
 
 use super::super::coefficients::moves;
-use super::super::slutsky::{Compensation, Coordinates};
+use super::super::slutsky::Compensation;
 use super::squares::{Squares, blocks};
 use super::{Question, RUNG_WORK, split};
 
@@ -104,7 +104,7 @@ fn by_blocks(question: &Question<'_>) -> Option<Region> {
 fn by_constant_slopes(question: &Question<'_>, prover: &mut Prover<'_>) -> Option<Region> {
     let (field, system) = (&question.model.field, question.system);
     let Compensation::Income(income) = system.compensation else { return None };
-    if system.coordinates != Coordinates::Shares || question.balance.is_none() || !system.positive.is_empty() {
+    if question.balance.is_none() || !system.positive.is_empty() {
         return None;
     }
     let slopes = split::beyond_spread(question)?;

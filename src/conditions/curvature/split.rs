@@ -10,6 +10,7 @@ use crate::algebra::polynomial::Poly;
 use crate::model::Model;
 use crate::proof::{Decomposition, Expression, Matrix, Proved, Prover, Semidefinite};
 
+use super::super::slutsky::{Compensation, Coordinates};
 use super::squares::{Squares, Symmetric, squares};
 use super::{Question, RUNG_WORK, SUBJECT, search};
 
@@ -52,6 +53,8 @@ pub(super) fn by_spread(question: &Question<'_>, prover: &mut Prover<'_>) -> Opt
     let t = beyond_spread(question)?;
     let mut all = of_terms(field, &t)?;
     all.extend(spread(field, &question.shares));
+    let whole = whole(question)?;
+    all.iter_mut().for_each(|(weight, _)| *weight = &*weight * &whole);
     let whole = Decomposition { multipliers: Vec::new(), squares: all };
     prover.decomposed(SUBJECT, &question.matrix, &[], whole)
 }
@@ -61,18 +64,28 @@ pub(super) fn beyond_spread(question: &Question<'_>) -> Option<Symmetric> {
     let field = &question.model.field;
     let w = &question.shares;
     let n = question.system.size();
-    if w.len() != n || question.system.coordinates != super::super::slutsky::Coordinates::Shares {
+    if w.len() != n {
         return None;
     }
+    let per = field.inverse(&whole(question)?).ok()?;
     let mut m = question.symmetric.clone();
     for (k, entry) in m.entries.iter_mut().enumerate() {
         let (i, j) = (k / n, k % n);
         let own = if i == j { w[i].clone() } else { Poly::zero() };
-        let rest = &(&field.current(entry) + &own) - &(&w[i] * &w[j]);
+        let rest = &(&(&field.current(entry) * &per) + &own) - &(&w[i] * &w[j]);
         *entry = field.reduce(&rest);
     }
     m.values.clear();
     Some(m)
+}
+
+/// What the entries are per unit of: 1 in shares, income in outlays. `None` where neither is so.
+fn whole(question: &Question<'_>) -> Option<Element> {
+    match (question.system.coordinates, &question.system.compensation) {
+        (Coordinates::Shares, _) => Some(Poly::one()),
+        (Coordinates::Outlays, Compensation::Income(income)) => Some(Poly::var(*income)),
+        _ => None,
+    }
 }
 
 /// diag w − w wᵀ as squares.
