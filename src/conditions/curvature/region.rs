@@ -104,7 +104,7 @@ fn by_blocks(question: &Question<'_>) -> Option<Region> {
 fn by_constant_slopes(question: &Question<'_>, prover: &mut Prover<'_>) -> Option<Region> {
     let (field, system) = (&question.model.field, question.system);
     let Compensation::Income(income) = system.compensation else { return None };
-    if question.balance.is_none() || !system.positive.is_empty() {
+    if question.balance.is_none() || !system.positive.is_empty() || !is_symmetric(question) {
         return None;
     }
     let slopes = split::beyond_spread(question)?;
@@ -121,6 +121,13 @@ fn by_constant_slopes(question: &Question<'_>, prover: &mut Prover<'_>) -> Optio
     region.exact = false;
     region.complete = true;
     Some(region)
+}
+
+/// Whether the matrix is its own symmetric part.
+fn is_symmetric(question: &Question<'_>) -> bool {
+    let (field, n) = (&question.model.field, question.symmetric.n);
+    let entry = |i: usize, j: usize| field.current(&question.entries[i * n + j]);
+    (0..n).all(|i| (0..i).all(|j| field.is_zero(&(&entry(i, j) - &entry(j, i)))))
 }
 
 /// The characteristic coefficients, for each good that may be left out.
