@@ -1,6 +1,7 @@
 //! The recovered preferences: in short for the screen, and one by one for the appendix.
 
 use crate::algebra::generator::Element;
+use crate::model::Coverage;
 use crate::recovery::{Case, Preferences, Recovered};
 use crate::render::document::{Block, Equation, Inline, Relation};
 use crate::render::expression::Expression;
@@ -35,8 +36,20 @@ pub fn further(notation: &Notation<'_>, found: &Preferences) -> Vec<Block> {
     if let Some(utility) = found.utility.as_ref().filter(|_| !stated) {
         blocks.push(Block::Paragraph(vec![text("and direct utility is")]));
         blocks.push(Block::Display(vec![Equation::equal(notation.direct_utility(), notation.element(utility))]));
+    } else if lacks_utility(notation, found) {
+        let words =
+            "Prices could not be eliminated from these demands in closed form: no direct utility function was found.";
+        blocks.push(Block::Paragraph(vec![text(words)]));
     }
     blocks
+}
+
+/// Whether a direct utility could have been written down, in the author's names for quantities, and was not found.
+fn lacks_utility(notation: &Notation<'_>, found: &Preferences) -> bool {
+    let model = notation.model();
+    let complete = matches!(model.coverage, Coverage::Complete) && model.given.is_none();
+    let named = !model.quantities.is_empty() && model.quantities.iter().all(Option::is_some);
+    complete && named && !found.hicksian.is_empty() && found.utility.is_none()
 }
 
 fn functions(notation: &Notation<'_>, found: &Preferences) -> Vec<Equation> {
