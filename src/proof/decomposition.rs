@@ -64,12 +64,6 @@ impl Prover<'_> {
     fn twice_symmetric(&self, entries: &[Element], n: usize, i: usize, j: usize) -> Element {
         &self.field.current(&entries[i * n + j]) + &self.field.current(&entries[j * n + i])
     }
-
-    /// Whether what a step established on its part of the domain holds where the prover is now.
-    pub(super) fn in_force(&self, step: StepId) -> bool {
-        let of = self.derivation.step(step).map(|step| &step.supposing);
-        of.is_some_and(|supposing| supposing.is_empty() || *supposing == self.supposing)
-    }
 }
 
 /// The negative semidefinite matrices that steps have established; the error says which premise is none.

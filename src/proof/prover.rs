@@ -77,9 +77,17 @@ impl<'f> Prover<'f> {
             facts.push((self.value(expression), *relation));
         }
         let field = self.field;
-        let outside = std::mem::replace(&mut self.supposing, Rc::new(further.to_vec()));
+        let all = self.supposing.iter().chain(further).cloned().collect();
+        let outside = std::mem::replace(&mut self.supposing, Rc::new(all));
         let scope = Scope { prover: self, outside };
         field.suppose(&facts, || body(&mut *scope.prover))
+    }
+
+    /// Whether what a step established on its part of the domain holds where the prover is now: all that it supposed is
+    /// supposed here too.
+    pub(super) fn in_force(&self, step: StepId) -> bool {
+        let of = self.derivation.step(step).map(|step| &step.supposing);
+        of.is_some_and(|supposing| supposing.iter().all(|each| self.supposing.contains(each)))
     }
 
     /// The element that an expression stands for.

@@ -37,6 +37,9 @@ impl Prover<'_> {
     /// A balanced matrix with nonnegative entries off the diagonal is negative semidefinite:
     /// vᵀMv = −Σ_{i<j} (Mᵢⱼ + Mⱼᵢ)/2 · (vᵢ − vⱼ)². `None` if a sign is not known.
     pub fn laplacian(&mut self, subject: &str, balance: &Proved<Balanced>) -> Option<Proved<Semidefinite>> {
+        if !self.in_force(balance.step) {
+            return None;
+        }
         let matrix = balance.claim.matrix.clone();
         let n = matrix.size;
         let entries = self.entries(&matrix);
@@ -59,7 +62,10 @@ impl Prover<'_> {
         matrix: &Rc<Matrix>,
         reduction: Option<(&Proved<Balanced>, usize)>,
     ) -> Option<Proved<Semidefinite>> {
-        if reduction.is_some_and(|(balance, without)| balance.claim.matrix != *matrix || without >= matrix.size) {
+        let fits = |(balance, without): (&Proved<Balanced>, usize)| {
+            balance.claim.matrix == *matrix && without < matrix.size && self.in_force(balance.step)
+        };
+        if !reduction.is_none_or(fits) {
             return None;
         }
         let without = reduction.map(|(_, without)| without);

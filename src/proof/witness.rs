@@ -146,7 +146,8 @@ impl Prover<'_> {
         balance: Option<&Proved<Balanced>>,
         point: &Point,
     ) -> Option<Proved<SemidefiniteAt>> {
-        if balance.is_some_and(|b| b.claim.matrix != *matrix) || !satisfies_facts(self.field, point) {
+        let fits = balance.is_none_or(|b| b.claim.matrix == *matrix && self.in_force(b.step));
+        if !fits || !satisfies_facts(self.field, point) {
             return None;
         }
         let size = if balance.is_some() { matrix.size - 1 } else { matrix.size };

@@ -10,7 +10,7 @@ use crate::proof::{Combination, Expression, Factor, Proved, Prover, Semidefinite
 use super::super::finding::{Branch, Condition, Finding, Verdict};
 use super::super::slutsky::Coordinates;
 use super::search::{self, Failing};
-use super::{Question, RUNG_WORK, SUBJECT, region};
+use super::{Question, RUNG_WORK, SUBJECT, certificates, region, split};
 
 /// The finding for a matrix that fails at a point.
 pub(super) fn tell_apart(
@@ -33,7 +33,9 @@ pub(super) fn tell_apart(
     if let Some(region) = described.iter().find(|region| region.of_parameters(question))
         && let Some(point) = with_conditions(question, &region.inequalities)
         && (region.complete || regular.is_none())
+        && let Some(under) = proven_under(question, prover, &region.inequalities)
     {
+        finding.steps.extend(under.steps);
         let inequalities = region.inequalities.clone();
         finding.verdict = Verdict::Conditional;
         finding.never = Some(false);
@@ -85,6 +87,27 @@ fn by_square(
     let root = &share - &Poly::constant(&rational(1, 2));
     let certificate = Combination { facts: Vec::new(), squares: vec![(rational(1, 1), root)] };
     prover.bound_by(SUBJECT, entry, Relation::Positive, certificate, &[])
+}
+
+/// A proof that the matrix is negative semidefinite wherever the conditions hold.
+fn proven_under(question: &Question<'_>, prover: &mut Prover<'_>, conditions: &[Element]) -> Option<Finding> {
+    let supposed: Vec<(Expression, Relation)> =
+        conditions.iter().map(|e| (Expression::element(e.clone()), Relation::NonNegative)).collect();
+    let quantities: Vec<Element> = question.quantities.iter().chain(conditions).cloned().collect();
+    prover.supposing(&supposed, |prover| {
+        let symmetric = split::symmetric(question.model, &question.entries, &quantities);
+        let there = Question {
+            model: question.model,
+            system: question.system,
+            matrix: question.matrix.clone(),
+            entries: question.entries.clone(),
+            symmetric,
+            balance: question.balance.clone(),
+            quantities,
+            shares: question.shares.clone(),
+        };
+        certificates::prove(&there, prover)
+    })
 }
 
 /// An admissible point at which the conditions hold.

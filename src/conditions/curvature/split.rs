@@ -51,12 +51,19 @@ pub(super) fn by_squares(question: &Question<'_>, prover: &mut Prover<'_>) -> Op
 pub(super) fn by_spread(question: &Question<'_>, prover: &mut Prover<'_>) -> Option<Proved<Semidefinite>> {
     let field = &question.model.field;
     let t = beyond_spread(question)?;
-    let mut all = of_terms(field, &t)?;
-    all.extend(spread(field, &question.shares));
     let whole = whole(question)?;
-    all.iter_mut().for_each(|(weight, _)| *weight = &*weight * &whole);
-    let whole = Decomposition { multipliers: Vec::new(), squares: all };
-    prover.decomposed(SUBJECT, &question.matrix, &[], whole)
+    let times = |mut all: Squares| {
+        all.iter_mut().for_each(|(weight, _)| *weight = &*weight * &whole);
+        all
+    };
+    let spread = spread(field, &question.shares);
+    if let Some(own) = of_terms(field, &t) {
+        let squares = times([own, spread].concat());
+        return prover.decomposed(SUBJECT, &question.matrix, &[], Decomposition { multipliers: Vec::new(), squares });
+    }
+    let rest = part(question, prover, t.entries)?;
+    let parts = Decomposition { multipliers: vec![whole.clone()], squares: times(spread) };
+    prover.decomposed(SUBJECT, &question.matrix, &[rest], parts)
 }
 
 /// T = K + diag w − w wᵀ, symmetric. `None` where the functions are no shares.
