@@ -14,7 +14,7 @@ use crate::conditions::special::{contradicts_a_fact, transfer};
 use crate::conditions::{self, ClaimFinding, Condition, Verdict, Witness};
 use crate::language::{Comparison, Link, Property};
 use crate::model::{DomainCondition, Model};
-use crate::proof::{Label, Prover, exact_value};
+use crate::proof::{Expression, Label, Prover, exact_value};
 
 use super::branch::{self, Branch};
 use super::node::{Node, numerator};
@@ -25,6 +25,8 @@ use super::{Request, restrict};
 /// A relation between elements of the parameters.
 pub type Related = (Element, Comparison, Element);
 
+/// The subject of the steps.
+const SUBJECT: &str = "relation";
 /// How many points of a branch are looked at for one that does not satisfy a relation.
 const MOST_POINTS: usize = 48;
 
@@ -145,17 +147,11 @@ fn fact(model: &Model, special: &Model, leaf: &Node, related: &Related) -> Optio
     Some((transfer(model, special, &e)?, relation))
 }
 
-/// Whether the condition holds in a model; else a point at which it fails, where one is found.
+/// Whether the condition is proven in a model; else a point at which it fails, where one is found.
 fn holds(model: &Model, condition: Condition) -> Result<(), Option<Box<Witness>>> {
     let mut prover = Prover::new(&model.field);
-    match conditions::differences(condition, model, &mut prover) {
-        Some(differences) if differences.is_empty() => Ok(()),
-        Some(differences) => Err(conditions::failure(condition, model, &mut prover, &differences).map(Box::new)),
-        None => {
-            let finding = conditions::examine(condition, model, &mut prover, &[]);
-            if finding.verdict == Verdict::Proven { Ok(()) } else { Err(finding.witness.map(Box::new)) }
-        }
-    }
+    let finding = conditions::examine(condition, model, &mut prover, &[]);
+    if finding.verdict == Verdict::Proven { Ok(()) } else { Err(finding.witness.map(Box::new)) }
 }
 
 /// Whether the relations hold wherever the condition does.
@@ -192,16 +188,7 @@ fn on_branch(model: &Model, branch: &Branch, gap: &Element, sign: Comparison) ->
     let special = &branch.model;
     let here = put_in(&model.field, gap, &branch.equations).ok().and_then(|e| transfer(model, special, &e));
     let Some(here) = here else { return Err(None) };
-    let known = special.field.sign(&here);
-    let certain = match sign {
-        Comparison::Equal => special.field.is_zero(&here),
-        Comparison::NotEqual => known.excludes_zero(),
-        Comparison::Greater => known.excludes_zero() && known.is_nonnegative(),
-        Comparison::GreaterEqual => known.is_nonnegative(),
-        Comparison::Less => known.excludes_zero() && known.negated().is_nonnegative(),
-        Comparison::LessEqual => known.negated().is_nonnegative(),
-    };
-    if certain {
+    if is_proven(special, &here, sign) {
         return Ok(());
     }
     let fails = |order: Ordering| match sign {
@@ -218,6 +205,20 @@ fn on_branch(model: &Model, branch: &Branch, gap: &Element, sign: Comparison) ->
         fails.then_some(Witness { point, place: Label::Whole, value, vector: None })
     });
     Err(witness.filter(|witness| same_names(model, special, &witness.point)).map(Box::new))
+}
+
+/// Whether a relation of an element to zero is established on the whole domain.
+fn is_proven(special: &Model, e: &Element, sign: Comparison) -> bool {
+    let mut prover = Prover::new(&special.field);
+    let mut bound = |e: Element, relation| prover.bound(SUBJECT, Expression::element(e), relation, &[]).is_some();
+    match sign {
+        Comparison::Equal => prover.identity(SUBJECT, Expression::element(e.clone()), Expression::zero(), &[]).is_ok(),
+        Comparison::NotEqual => bound(e.clone(), Relation::NonZero),
+        Comparison::Greater => bound(e.clone(), Relation::Positive),
+        Comparison::GreaterEqual => bound(e.clone(), Relation::NonNegative),
+        Comparison::Less => bound(e.neg(), Relation::Positive),
+        Comparison::LessEqual => bound(e.neg(), Relation::NonNegative),
+    }
 }
 
 /// Whether the inequalities of a branch hold at a point.
