@@ -11,8 +11,8 @@ use mainspring::algebra::monomial::Var;
 use mainspring::algebra::number::rational;
 use mainspring::algebra::polynomial::Poly;
 use mainspring::proof::{
-    Combination, Equation, Expression, Factor, FunctionId, Label, Matrix, Prover, StoredDerivation, Value, replay,
-    store,
+    Combination, Decomposition, Equation, Expression, Factor, FunctionId, Label, Matrix, Prover, StoredDerivation,
+    Value, replay, store,
 };
 
 /// Two prices, income, a taste parameter a in (0, 1), and the outlays a·m and (1 − a)·m.
@@ -186,6 +186,78 @@ fn certificate(home: &Household, register: &Register) -> StoredDerivation {
     store(&home.field, &prover.into_derivation(), &|e| register.print(e))
 }
 
+/// Each alteration of the certificate, made once, is rejected.
+fn rejects(home: &Household, register: &Register, text: &str, alterations: &[(&str, &str)]) {
+    for (from, to) in alterations {
+        assert!(text.contains(from), "{from} is not in the certificate {text}");
+        let altered = text.replacen(from, to, 1);
+        let rejected = match serde_json::from_str::<StoredDerivation>(&altered) {
+            Ok(altered) => replay(&home.field, &altered, &|text| register.read(text)).is_err(),
+            Err(_) => true,
+        };
+        assert!(rejected, "accepted with {to} for {from}");
+    }
+}
+
+/// −K = a(1 − a)m (v₁ − v₂)²; and K again from that, where a > 1/2 and a > 1/3 are supposed one inside the other.
+#[test]
+fn a_decomposition_is_replayed_where_it_was_made_and_an_altered_one_is_rejected() {
+    let home = Household::new();
+    let register = Register::default();
+    let mut prover = Prover::new(&home.field);
+    let [first, second] = home.outlays();
+    let matrix = Rc::new(home.slutsky([prover.define("y_1", &first), prover.define("y_2", &second)]));
+    let weight = &first * &(&Poly::one() - &Poly::var(home.taste));
+    let squares = vec![(weight.clone(), vec![Poly::one(), Poly::int(-1)])];
+    let by_squares = Decomposition { multipliers: Vec::new(), squares };
+    let wrong = vec![(weight.neg(), vec![Poly::one(), Poly::int(-1)])];
+    let wrong = Decomposition { multipliers: Vec::new(), squares: wrong };
+    assert!(prover.decomposed("curvature", &matrix, &[], wrong).is_none(), "a negative weight");
+    let whole = prover.decomposed("curvature", &matrix, &[], by_squares.clone()).expect("a square");
+    let above =
+        |n, d| (Expression::element(&Poly::var(home.taste) - &Poly::constant(&rational(n, d))), Relation::Positive);
+    let again = Decomposition { multipliers: vec![Poly::one()], squares: Vec::new() };
+    let inside = prover.supposing(&[above(1, 2)], |prover| {
+        prover.supposing(&[above(1, 3)], |prover| {
+            let step = prover.bound("claim", above(2, 5).0, Relation::Positive, &[]).expect("1/2 is above 2/5").step();
+            assert_eq!(prover.derivation().step(step).map(|step| step.supposing().len()), Some(2));
+            prover
+                .decomposed("curvature", &matrix, std::slice::from_ref(&whole), again.clone())
+                .expect("the same matrix")
+        })
+    });
+    assert!(prover.decomposed("curvature", &matrix, &[inside], again).is_none(), "what was supposed is not forgotten");
+    let stored = store(&home.field, &prover.into_derivation(), &|e| register.print(e));
+    let text = serde_json::to_string(&stored).expect("plain data");
+    let replayed = replay(&home.field, &stored, &|text| register.read(text)).expect("its own certificate");
+    assert_eq!(replayed.steps().len(), 3);
+    let shown = |e: &Element| format!("\"{}\"", register.print(e));
+    let (one, minus, weight) = (shown(&Poly::one()), shown(&Poly::int(-1)), shown(&weight));
+    let squares = format!("[[{weight},[{one},{minus}]]]");
+    rejects(
+        &home,
+        &register,
+        &text,
+        &[
+            (&squares, &format!("[[{weight},[{one},{one}]]]")),
+            (&squares, &format!("[[{one},[{one},{minus}]]]")),
+            (&squares, "[]"),
+            (&format!("[{one}],[]"), &format!("[{minus}],[]")),
+            ("\"premises\":[0]", "\"premises\":[]"),
+            ("\"premises\":[0]", "\"premises\":[1]"),
+            ("{\"function\":1}", "{\"function\":0}"),
+            // 2/5 is below 1/2, and not below 1/3
+            (&supposition(&home, &register, rational(1, 2)), ""),
+        ],
+    );
+}
+
+/// How a > bound is written among what a step supposes, with the comma behind it.
+fn supposition(home: &Household, register: &Register, bound: mainspring::algebra::number::Rational) -> String {
+    let element = register.print(&(&Poly::var(home.taste) - &Poly::constant(&bound)));
+    format!("[[[1,[{{\"formula\":\"{element}\"}}]]],\"> 0\"],")
+}
+
 #[test]
 fn a_certificate_is_replayed_and_an_altered_one_is_rejected() {
     let home = Household::new();
@@ -211,14 +283,6 @@ fn a_certificate_is_replayed_and_an_altered_one_is_rejected() {
         ("\"-1/6\"", "\"1/6\""),
         ("\"size\":2", "\"size\":3"),
     ];
-    for (from, to) in alterations {
-        assert!(text.contains(from), "{from} is not in the certificate {text}");
-        let altered = text.replacen(from, to, 1);
-        let rejected = match serde_json::from_str::<StoredDerivation>(&altered) {
-            Ok(altered) => replay(&home.field, &altered, &read).is_err(),
-            Err(_) => true,
-        };
-        assert!(rejected, "accepted with {to} for {from}");
-    }
+    rejects(&home, &register, &text, &alterations);
     assert!(serde_json::from_str::<StoredDerivation>(&text.replace("laplacian", "believe_me")).is_err());
 }
