@@ -148,6 +148,23 @@ fn divisors_and_positivities_are_listed_beside_the_result() {
     let step = prover.derivation().step(proved.step()).expect("a step of this derivation");
     assert_eq!(step.sides().len(), 1);
     assert_eq!((step.sides()[0].relation, step.sides()[0].discharged), (Relation::NonZero, false));
+    // what does not follow from the facts may neither be left out of the certificate nor be called discharged
+    let register = Register::default();
+    let stored = store(&home.field, &prover.into_derivation(), &|e| register.print(e));
+    replay(&home.field, &stored, &|text| register.read(text)).expect("its own certificate");
+    let text = serde_json::to_string(&stored).expect("plain data");
+    let (divisor, income) = (register.print(&free), register.print(&Poly::var(home.income)));
+    let side = format!("[\"{divisor}\",\"!= 0\",false]");
+    let called = |formula: &str, relation: &str, discharged| format!("[\"{formula}\",\"{relation}\",{discharged}]");
+    let others = [
+        called(&divisor, "!= 0", true),
+        called(&divisor, "> 0", false),
+        called(&income, "!= 0", false),
+        called(&income, "!= 0", true),
+        String::new(),
+    ];
+    let alterations: Vec<(&str, &str)> = others.iter().map(|other| (side.as_str(), other.as_str())).collect();
+    rejects(&home, &register, &text, &alterations);
 }
 
 /// A printer and reader of elements by number, so that formulas can be exchanged at will.

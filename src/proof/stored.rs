@@ -16,7 +16,7 @@ use super::bound::Combination;
 use super::claim::{Bounded, Equation, Expression, Factor, FunctionId, Label, Matrix, Product};
 use super::decomposition::{Decomposition, semidefinite_premises};
 use super::derivation::{Derivation, Proved, Rule, SideCondition, Statement, StepId};
-use super::prover::Prover;
+use super::prover::{Prover, holds};
 use super::witness::{Failed, Value};
 
 /// A derivation as data.
@@ -314,8 +314,9 @@ pub fn replay(field: &Field, stored: &StoredDerivation, read: Reader<'_>) -> Res
     Ok(replay.prover.into_derivation())
 }
 
+/// The symbols by name; the author's come before those of our own working that may be called the same.
 fn symbols(field: &Field) -> BTreeMap<String, Var> {
-    let all = (0..field.len()).map(|index| Var::new(index as u32));
+    let all = (0..field.len()).rev().map(|index| Var::new(index as u32));
     all.filter(|v| field.role(*v).is_some()).filter_map(|v| Some((field.name(v)?, v))).collect()
 }
 
@@ -349,20 +350,27 @@ impl Replay<'_> {
         self.same_sides(&stored.sides)
     }
 
-    /// Whether the step just made leans on what the stored one says.
+    /// Whether the step just made leans on what the stored one says. What follows from the facts may be more or less by
+    /// now: a price becomes the square of its root.
     fn same_sides(&self, stored: &[(String, StoredRelation, bool)]) -> Read<()> {
+        let field = self.prover.field();
         let made: &[SideCondition] = self.prover.derivation().steps().last().map_or(&[], |step| step.sides());
-        if made.len() != stored.len() {
-            return Err("the side conditions are not those of the step".into());
-        }
-        for (own, (formula, relation, discharged)) in made.iter().zip(stored) {
-            let element = (self.read)(formula)?;
-            let same = self.prover.field().is_zero(&(&self.prover.field().current(&own.element) - &element));
-            if !same || own.relation != relation_back(*relation) || own.discharged != *discharged {
-                return Err(format!("the side condition {formula} is not that of the step"));
+        let mut listed = vec![false; made.len()];
+        for (formula, relation, discharged) in stored {
+            let (element, relation) = ((self.read)(formula)?, relation_back(*relation));
+            let same = |own: &SideCondition| {
+                own.relation == relation
+                    && own.discharged == *discharged
+                    && field.is_zero(&(&field.current(&own.element) - &field.current(&element)))
+            };
+            match made.iter().position(same) {
+                Some(at) => listed[at] = true,
+                None if *discharged && holds(field, &element, relation) => {}
+                None => return Err(format!("the side condition {formula} is not that of the step")),
             }
         }
-        Ok(())
+        let all = made.iter().zip(listed).all(|(own, listed)| listed || own.discharged);
+        if all { Ok(()) } else { Err("a side condition of the step is missing".into()) }
     }
 
     fn expression(&self, stored: &StoredExpression) -> Read<Expression> {
