@@ -93,18 +93,29 @@ impl System {
     /// Marshallian demands that the model does not have itself, by their budget shares.
     pub fn of_shares(model: &Model, shares: &[Element], prover: &mut Prover<'_>) -> Option<System> {
         let income = model.income?;
+        Some(System::in_shares(model, shares, model.prices.clone(), Compensation::Income(income), prover))
+    }
+
+    /// A system of shares, one for each good, in what moves them.
+    fn in_shares(
+        model: &Model,
+        shares: &[Element],
+        movers: Vec<Var>,
+        compensation: Compensation,
+        prover: &mut Prover<'_>,
+    ) -> System {
         let functions = shares.iter().zip(&model.goods);
         let functions = functions.map(|(share, good)| prover.define(&format!("share {}", good.name), share));
         let functions: Vec<FunctionId> = functions.collect();
-        Some(System {
+        System {
             coordinates: Coordinates::Shares,
             collected: functions.clone(),
             functions,
-            prices: model.prices.clone(),
-            compensation: Compensation::Income(income),
+            prices: movers,
+            compensation,
             others: Vec::new(),
             positive: Vec::new(),
-        })
+        }
     }
 
     fn inverse(model: &Model, prover: &mut Prover<'_>) -> Option<System> {
@@ -134,18 +145,8 @@ impl System {
         prover: &mut Prover<'_>,
     ) -> Option<System> {
         let quantities: Vec<Var> = model.quantities.iter().copied().collect::<Option<_>>()?;
-        let functions = shares.iter().zip(&model.goods);
-        let functions = functions.map(|(share, good)| prover.define(&format!("share {}", good.name), share));
-        let functions: Vec<FunctionId> = functions.collect();
-        Some(System {
-            coordinates: Coordinates::Shares,
-            collected: functions.clone(),
-            functions,
-            prices: quantities,
-            compensation: Compensation::Scale,
-            others: Vec::new(),
-            positive,
-        })
+        let system = System::in_shares(model, &shares, quantities, Compensation::Scale, prover);
+        Some(System { positive, ..system })
     }
 
     fn hicksian(model: &Model, prover: &mut Prover<'_>) -> Option<System> {

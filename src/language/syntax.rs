@@ -4,6 +4,8 @@
 //! are one name. Every part that a later message may point at carries its [`Span`]. Sums and products are n-ary, so
 //! that the depth of a tree is bounded by the nesting of its brackets and never by its length.
 
+use std::fmt;
+
 use num_bigint::BigInt;
 
 /// The exact rational number that a decimal or an integer of the file denotes.
@@ -44,6 +46,21 @@ pub struct Name {
     pub span: Span,
 }
 
+/// How tightly a formula holds together, by its outermost operator.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Level {
+    /// `a + b`
+    Sum,
+    /// `-a`
+    Negative,
+    /// `a*b`, `a/b`
+    Product,
+    /// `a^b`
+    Power,
+    /// A name, a number, a call, or what stands in brackets.
+    Atom,
+}
+
 /// What stands between square brackets: a good by its number, or a name (of a good, or of a free or bound index).
 #[derive(Clone, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
 pub enum Index {
@@ -51,6 +68,15 @@ pub enum Index {
     Number(u32),
     /// `p[bread]`, `a[i]`
     Name(String),
+}
+
+impl fmt::Display for Index {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            Index::Number(number) => write!(f, "{number}"),
+            Index::Name(name) => f.write_str(name),
+        }
+    }
 }
 
 /// A name in a formula, with the indices behind it: `p_b`, `g[i,j]`.

@@ -2,16 +2,6 @@
 
 use super::syntax::*;
 
-/// How tightly the outermost operator of a text binds.
-#[derive(Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
-enum Level {
-    Sum,
-    Negative,
-    Product,
-    Power,
-    Atom,
-}
-
 /// The formula in the signs of model files; reading it gives the formula back.
 pub fn wording(expr: &Expr) -> String {
     text(expr).0
@@ -30,15 +20,14 @@ pub fn relation_wording(relation: &Relation) -> String {
 pub fn claim_wording(function: &Claimed, value: &Expr) -> String {
     let of_good = |words: &str, target: &Target| match target {
         Target::Good(name) => format!("{words} {}", name.text),
-        Target::Indexed(Index::Name(name), _) => format!("{words}[{name}]"),
-        Target::Indexed(Index::Number(number), _) => format!("{words}[{number}]"),
+        Target::Indexed(index, _) => format!("{words}[{index}]"),
     };
     let of_two = |words: &str, good: &(Index, Span), mover: &Mover| {
         let mover = match mover {
             Mover::Named(reference) => name_text(&reference.name.text, &reference.indices),
             Mover::Number(number, _) => number.to_string(),
         };
-        format!("{words}[{}, {mover}]", index_text(&good.0))
+        format!("{words}[{}, {mover}]", good.0)
     };
     let left = match function {
         Claimed::Preferences(Preferences::Utility) => "utility".to_string(),
@@ -76,15 +65,8 @@ fn text(expr: &Expr) -> (String, Level) {
 
 /// A name with its indices.
 pub fn name_text(name: &str, indices: &[(Index, Span)]) -> String {
-    let indices: Vec<String> = indices.iter().map(|(index, _)| index_text(index)).collect();
+    let indices: Vec<String> = indices.iter().map(|(index, _)| index.to_string()).collect();
     if indices.is_empty() { name.to_string() } else { format!("{name}[{}]", indices.join(",")) }
-}
-
-fn index_text(index: &Index) -> String {
-    match index {
-        Index::Number(number) => number.to_string(),
-        Index::Name(name) => name.clone(),
-    }
 }
 
 fn at_least(expr: &Expr, level: Level) -> String {
@@ -120,7 +102,7 @@ fn product(factors: &[Factor]) -> String {
 
 fn over_text(over: &Over) -> String {
     let binders = over.binders.iter().map(|name| name.text.as_str()).collect::<Vec<_>>().join(", ");
-    let except = over.except.as_ref().map(|(index, _)| format!(" != {}", index_text(index))).unwrap_or_default();
+    let except = over.except.as_ref().map(|(index, _)| format!(" != {index}")).unwrap_or_default();
     let group = over.group.as_ref().map(|name| format!(" in {}", name.text)).unwrap_or_default();
     let kind = if over.product { "product" } else { "sum" };
     format!("{kind} over {binders}{except}{group} of ({})", wording(&over.body))

@@ -5,6 +5,7 @@
 
 use crate::algebra::formula::{Formula, Function};
 use crate::algebra::number::Rational;
+use crate::language::Level;
 use crate::render::expression::{Expression, Mark, Object};
 use num_traits::{One, Signed};
 use std::fmt::Write;
@@ -20,16 +21,6 @@ pub fn plain_expression(expression: &Expression) -> String {
     let mut out = String::new();
     write_at(expression, Level::Sum, &mut out);
     out
-}
-
-/// How tightly an expression holds together.
-#[derive(Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
-enum Level {
-    Sum,
-    Negative,
-    Product,
-    Power,
-    Atom,
 }
 
 fn level(expression: &Expression) -> Level {

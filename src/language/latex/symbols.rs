@@ -134,14 +134,7 @@ fn index(lexicon: &Lexicon, tokens: &[Token], bound: &[String]) -> Option<(Index
 impl Meaning {
     /// The reading as it is written in model files.
     pub fn text(&self) -> String {
-        let indices: Vec<String> = self
-            .indices
-            .iter()
-            .map(|(index, _)| match index {
-                Index::Number(number) => number.to_string(),
-                Index::Name(name) => name.clone(),
-            })
-            .collect();
+        let indices: Vec<String> = self.indices.iter().map(|(index, _)| index.to_string()).collect();
         if indices.is_empty() { self.name.clone() } else { format!("{}[{}]", self.name, indices.join(",")) }
     }
 }

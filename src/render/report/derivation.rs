@@ -15,47 +15,38 @@ use crate::vetting::appendix::Appendix;
 
 /// The whole derivation.
 pub fn derivation(vetting: &Vetting, appendix: &Appendix) -> Document {
-    let notation = Notation::new(&vetting.model);
-    let scribe = Scribe { notation: &notation, derivation: &vetting.derivation, appendix };
-    let mut blocks = Vec::new();
-    let start = Start::of(&vetting.model);
-    if !vetting.model.demands.is_empty() || start.is_some() {
-        blocks.extend(system::blocks(&notation));
-    }
-    if start.is_none() && !vetting.model.demands.is_empty() {
-        blocks.extend(slutsky(&notation, vetting, appendix));
-    }
-    for finding in &vetting.findings {
-        blocks.extend(conditions::section(&scribe, finding));
-    }
-    if let Some(recovered) = &vetting.recovered {
-        blocks.extend(recovery::sections(&scribe, recovered));
-    }
-    blocks.extend(vetting.structure.iter().flat_map(|found| structure::section(&notation, found)));
-    blocks.extend(vetting.responses.iter().flat_map(|found| responses::sections(&notation, found)));
-    if !vetting.claims.is_empty() {
-        blocks.push(heading("Claims"));
-        blocks.push(Block::Verdicts(claims::claim_lines(&notation, vetting)));
-    }
-    Document { title: vetting.model.title.clone(), blocks }
+    framed(vetting, appendix, |scribe, blocks| {
+        let notation = scribe.notation;
+        if Start::of(&vetting.model).is_none() && !vetting.model.demands.is_empty() {
+            blocks.extend(slutsky(notation, vetting, appendix));
+        }
+        blocks.extend(vetting.findings.iter().flat_map(|finding| conditions::section(scribe, finding)));
+        blocks.extend(vetting.recovered.iter().flat_map(|recovered| recovery::sections(scribe, recovered)));
+        blocks.extend(vetting.structure.iter().flat_map(|found| structure::section(notation, found)));
+        blocks.extend(vetting.responses.iter().flat_map(|found| responses::sections(notation, found)));
+    })
 }
 
 /// The statements and the results, without the working.
 pub fn short_derivation(vetting: &Vetting, appendix: &Appendix) -> Document {
+    framed(vetting, appendix, |scribe, blocks| {
+        if !vetting.findings.is_empty() {
+            blocks.push(heading("Integrability"));
+            blocks.extend(vetting.findings.iter().flat_map(|finding| conditions::in_short(scribe, finding)));
+        }
+        blocks.extend(vetting.recovered.iter().flat_map(|recovered| recovery::in_short(scribe, recovered)));
+    })
+}
+
+/// The system in front, the claims at the end.
+fn framed(vetting: &Vetting, appendix: &Appendix, body: impl FnOnce(&Scribe<'_>, &mut Vec<Block>)) -> Document {
     let notation = Notation::new(&vetting.model);
     let scribe = Scribe { notation: &notation, derivation: &vetting.derivation, appendix };
     let mut blocks = Vec::new();
-    let start = Start::of(&vetting.model);
-    if !vetting.model.demands.is_empty() || start.is_some() {
+    if !vetting.model.demands.is_empty() || Start::of(&vetting.model).is_some() {
         blocks.extend(system::blocks(&notation));
     }
-    if !vetting.findings.is_empty() {
-        blocks.push(heading("Integrability"));
-        blocks.extend(vetting.findings.iter().flat_map(|finding| conditions::in_short(&scribe, finding)));
-    }
-    if let Some(recovered) = &vetting.recovered {
-        blocks.extend(recovery::in_short(&scribe, recovered));
-    }
+    body(&scribe, &mut blocks);
     if !vetting.claims.is_empty() {
         blocks.push(heading("Claims"));
         blocks.push(Block::Verdicts(claims::claim_lines(&notation, vetting)));

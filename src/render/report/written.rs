@@ -1,9 +1,7 @@
 //! The author's own formulas, from the syntax tree: what is shown is what was written, index by index.
 
 use crate::algebra::formula::{Function, Symbol};
-use crate::language::{
-    Comparison, Expr, ExprKind, Function as Word, Index, Over, Reference, Relation as Written, Statement,
-};
+use crate::language::{Comparison, Expr, ExprKind, Function as Word, Over, Reference, Relation as Written, Statement};
 use crate::model::Model;
 use crate::render::document::{Equation, Relation};
 use crate::render::expression::{Expression, Range};
@@ -71,14 +69,7 @@ impl Author {
     }
 
     fn reference(&self, reference: &Reference) -> Expression {
-        let indices: Vec<String> = reference
-            .indices
-            .iter()
-            .map(|(index, _)| match index {
-                Index::Number(number) => number.to_string(),
-                Index::Name(name) => name.clone(),
-            })
-            .collect();
+        let indices: Vec<String> = reference.indices.iter().map(|(index, _)| index.to_string()).collect();
         self.symbol(&reference.name.text, &indices)
     }
 
@@ -100,10 +91,7 @@ impl Author {
 
     fn total(&self, over: &Over) -> Option<Expression> {
         let body = self.formula(&over.body)?;
-        let except = over.except.as_ref().map(|(index, _)| match index {
-            Index::Number(number) => number.to_string(),
-            Index::Name(name) => name.clone(),
-        });
+        let except = over.except.as_ref().map(|(index, _)| index.to_string());
         let range = Range { product: over.product, except, group: over.group.as_ref().map(|name| name.text.clone()) };
         Some(over.binders.iter().rev().fold(body, |body, index| Expression::Total {
             index: index.text.clone(),

@@ -1,12 +1,10 @@
 //! The exact conditions and the claims, on systems whose truth is known from the literature or from a line of algebra.
 
-mod vetted;
-
+use crate::vetted::{vet, vet_only};
 use mainspring::algebra::number::rational;
 use mainspring::conditions::Condition::{AddingUp, Homogeneity, Symmetry};
 use mainspring::conditions::Verdict::{Conditional, Proven, Refuted};
 use mainspring::proof::{Label, Statement, Value};
-use vetted::{vet, vet_only};
 
 const LINEAR_EXPENDITURE: &str = "
 goods bread, cloth, fuel

@@ -2,15 +2,13 @@
 //! intervals of relative prices on which a translog and a generalised Leontief unit cost function of two prices, with the
 //! same share 1/3 at equal prices, have positive demands and the right curvature. Their ends in closed form.
 
-mod vetted;
-
+use crate::vetted::{Vetted, vet};
 use mainspring::algebra::evaluation::Point;
 use mainspring::algebra::generator::Element;
 use mainspring::algebra::number::{Rational, rational};
 use mainspring::algebra::polynomial::Poly;
 use mainspring::conditions::Condition::Curvature;
 use mainspring::conditions::Verdict::{Proven, Regional};
-use vetted::{Vetted, vet};
 
 fn translog(b: &str) -> Vetted {
     vet(&format!("goods x, y\nprices p, q\nincome m\nshare x = 1/3 + {b}*ln(p/q)\nshare y = 2/3 - {b}*ln(p/q)\n"))

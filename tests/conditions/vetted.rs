@@ -1,5 +1,4 @@
 //! Model texts with what the conditions say of them.
-#![allow(dead_code)]
 
 use mainspring::conditions::{Charts, ClaimFinding, Condition, Finding, Verdict, applies, examine, examine_claim};
 use mainspring::language::{self, Source};

@@ -2,19 +2,16 @@
 //! calculus, and only the demands that follow from Roy's identity are written into a model file. What the program
 //! recovers is compared with v along compensated paths; what it says of the conditions must be `proven` or open.
 
-mod construction;
-mod outside;
-
 use std::collections::BTreeMap;
 use std::time::{Duration, Instant};
 
-use construction::Formula::{self, Name, Number};
-use construction::{Construction, draw, exp, ln, power, product, quotient, root, sum};
+use crate::construction::Formula::{self, Name, Number};
+use crate::construction::{Construction, draw, exp, ln, power, product, quotient, root, sum};
+use crate::outside::Outside;
+use crate::outside::integrability::{points, printed, try_vetted};
 use mainspring::conditions::{Condition, Verdict};
 use mainspring::recovery::Recovered;
 use mainspring::{Allowance, Part};
-use outside::Outside;
-use outside::integrability::{points, printed, try_vetted};
 
 /// How a recovery ended.
 #[derive(Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Debug)]

@@ -75,11 +75,6 @@ impl Chance {
         self.0 ^= self.0 << 17;
         (self.0 >> 11) as f64 / (1u64 << 53) as f64
     }
-
-    /// A number below `end`.
-    pub fn below(&mut self, end: usize) -> usize {
-        ((self.next() * end as f64) as usize).min(end - 1)
-    }
 }
 
 /// The Slutsky matrix ∂x_i/∂p_j + x_j ∂x_i/∂m.

@@ -1,5 +1,4 @@
 //! True systems in the words of a model file: integrable for all admissible values, complete and incomplete.
-#![allow(dead_code)]
 
 /// A system and what it is called here.
 pub type System = (&'static str, &'static str);

@@ -1,16 +1,13 @@
 //! A true system with one sign, index, exponent or coefficient changed: where an evaluation from outside shows that
 //! the change matters, nothing is called proven; what is called refuted fails at the witness.
 
-mod numeric;
-mod outside;
-
 use std::time::Duration;
 
+use crate::outside::Outside;
+use crate::outside::integrability::{Chance, failure, in_domain, named, points, try_vetted};
+use crate::true_systems::TRUE_SYSTEMS;
 use mainspring::conditions::{Condition, Verdict};
 use mainspring::{Allowance, Part};
-use numeric::TRUE_SYSTEMS;
-use outside::Outside;
-use outside::integrability::{Chance, failure, in_domain, named, points, try_vetted};
 
 const ALLOWANCE: Allowance = Allowance { work: 15_000_000, time: Duration::from_secs(4), memory_mib: 2048 };
 

@@ -1,14 +1,12 @@
 //! Curvature: certificates where the Slutsky matrix is negative semidefinite, exact points and directions where it is
 //! not, and the honest middle.
 
-mod vetted;
-
+use crate::vetted::{Vetted, vet};
 use mainspring::algebra::number::rational;
 use mainspring::conditions::Condition::Curvature;
 use mainspring::conditions::Verdict::{Conditional, Proven, Refuted, Regional, Undecided};
 use mainspring::conditions::{Finding, System};
 use mainspring::proof::{Prover, Rule};
-use vetted::{Vetted, vet};
 
 fn curvature(vetted: &Vetted) -> &Finding {
     vetted.on(Curvature)

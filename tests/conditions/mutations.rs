@@ -1,7 +1,6 @@
 //! A true system with one sign changed is not proven, unless an evaluation from outside finds nothing wrong with it.
 
-mod vetted;
-
+use crate::vetted::{try_read, vet_only};
 use mainspring::algebra::evaluation::Point;
 use mainspring::algebra::field::Field;
 use mainspring::algebra::generator::Element;
@@ -10,7 +9,6 @@ use mainspring::algebra::number::{Rational, rational};
 use mainspring::conditions::Condition::{self, AddingUp, Homogeneity, Symmetry};
 use mainspring::conditions::Verdict;
 use mainspring::model::Model;
-use vetted::{try_read, vet_only};
 
 const TRUE_SYSTEMS: [&str; 5] = [
     "

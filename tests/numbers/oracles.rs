@@ -1,17 +1,16 @@
 //! Recovered preferences against a numeric solution of Shephard's system, and curvature against eigenvalues: formulas
 //! are evaluated from outside, by floating point over the syntax tree.
 
-mod numeric;
-mod outside;
-
 use std::time::Duration;
 
+use crate::outside::integrability::{
+    compensated_income, failure, in_domain, named, neighbour, points, printed, try_vetted,
+};
+use crate::outside::{Outside, Values};
+use crate::true_systems::TRUE_SYSTEMS;
 use mainspring::conditions::{Condition, Verdict};
 use mainspring::recovery::Recovered;
 use mainspring::{Allowance, Part, Vetting};
-use numeric::TRUE_SYSTEMS;
-use outside::integrability::{compensated_income, failure, in_domain, named, neighbour, points, printed, try_vetted};
-use outside::{Outside, Values};
 
 const ALLOWANCE: Allowance = Allowance { work: 20_000_000, time: Duration::from_secs(20), memory_mib: 2048 };
 

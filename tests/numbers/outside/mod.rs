@@ -1,8 +1,6 @@
 //! An evaluation of model files from outside: it walks the syntax tree in floating point and knows nothing of the
 //! program's algebra, of how it checks, or of what it found.
 
-#![allow(dead_code)]
-
 pub mod dual;
 pub mod integrability;
 

@@ -1,13 +1,11 @@
 //! Curvature decided: proofs by structure with symbolic parameters, conditions on parameters in full, regions as short
 //! inequalities, and points that are found where the matrix fails in a thin or a far part of the domain.
 
-mod vetted;
-
+use crate::vetted::{Vetted, vet};
 use mainspring::conditions::Condition::Curvature;
 use mainspring::conditions::Finding;
 use mainspring::conditions::Verdict::{Conditional, Proven, Regional};
 use mainspring::render::formula_text::plain;
-use vetted::{Vetted, vet};
 
 fn curvature(vetted: &Vetted) -> &Finding {
     vetted.on(Curvature)
