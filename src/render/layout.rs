@@ -319,7 +319,7 @@ impl Piece {
         match (self.ends, next.starts) {
             (_, Edge::Digit) => Sign::Dot,
             (_, Edge::Function) => Sign::Juxtaposed,
-            (Edge::Function, _) | (Edge::Word, Edge::Word) => Sign::Thin,
+            (Edge::Function | Edge::Word, _) | (_, Edge::Word) => Sign::Thin,
             _ => Sign::Juxtaposed,
         }
     }
