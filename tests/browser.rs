@@ -43,6 +43,10 @@ function measure(frame, width) {
     if (!(after < before)) say('a step does not fold', f);
     if (!f.querySelector('summary')) say('a step has no summary', f);
   }
+  for (const e of d.querySelectorAll('.verdicts th, .verdicts td[class]')) {
+    const words = d.createRange(); words.selectNodeContents(e);
+    if (new Set([...words.getClientRects()].map(r => r.top)).size > 1) say('a verdict is broken', e);
+  }
   const levels = [...d.querySelectorAll('h1,h2,h3,h4')].map(h => +h.tagName[1]);
   levels.forEach((l, i) => { if (l - (i ? levels[i - 1] : 0) > 1) say('headings skip from ' + levels[i - 1] + ' to ' + l); });
   for (const s of d.querySelectorAll('[aria-labelledby]')) if (!d.getElementById(s.getAttribute('aria-labelledby'))) say('a label is missing', s);
